@@ -93,7 +93,7 @@ type Part struct {
 	ClosedAt0  bool          // switch state before the first event
 	Resistance *number.Exact // switch closed resistance, nil for ideal
 
-	Initial                              *number.Exact // V or A at 0−
+	Initial                                *number.Exact // V or A at 0−
 	RatedPower, RatedVoltage, RatedCurrent *number.Exact
 }
 
@@ -266,11 +266,11 @@ type Shape int
 
 // The shapes of an expression.
 const (
-	ShapeNumber    Shape = iota // a constant
-	ShapeFunction               // a function of s
-	ShapeSignal                 // a function of t
-	ShapeFact                   // true or false
-	ShapeEquivalent             // thevenin, norton
+	ShapeNumber     Shape = iota // a constant
+	ShapeFunction                // a function of s
+	ShapeSignal                  // a function of t
+	ShapeFact                    // true or false
+	ShapeEquivalent              // thevenin, norton
 )
 
 // Expression is a resolved, unit-checked expression. The concrete types are
