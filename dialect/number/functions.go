@@ -9,6 +9,9 @@ const (
 	standInBits = 288
 	// standInPrecision is the working precision that stand-ins are computed at.
 	standInPrecision = 384
+	// longestPrecision ends the search for a more precise centre; numbers in
+	// range never need it.
+	longestPrecision = 1 << 15
 	// longestArgument bounds the binary exponent of arguments of the functions,
 	// so that results have a reasonable length.
 	longestArgument = 16
@@ -17,13 +20,45 @@ const (
 // standIn makes the stand-in of f(x). The rational is the midpoint of f on the
 // rational of x alone, rounded to standInBits, so that it depends on nothing
 // else; the bound measures how far it can be from anything f takes on the ball
-// of x. Where that leaves room for one of the values in nice, the first such is
-// taken instead: sin(3.14159…) with a bound that allows 0 is 0 and the bound.
+// of x. For a stand-in x, where that leaves room for one of the values in nice,
+// the first such is taken instead: sin(3.14159…) with a bound that allows 0 is 0
+// and the bound.
 func standIn(x Exact, f func(Ball) Ball, nice ...*big.Rat) (Exact, error) {
-	centre := f(BallFromRat(x.Rat(), standInPrecision))
-	return standInBetween(centre, f(BallFromExact(x, standInPrecision)), nice...)
+	return standInOf(func(arguments ...Ball) Ball { return f(arguments[0]) }, nice, x)
 }
 
+func standInOf(f func(...Ball) Ball, nice []*big.Rat, arguments ...Exact) (Exact, error) {
+	centre, prec := settledCentre(f, arguments)
+	balls := make([]Ball, len(arguments))
+	exact := true
+	for i, x := range arguments {
+		balls[i] = BallFromExact(x, prec)
+		exact = exact && x.IsExact()
+	}
+	if exact {
+		return standInBetween(centre, centre)
+	}
+	return standInBetween(centre, f(balls...), nice...)
+}
+
+// settledCentre evaluates f on the rationals of the arguments, at more and more
+// bits until the stand-in has its relative precision (log x next to 1) or the
+// value is exact.
+func settledCentre(f func(...Ball) Ball, arguments []Exact) (centre Ball, prec uint) {
+	balls := make([]Ball, len(arguments))
+	for prec = standInPrecision; ; prec *= 2 {
+		for i, x := range arguments {
+			balls[i] = BallFromRat(x.Rat(), prec)
+		}
+		centre = f(balls...)
+		if centre.RelativeBits() >= standInBits+32 || prec > longestPrecision {
+			return centre, prec
+		}
+	}
+}
+
+// standInBetween rounds the midpoint of centre to a stand-in for whatever hull
+// holds.
 func standInBetween(centre, hull Ball, nice ...*big.Rat) (Exact, error) {
 	if !centre.IsFinite() || !hull.IsFinite() {
 		return Exact{}, ErrUndecided
@@ -190,7 +225,7 @@ func Sin(x Exact) (Exact, error) {
 	if !shortArgument(x) {
 		return Exact{}, ErrRange
 	}
-	return standIn(x, Ball.Sin, niceFor(x)...)
+	return standIn(x, Ball.Sin, sineValues...)
 }
 
 // Cos returns the cosine of an angle in radians; see [Sin].
@@ -204,15 +239,7 @@ func Cos(x Exact) (Exact, error) {
 	if !shortArgument(x) {
 		return Exact{}, ErrRange
 	}
-	return standIn(x, Ball.Cos, niceFor(x)...)
-}
-
-// niceFor returns the values to prefer within the bound of an inexact angle.
-func niceFor(x Exact) []*big.Rat {
-	if x.IsExact() {
-		return nil
-	}
-	return sineValues
+	return standIn(x, Ball.Cos, sineValues...)
 }
 
 // Tan returns sine over cosine, with the errors of [Exact.Quo].
@@ -289,8 +316,8 @@ func Atan2(y, x Exact) (Exact, error) {
 		return Exact{}, ErrDomain
 	}
 	if x.IsExact() && y.IsExact() {
-		if eighths, ok := axisAngle(y.Rat(), x.Rat()); ok {
-			return Pi().Mul(FromRat(big.NewRat(eighths, 4))), nil
+		if quarters, ok := axisAngle(y.Rat(), x.Rat()); ok {
+			return Pi().Mul(FromRat(big.NewRat(quarters, 4))), nil
 		}
 	}
 	if sign, decided := x.Sign(); !y.isExactZero() && (!decided || sign <= 0) {
@@ -299,9 +326,8 @@ func Atan2(y, x Exact) (Exact, error) {
 			return Exact{}, ErrUndecided
 		}
 	}
-	centre := BallFromRat(y.Rat(), standInPrecision).Atan2(BallFromRat(x.Rat(), standInPrecision))
-	hull := BallFromExact(y, standInPrecision).Atan2(BallFromExact(x, standInPrecision))
-	return standInBetween(centre, hull, zeroRat)
+	angle := func(arguments ...Ball) Ball { return arguments[0].Atan2(arguments[1]) }
+	return standInOf(angle, []*big.Rat{zeroRat}, y, x)
 }
 
 // axisAngle returns the angle of (x, y) in quarters of π where it lies on an
@@ -407,8 +433,6 @@ func (x Exact) Pow(y Exact) (Exact, error) {
 			}
 		}
 	}
-	power := func(base, exponent Ball) Ball { return base.Log().Mul(exponent).Exp() }
-	return standInBetween(
-		power(BallFromRat(x.Rat(), standInPrecision), BallFromRat(y.Rat(), standInPrecision)),
-		power(BallFromExact(x, standInPrecision), BallFromExact(y, standInPrecision)))
+	power := func(arguments ...Ball) Ball { return arguments[0].Log().Mul(arguments[1]).Exp() }
+	return standInOf(power, nil, x, y)
 }
