@@ -135,7 +135,10 @@ type Head struct {
 	Doc     *Doc // ## lines directly above, nil when there are none
 	Broken  bool // a syntax finding lies in it: printed byte for byte
 	Inline  bool // a part or use statement inside a path's box
-	Holes   []*Hole
+	// Misplaced says that the statement stands in a subnetwork that cannot
+	// hold it. It has been reported and must be ignored.
+	Misplaced bool
+	Holes     []*Hole
 }
 
 // Extent implements Tree.
@@ -563,7 +566,8 @@ func (u *UnitExpr) Extent() Span { return u.Span }
 // parameter, pi, s, t. In subscripts it is a node, part, port or terminal.
 type NameExpr struct {
 	Span  Span
-	Words []Word // one or more; a node inside a subnetwork may begin with a digit
+	Words []Word  // one or more; a node inside a subnetwork may begin with a digit
+	first [1]Word // room for Words with one word
 }
 
 // Text is the name with its dots and no spaces.

@@ -107,10 +107,10 @@ var unitWords = map[string][]string{
 }
 
 // suggestUnits guesses what a spelling that is no unit was meant to be,
-// likeliest first. kind is the part kind whose value it stands in, if any.
-func suggestUnits(text string, kind Kind) []string {
+// likeliest first. bare is the unit that the place expects, "" if unknown.
+func suggestUnits(text, bare string) []string {
 	folded := strings.ToLower(text)
-	if bare := kindUnit(kind); bare != "" && unitSymbols[bare].prefixable {
+	if bare != "" && unitSymbols[bare].prefixable {
 		if p, ok := unitPrefixes[text]; ok {
 			return []string{p.canonical + bare}
 		}
