@@ -50,11 +50,11 @@ func (r *refinement) step() {
 	if k.Cmp(parts) >= 0 {
 		k.Sub(parts, bigOne)
 	}
+	lo, hi := r.lo, r.hi
 	at := func(k *big.Int) *big.Rat {
 		x := new(big.Rat).SetFrac(k, parts)
-		return x.Add(x.Mul(x, width), r.lo)
+		return x.Add(x.Mul(x, width), lo)
 	}
-	lo, hi := r.lo, r.hi
 	x := at(k)
 	r.cut(x)
 	if r.exact {

@@ -6,42 +6,6 @@ import (
 	"math/big"
 )
 
-// Prepared is a pencil made ready for questions.
-type Prepared struct {
-	pencil *Pencil
-	det    Poly
-}
-
-// Prepare makes the pencil ready for questions. The error is the context's.
-func (p *Pencil) Prepare(ctx context.Context) (*Prepared, error) {
-	d, err := plainDeterminant(ctx, p)
-	if err != nil {
-		return nil, err
-	}
-	return &Prepared{pencil: p, det: d}, nil
-}
-
-// Determinant returns det(G + s·C), the zero polynomial if the pencil is
-// singular for every s.
-func (f *Prepared) Determinant() Poly { return f.det }
-
-// Numerators returns N[i][j] = out[i]ᵀ·adj(G + s·C)·rhs[j], so that
-// N[i][j]/det is the response of out[i] to rhs[j].
-func (f *Prepared) Numerators(ctx context.Context, rhs []Vector, out []Vector) ([][]Poly, error) {
-	n := make([][]Poly, len(out))
-	for i := range out {
-		n[i] = make([]Poly, len(rhs))
-		for j := range rhs {
-			d, err := plainDeterminant(ctx, f.pencil.bordered(rhs[j], out[i]))
-			if err != nil {
-				return nil, err
-			}
-			n[i][j] = d.Neg()
-		}
-	}
-	return n, nil
-}
-
 // plainDeterminant evaluates the determinant at degree + 1 points modulo as
 // many primes as Hadamard's bound asks for.
 func plainDeterminant(ctx context.Context, p *Pencil) (Poly, error) {

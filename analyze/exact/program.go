@@ -1,0 +1,302 @@
+package exact
+
+import "context"
+
+// program is an elimination as a straight list of operations on vectors of
+// residues. Slots are vectors with one element per evaluation point.
+type program struct {
+	slots   int
+	point   int32 // the slot of the evaluation points
+	ops     []op
+	pairs   []product
+	sources []*intEntry
+	outputs []int32 // slots, −1 for an output that is zero
+}
+
+type opKind uint8
+
+const (
+	opDot     opKind = iota // dst = source − Σ products
+	opInverse               // dst = 1/a
+	opMul                   // dst = a·b
+	opNeg                   // dst = −a
+)
+
+// op is one operation; a and b are slots or, for opDot, the range of its
+// products, and source an index into sources or −1.
+type op struct {
+	kind   opKind
+	dst    int32
+	a, b   int32
+	source int32
+}
+
+// compile turns an elimination into a program whose outputs are the wanted
+// block determinants followed by all numerators.
+func (y *system) compile(z *elimination, wantDet []bool) *program {
+	c := &compiler{y: y, z: z, p: &program{}}
+	c.p.slots = len(z.entries)
+	c.p.point = c.newSlot()
+	inverse := c.newSlot()
+	pivots := make([][]int32, len(y.end))
+	for _, step := range z.pivots {
+		c.dot(step.pivot)
+		for _, e := range step.upper {
+			c.dot(e)
+		}
+		for _, e := range step.lower {
+			c.dot(e)
+		}
+		pivots[step.block] = append(pivots[step.block], step.pivot)
+		if len(step.upper) == 0 || len(step.lower) == 0 {
+			continue
+		}
+		c.emit(op{kind: opInverse, dst: inverse, a: step.pivot})
+		scaled := step.upper
+		if step.scaleLower {
+			scaled = step.lower
+		}
+		for _, e := range scaled {
+			c.emit(op{kind: opMul, dst: e, a: e, b: inverse})
+		}
+	}
+	c.determinants(pivots, wantDet)
+	return c.p
+}
+
+type compiler struct {
+	y *system
+	z *elimination
+	p *program
+}
+
+func (c *compiler) newSlot() int32 {
+	c.p.slots++
+	return int32(c.p.slots - 1)
+}
+
+func (c *compiler) emit(o op) { c.p.ops = append(c.p.ops, o) }
+
+// dot emits the operation that makes an entry of the factors.
+func (c *compiler) dot(entry int32) {
+	e := &c.z.entries[entry]
+	o := op{kind: opDot, dst: entry, source: -1, a: int32(len(c.p.pairs))}
+	c.p.pairs = append(c.p.pairs, e.products...)
+	o.b = int32(len(c.p.pairs))
+	if e.source != nil {
+		o.source = int32(len(c.p.sources))
+		c.p.sources = append(c.p.sources, e.source)
+	}
+	c.emit(o)
+}
+
+// determinants emits the products of the pivots and the numerators.
+func (c *compiler) determinants(pivots [][]int32, wantDet []bool) {
+	numerators := c.y.outs*c.y.rhs > 0
+	all := int32(-1)
+	for b, list := range pivots {
+		if !numerators && !wantDet[b] {
+			continue
+		}
+		d := c.newSlot()
+		c.product(d, list)
+		if c.z.negative[b] {
+			c.emit(op{kind: opNeg, dst: d, a: d})
+		}
+		if wantDet[b] {
+			c.p.outputs = append(c.p.outputs, d)
+		}
+		if all < 0 {
+			all = d
+		} else if numerators {
+			t := c.newSlot()
+			c.emit(op{kind: opMul, dst: t, a: all, b: d})
+			all = t
+		}
+	}
+	for _, e := range c.z.border {
+		if e < 0 {
+			c.p.outputs = append(c.p.outputs, -1)
+			continue
+		}
+		// The Schur complement of the border is −oᵀ·M⁻¹·b.
+		c.dot(int32(e))
+		c.emit(op{kind: opNeg, dst: int32(e), a: int32(e)})
+		if all >= 0 {
+			c.emit(op{kind: opMul, dst: int32(e), a: int32(e), b: all})
+		}
+		c.p.outputs = append(c.p.outputs, int32(e))
+	}
+}
+
+func (c *compiler) product(dst int32, list []int32) {
+	if len(list) == 1 {
+		c.emit(op{kind: opMul, dst: dst, a: list[0], b: -1})
+		return
+	}
+	c.emit(op{kind: opMul, dst: dst, a: list[0], b: list[1]})
+	for _, e := range list[2:] {
+		c.emit(op{kind: opMul, dst: dst, a: dst, b: e})
+	}
+}
+
+// machine runs a program modulo one prime after another.
+type machine struct {
+	prog   *program
+	width  int
+	slots  []uint64 // slot i is slots[i·width : (i+1)·width]
+	hi, lo []uint64
+	spare  []uint64
+	g, c   []uint64 // residues of the sources, c negated
+}
+
+func newMachine(prog *program, width int) *machine {
+	buf := make([]uint64, (prog.slots+3)*width)
+	k := prog.slots * width
+	return &machine{
+		prog: prog, width: width, slots: buf[:k],
+		hi: buf[k : k+width], lo: buf[k+width : k+2*width], spare: buf[k+2*width:],
+		g: make([]uint64, len(prog.sources)), c: make([]uint64, len(prog.sources)),
+	}
+}
+
+// load takes the residues of the sources modulo m.
+func (v *machine) load(m *modulus) {
+	for i, e := range v.prog.sources {
+		v.g[i], v.c[i] = 0, 0
+		if e.g != nil {
+			v.g[i] = m.fromBig(e.g)
+		}
+		if e.c != nil {
+			v.c[i] = m.neg(m.fromBig(e.c))
+		}
+	}
+}
+
+func (v *machine) slot(i int32, n int) []uint64 {
+	k := int(i) * v.width
+	return v.slots[k : k+n : k+n]
+}
+
+// opsPerCheck is the number of operations, each on at most chunkPoints
+// points, between looks at the context: well below a millisecond.
+const opsPerCheck = 1 << 10
+
+// run executes the program at up to width points and reports whether no
+// pivot was zero.
+func (v *machine) run(ctx context.Context, m *modulus, x []uint64) (bool, error) {
+	n := len(x)
+	copy(v.slot(v.prog.point, n), x)
+	for k, o := range v.prog.ops {
+		if k%opsPerCheck == 0 {
+			if err := ctx.Err(); err != nil {
+				return false, err
+			}
+		}
+		dst := v.slot(o.dst, n)
+		switch o.kind {
+		case opDot:
+			v.dot(m, dst, o)
+		case opInverse:
+			if !m.inverseInto(dst, v.slot(o.a, n)) {
+				return false, nil
+			}
+		case opMul:
+			if o.b < 0 {
+				copy(dst, v.slot(o.a, n))
+			} else {
+				mulInto(dst, v.slot(o.a, n), v.slot(o.b, n), m.p, m.inv)
+			}
+		case opNeg:
+			negInto(dst, v.slot(o.a, n), m.p)
+		}
+	}
+	return true, nil
+}
+
+// dot executes one opDot.
+func (v *machine) dot(m *modulus, dst []uint64, o op) {
+	n := len(dst)
+	p, inv := m.p, m.inv
+	var g, c uint64
+	if o.source >= 0 {
+		g, c = v.g[o.source], v.c[o.source]
+	}
+	pairs := v.prog.pairs[o.a:o.b]
+	if c != 0 {
+		v.dotReactive(m, dst, pairs, g, c)
+		return
+	}
+	at := func(k int) ([]uint64, []uint64) { return v.slot(pairs[k].l, n), v.slot(pairs[k].u, n) }
+	switch len(pairs) {
+	case 0:
+		dotConstant(dst, g)
+	case 1:
+		a0, b0 := at(0)
+		dot1(dst, a0, b0, g, p, inv)
+	case 2:
+		a0, b0 := at(0)
+		a1, b1 := at(1)
+		dot2(dst, a0, b0, a1, b1, g, p, inv)
+	case 3:
+		a0, b0 := at(0)
+		a1, b1 := at(1)
+		a2, b2 := at(2)
+		dot3(dst, a0, b0, a1, b1, a2, b2, g, p, inv)
+	case 4:
+		a0, b0 := at(0)
+		a1, b1 := at(1)
+		a2, b2 := at(2)
+		a3, b3 := at(3)
+		dot4(dst, a0, b0, a1, b1, a2, b2, a3, b3, g, p, inv)
+	default:
+		clear(v.hi[:n])
+		clear(v.lo[:n])
+		v.accumulate(n, pairs, p)
+		finish(dst, v.hi, v.lo, g, p, inv)
+	}
+}
+
+// dotReactive is dot for a source with s: the term c·s is one more product.
+func (v *machine) dotReactive(m *modulus, dst []uint64, pairs []product, g, c uint64) {
+	n := len(dst)
+	p, inv := m.p, m.inv
+	s, k := v.slot(v.prog.point, n), v.spare[:n]
+	dotConstant(k, c)
+	at := func(k int) ([]uint64, []uint64) { return v.slot(pairs[k].l, n), v.slot(pairs[k].u, n) }
+	switch len(pairs) {
+	case 0:
+		dot1(dst, k, s, g, p, inv)
+	case 1:
+		a0, b0 := at(0)
+		dot2(dst, k, s, a0, b0, g, p, inv)
+	case 2:
+		a0, b0 := at(0)
+		a1, b1 := at(1)
+		dot3(dst, k, s, a0, b0, a1, b1, g, p, inv)
+	case 3:
+		a0, b0 := at(0)
+		a1, b1 := at(1)
+		a2, b2 := at(2)
+		dot4(dst, k, s, a0, b0, a1, b1, a2, b2, g, p, inv)
+	default:
+		clear(v.hi[:n])
+		clear(v.lo[:n])
+		accumulate1(v.hi[:n], v.lo, k, s, p)
+		v.accumulate(n, pairs, p)
+		finish(dst, v.hi, v.lo, g, p, inv)
+	}
+}
+
+// accumulate adds the products to the sums hi:lo.
+func (v *machine) accumulate(n int, pairs []product, p uint64) {
+	hi, lo := v.hi[:n], v.lo[:n]
+	for ; len(pairs) >= 4; pairs = pairs[4:] {
+		accumulate4(hi, lo,
+			v.slot(pairs[0].l, n), v.slot(pairs[0].u, n), v.slot(pairs[1].l, n), v.slot(pairs[1].u, n),
+			v.slot(pairs[2].l, n), v.slot(pairs[2].u, n), v.slot(pairs[3].l, n), v.slot(pairs[3].u, n), p)
+	}
+	for _, q := range pairs {
+		accumulate1(hi, lo, v.slot(q.l, n), v.slot(q.u, n), p)
+	}
+}
