@@ -51,7 +51,11 @@ func (y *system) solveModular(ctx context.Context, wantDet []bool) ([]Poly, []Po
 	if err != nil {
 		return nil, nil, err
 	}
-	r := y.newModularRun(plan, wantDet)
+	return y.newModularRun(plan, wantDet).solve(ctx, y, wantDet)
+}
+
+// solve carries the run out.
+func (r *modularRun) solve(ctx context.Context, y *system, wantDet []bool) (_, _ []Poly, err error) {
 	if err := r.runAll(ctx); err != nil {
 		return nil, nil, err
 	}
@@ -185,6 +189,14 @@ const parallelWork = 4e6
 func (r *modularRun) work() float64 {
 	perPoint := 4*float64(len(r.prog.ops)) + 1.5*float64(len(r.prog.pairs))
 	return perPoint * float64(r.points) * float64(len(r.used))
+}
+
+// cost estimates the whole time in nanoseconds: evaluation, interpolation and
+// reconstruction.
+func (r *modularRun) cost() float64 {
+	primes := float64(len(r.used))
+	perOutput := float64(r.points) * primes * (30 + 3*primes)
+	return r.work() + perOutput*float64(len(r.degrees))
 }
 
 func (r *modularRun) runAll(ctx context.Context) error {

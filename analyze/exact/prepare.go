@@ -281,9 +281,3 @@ func (f *Prepared) system(list []int, rhs, out []border) *system {
 	}
 	return y
 }
-
-// solve is the choice of method for a system; see solveModular for the
-// results.
-func (y *system) solve(ctx context.Context, wantDet []bool) ([]Poly, []Poly, error) {
-	return y.solveModular(ctx, wantDet)
-}
