@@ -84,8 +84,19 @@ func Constant(r *big.Rat) Poly { return NewPoly(r) }
 // Monomial returns r·s^degree. It panics if degree is negative.
 func Monomial(r *big.Rat, degree int) Poly { return NewPoly(r).Shift(degree) }
 
-// makePoly owns its arguments: it trims, makes the denominator positive and
-// removes the common factor of numerators and denominator.
+// newInts returns n zeros that lie together in memory.
+func newInts(n int) []*big.Int {
+	buf := make([]big.Int, n)
+	c := make([]*big.Int, n)
+	for i := range c {
+		c[i] = &buf[i]
+	}
+	return c
+}
+
+// makePoly owns the slice c, but may share its integers and den: it trims,
+// makes the denominator positive and removes the common factor of numerators
+// and denominator.
 func makePoly(c []*big.Int, den *big.Int) Poly {
 	n := len(c)
 	for n > 0 && c[n-1].Sign() == 0 {
@@ -101,18 +112,17 @@ func makePoly(c []*big.Int, den *big.Int) Poly {
 	if isOne(den) {
 		return Poly{c: c}
 	}
-	if den.Sign() < 0 {
-		den = new(big.Int).Neg(den)
-		for i := range c {
-			c[i] = new(big.Int).Neg(c[i])
-		}
-	}
 	g := contentWith(c, den)
+	if den.Sign() < 0 {
+		g.Neg(g)
+	}
 	if !isOne(g) {
 		den = new(big.Int).Quo(den, g)
+		q := newInts(n)
 		for i := range c {
-			c[i] = new(big.Int).Quo(c[i], g)
+			q[i].Quo(c[i], g)
 		}
+		c = q
 	}
 	if isOne(den) {
 		den = nil
@@ -123,11 +133,24 @@ func makePoly(c []*big.Int, den *big.Int) Poly {
 // contentWith returns gcd(start, c[0], c[1], …) ≥ 0.
 func contentWith(c []*big.Int, start *big.Int) *big.Int {
 	g := new(big.Int).Abs(start)
+	var t big.Int
 	// The leading and the lowest coefficients are the likeliest to end the
 	// search early, so walk from the top.
-	for i := len(c) - 1; i >= 0 && !(g.IsInt64() && g.Int64() == 1); i-- {
-		if c[i].Sign() != 0 {
-			g.GCD(nil, nil, g, new(big.Int).Abs(c[i]))
+	for i := len(c) - 1; i >= 0 && !isOne(g); i-- {
+		switch {
+		case c[i].Sign() == 0:
+		case g.Sign() == 0:
+			g.Abs(c[i])
+		default:
+			// A remainder first: the terms are often much longer than g.
+			if c[i].CmpAbs(g) > 0 {
+				t.Rem(c[i], g)
+			} else {
+				t.Set(c[i])
+			}
+			if t.Sign() != 0 {
+				g.GCD(nil, nil, g, t.Abs(&t))
+			}
 		}
 	}
 	return g

@@ -25,10 +25,9 @@ func combine(p, q Poly, subtract bool) Poly {
 		den = new(big.Int).Mul(pd, pf)
 	}
 	n := max(len(p.c), len(q.c))
-	c := make([]*big.Int, n)
+	c := newInts(n)
 	t := new(big.Int)
-	for i := range c {
-		v := new(big.Int)
+	for i, v := range c {
 		if i < len(p.c) {
 			v.Mul(p.c[i], pf)
 		}
@@ -40,16 +39,15 @@ func combine(p, q Poly, subtract bool) Poly {
 				v.Add(v, t)
 			}
 		}
-		c[i] = v
 	}
 	return makePoly(c, den)
 }
 
 // Neg returns −p.
 func (p Poly) Neg() Poly {
-	c := make([]*big.Int, len(p.c))
+	c := newInts(len(p.c))
 	for i, v := range p.c {
-		c[i] = new(big.Int).Neg(v)
+		c[i].Neg(v)
 	}
 	return Poly{c: c, den: p.den}
 }
@@ -59,9 +57,9 @@ func (p Poly) Scale(r *big.Rat) Poly {
 	if r.Sign() == 0 || p.IsZero() {
 		return Poly{}
 	}
-	c := make([]*big.Int, len(p.c))
+	c := newInts(len(p.c))
 	for i, v := range p.c {
-		c[i] = new(big.Int).Mul(v, r.Num())
+		c[i].Mul(v, r.Num())
 	}
 	return makePoly(c, new(big.Int).Mul(p.denominator(), r.Denom()))
 }
@@ -83,10 +81,7 @@ func mulInts(a, b []*big.Int) []*big.Int {
 	if min(len(a), len(b)) >= kroneckerTerms {
 		return mulKronecker(a, b)
 	}
-	c := make([]*big.Int, len(a)+len(b)-1)
-	for i := range c {
-		c[i] = new(big.Int)
-	}
+	c := newInts(len(a) + len(b) - 1)
 	t := new(big.Int)
 	for i, x := range a {
 		if x.Sign() == 0 {
@@ -121,9 +116,9 @@ func (p Poly) Derivative() Poly {
 	if len(p.c) <= 1 {
 		return Poly{}
 	}
-	c := make([]*big.Int, len(p.c)-1)
+	c := newInts(len(p.c) - 1)
 	for i := range c {
-		c[i] = new(big.Int).Mul(p.c[i+1], big.NewInt(int64(i+1)))
+		c[i].Mul(p.c[i+1], big.NewInt(int64(i+1)))
 	}
 	return makePoly(c, p.den)
 }
@@ -158,10 +153,10 @@ func (p Poly) ScaleArgument(r *big.Rat) Poly {
 		return p
 	}
 	// c[i]·aⁱ·bⁿ⁻ⁱ over den·bⁿ, for r = a/b.
-	c := make([]*big.Int, n)
+	c := newInts(n)
 	power := big.NewInt(1)
 	for i := range c {
-		c[i] = new(big.Int).Mul(p.c[i], power)
+		c[i].Mul(p.c[i], power)
 		power.Mul(power, r.Num())
 	}
 	den := p.denominator()
@@ -214,9 +209,9 @@ func (p Poly) Primitive() Poly {
 	if isOne(g) {
 		return Poly{c: p.c}
 	}
-	c := make([]*big.Int, len(p.c))
+	c := newInts(len(p.c))
 	for i, v := range p.c {
-		c[i] = new(big.Int).Quo(v, g)
+		c[i].Quo(v, g)
 	}
 	return Poly{c: c}
 }

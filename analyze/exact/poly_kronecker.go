@@ -61,11 +61,12 @@ func packInts(c []*big.Int, words int) *big.Int {
 func unpackInts(x *big.Int, n, words int) []*big.Int {
 	negative := x.Sign() < 0
 	bits := x.Bits()
-	c := make([]*big.Int, n)
+	c := newInts(n)
+	digits := make([]big.Word, n*words)
 	half := big.Word(1) << (wordBits - 1)
 	carry := big.Word(0) // one borrowed by the digit below
 	for i := range c {
-		digit := make([]big.Word, words)
+		digit := digits[i*words : (i+1)*words : (i+1)*words]
 		if lo := i * words; lo < len(bits) {
 			copy(digit, bits[lo:min(len(bits), lo+words)])
 		}
@@ -88,7 +89,7 @@ func unpackInts(x *big.Int, n, words int) []*big.Int {
 				}
 			}
 		}
-		c[i] = new(big.Int).SetBits(digit)
+		c[i].SetBits(digit)
 		if minus != negative {
 			c[i].Neg(c[i])
 		}

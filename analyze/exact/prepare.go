@@ -75,11 +75,11 @@ func (f *Prepared) DeterminantContext(ctx context.Context) (Poly, error) {
 	if whole != nil {
 		return *whole, nil
 	}
-	factors, err := f.BlockDeterminants(ctx)
-	if err != nil {
+	dets, err := f.allDeterminants(ctx)
+	if err != nil || dets == nil {
 		return Poly{}, err
 	}
-	d := productOf(factors)
+	d := f.inTime(productOf(dets), f.factor())
 	f.mu.Lock()
 	f.whole = &d
 	f.mu.Unlock()
@@ -90,9 +90,25 @@ func (f *Prepared) DeterminantContext(ctx context.Context) (Poly, error) {
 // constant with the sign, then the determinant of every piece. For a
 // singular pencil it returns the zero polynomial alone.
 func (f *Prepared) BlockDeterminants(ctx context.Context) ([]Poly, error) {
-	zero := []Poly{{}}
+	dets, err := f.allDeterminants(ctx)
+	if err != nil {
+		return nil, err
+	}
+	if dets == nil {
+		return []Poly{{}}, nil
+	}
+	out := []Poly{Constant(f.factor())}
+	for _, d := range dets {
+		out = append(out, f.inTime(d, big.NewRat(1, 1)))
+	}
+	return out, nil
+}
+
+// allDeterminants returns the determinants of all blocks in scaled time, nil
+// for a singular pencil.
+func (f *Prepared) allDeterminants(ctx context.Context) ([]Poly, error) {
 	if f.form == nil {
-		return zero, ctx.Err()
+		return nil, ctx.Err()
 	}
 	all := make([]bool, len(f.dets))
 	for b := range f.dets {
@@ -100,33 +116,68 @@ func (f *Prepared) BlockDeterminants(ctx context.Context) ([]Poly, error) {
 	}
 	dets, err := f.blockDeterminants(ctx, all)
 	if errors.Is(err, errSingular) {
-		return zero, nil
+		return nil, nil
 	}
-	if err != nil {
-		return nil, err
-	}
-	back := powerOfTen(-f.scaled.exponent)
-	out := []Poly{Constant(f.factor())}
-	for _, d := range dets {
-		out = append(out, d.ScaleArgument(back))
-	}
-	return out, nil
+	return dets, err
 }
 
 // factor returns det(G + s·C) / Π block determinants.
 func (f *Prepared) factor() *big.Rat {
 	num, den := big.NewInt(1), big.NewInt(1)
-	for i := range f.scaled.rowScale {
-		r, c := f.scaled.rowScale[i], f.scaled.colScale[i]
-		num.Mul(num, r.Num())
-		num.Mul(num, c.Num())
-		den.Mul(den, r.Denom())
-		den.Mul(den, c.Denom())
+	two, five := 0, 0
+	var t big.Int
+	for _, side := range [][]tenfold{f.scaled.rowScale, f.scaled.colScale} {
+		for i := range side {
+			r := &side[i]
+			two, five = two+r.two, five+r.five
+			if r.long != nil {
+				num.Mul(num, r.long.Num())
+				den.Mul(den, r.long.Denom())
+				continue
+			}
+			if r.num != 1 {
+				num.Mul(num, t.SetInt64(r.num))
+			}
+			if r.den != 1 {
+				den.Mul(den, t.SetInt64(r.den))
+			}
+		}
 	}
+	shiftTens(num, max(two, 0), max(five, 0))
+	shiftTens(den, max(-two, 0), max(-five, 0))
 	if f.form.negative {
 		den.Neg(den)
 	}
 	return new(big.Rat).SetFrac(den, num)
+}
+
+// inTime returns scale·d(s/10^exponent): a polynomial of the scaled system in
+// the pencil's own s.
+func (f *Prepared) inTime(d Poly, scale *big.Rat) Poly {
+	n := d.Degree()
+	if n < 0 {
+		return d
+	}
+	e := f.scaled.exponent
+	ten := powerOfTen(max(e, -e)).Num()
+	c := newInts(n + 1)
+	power := new(big.Int).Set(scale.Num())
+	// The numerators get 10^(e·(n−i)) or 10^(−e·i).
+	for k := range c {
+		i := k
+		if e > 0 {
+			i = n - k
+		}
+		c[i].Mul(d.c[i], power)
+		if k < n && e != 0 {
+			power.Mul(power, ten)
+		}
+	}
+	den := new(big.Int).Mul(d.denominator(), scale.Denom())
+	if e > 0 {
+		den.Mul(den, ten.Exp(ten, big.NewInt(int64(n)), nil))
+	}
+	return makePoly(c, den)
 }
 
 // productOf multiplies polynomials pairwise, so that factors of like size
@@ -209,13 +260,13 @@ func (f *Prepared) outBorder(v Vector, position []int) border {
 	return makeBorder(v, f.scaled.colScale, position)
 }
 
-func makeBorder(v Vector, scale []*big.Rat, position []int) border {
+func makeBorder(v Vector, scale []tenfold, position []int) border {
 	sum := map[int]*big.Rat{}
 	for _, c := range v {
 		if c.Value == nil || position[c.Index] < 0 {
 			continue
 		}
-		t := new(big.Rat).Mul(c.Value, scale[c.Index])
+		t := new(big.Rat).Mul(c.Value, scale[c.Index].rat())
 		if old := sum[position[c.Index]]; old != nil {
 			t.Add(t, old)
 		}

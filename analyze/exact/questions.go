@@ -34,18 +34,24 @@ func (f *Prepared) Responses(ctx context.Context, rhs []Vector, out []Vector) ([
 	h := make([][]Ratio, len(out))
 	for i := range out {
 		h[i] = make([]Ratio, len(rhs))
-	}
-	back := powerOfTen(-f.scaled.exponent)
-	err := f.eachGroup(ctx, rhs, out, func(g *group) error {
-		dets := make([]Poly, len(g.dets))
-		for k, d := range g.dets {
-			dets[k] = d.ScaleArgument(back)
+		for j := range h[i] {
+			h[i][j] = PolyRatio(Poly{})
 		}
-		den := productOf(dets)
+	}
+	err := f.eachGroup(ctx, rhs, out, func(g *group) error {
+		den := productOf(g.dets)
 		for k, i := range g.outs {
 			for j := range rhs {
-				num := g.nums[k*len(rhs)+j].ScaleArgument(back).Scale(g.scale(k, j))
-				h[i][j] = reduced(num, den)
+				// Common factors are cancelled while the numbers are short.
+				num, den := g.nums[k*len(rhs)+j], den
+				if num.IsZero() {
+					continue
+				}
+				if common := GCD(num, den); common.Degree() > 0 {
+					num, den = num.Quo(common), den.Quo(common)
+				}
+				one := big.NewRat(1, 1)
+				h[i][j] = normalized(f.inTime(num, g.scale(k, j)), f.inTime(den, one))
 			}
 		}
 		return ctx.Err()
@@ -74,7 +80,6 @@ func (f *Prepared) regularNumerators(ctx context.Context, rhs []Vector, out []Ve
 	for i := range out {
 		n[i] = make([]Poly, len(rhs))
 	}
-	back := powerOfTen(-f.scaled.exponent)
 	factor := f.factor()
 	err := f.eachGroup(ctx, rhs, out, func(g *group) error {
 		others := make([]bool, len(f.dets))
@@ -85,17 +90,21 @@ func (f *Prepared) regularNumerators(ctx context.Context, rhs []Vector, out []Ve
 		if err != nil {
 			return err
 		}
-		list := []Poly{Constant(factor)}
+		var list []Poly
 		for b, d := range rest {
 			if others[b] {
-				list = append(list, d.ScaleArgument(back))
+				list = append(list, d)
 			}
 		}
 		common := productOf(list)
 		for k, i := range g.outs {
 			for j := range rhs {
-				num := g.nums[k*len(rhs)+j].ScaleArgument(back).Scale(g.scale(k, j))
-				n[i][j] = num.Mul(common)
+				num := g.nums[k*len(rhs)+j]
+				if !common.IsOne() {
+					num = num.Mul(common)
+				}
+				scale := g.scale(k, j)
+				n[i][j] = f.inTime(num, scale.Mul(scale, factor))
 			}
 		}
 		return ctx.Err()

@@ -3,6 +3,7 @@ package exact
 import (
 	"math"
 	"math/big"
+	"slices"
 )
 
 // intEntry is an entry g + s·c with integers; nil stands for zero.
@@ -11,86 +12,311 @@ type intEntry struct {
 	g, c *big.Int
 }
 
-// intPencil is a pencil scaled to integers: row i was multiplied by rowScale[i],
-// column j by colScale[j], and s replaced by s'·10^exponent.
+// intPencil is a pencil scaled to integers: row i was multiplied by
+// rowScale[i], column j by colScale[j], and s replaced by s'·10^exponent.
 type intPencil struct {
 	rows               [][]intEntry
-	rowScale, colScale []*big.Rat
+	rowScale, colScale []tenfold
 	exponent           int
+}
+
+// tenfold is the rational number num/den·2^two·5^five. Numbers of networks
+// are mostly short decimals; in this form scaling them is arithmetic on short
+// integers. Either num and den are short, with long nil, or long holds num/den.
+type tenfold struct {
+	num, den  int64
+	two, five int
+	long      *big.Rat
+}
+
+// shortLimit bounds the short numerators and denominators, so that a product
+// of two of them fits an int64.
+const shortLimit = 1 << 31
+
+// newTenfold splits a nonzero number.
+func newTenfold(r *big.Rat) tenfold {
+	num, den := r.Num(), r.Denom()
+	if !num.IsInt64() || !den.IsInt64() || num.Int64() == math.MinInt64 {
+		return longTenfold(r)
+	}
+	a, two, five := splitTens(num.Int64())
+	b, dTwo, dFive := splitTens(den.Int64())
+	return tenfold{num: a, den: b, two: two - dTwo, five: five - dFive}
+}
+
+// splitTens removes the factors 2 and 5 from v ≠ 0.
+func splitTens(v int64) (rest int64, two, five int) {
+	for v&1 == 0 {
+		v >>= 1
+		two++
+	}
+	for v%5 == 0 {
+		v /= 5
+		five++
+	}
+	return v, two, five
+}
+
+// longTenfold is newTenfold for long numbers. Powers of 5 are looked for only
+// as far as denominators of decimals have them.
+func longTenfold(r *big.Rat) tenfold {
+	var t tenfold
+	num, den := new(big.Int).Set(r.Num()), new(big.Int).Set(r.Denom())
+	n2, d2 := num.TrailingZeroBits(), den.TrailingZeroBits()
+	num.Rsh(num, n2)
+	den.Rsh(den, d2)
+	t.two = int(n2) - int(d2)
+	t.five = removeFives(num) - removeFives(den)
+	t.long = new(big.Rat).SetFrac(num, den)
+	return t
+}
+
+var bigFive = big.NewInt(5)
+
+// removeFives divides x by the powers of 5 in it and returns how many.
+func removeFives(x *big.Int) int {
+	count := 0
+	var q, r big.Int
+	for _, power := range []int{13, 1} {
+		step := new(big.Int).Exp(bigFive, big.NewInt(int64(power)), nil)
+		for q.QuoRem(x, step, &r); r.Sign() == 0; q.QuoRem(x, step, &r) {
+			x.Set(&q)
+			count += power
+		}
+	}
+	return count
+}
+
+// rat returns the number.
+func (t tenfold) rat() *big.Rat {
+	r := t.long
+	if r == nil {
+		r = big.NewRat(t.num, t.den)
+	}
+	num, den := new(big.Int).Set(r.Num()), new(big.Int).Set(r.Denom())
+	shiftTens(num, max(t.two, 0), max(t.five, 0))
+	shiftTens(den, max(-t.two, 0), max(-t.five, 0))
+	return new(big.Rat).SetFrac(num, den)
+}
+
+// shiftTens multiplies x by 2^two·5^five.
+func shiftTens(x *big.Int, two, five int) {
+	if five > 0 {
+		x.Mul(x, new(big.Int).Exp(bigFive, big.NewInt(int64(five)), nil))
+	}
+	x.Lsh(x, uint(two))
+}
+
+// log returns log2 of the absolute value.
+func (t tenfold) log() float64 {
+	const log2Of5 = 2.321928094887362
+	l := float64(t.two) + log2Of5*float64(t.five)
+	if t.long != nil {
+		return l + log2Int(t.long.Num()) - log2Int(t.long.Denom())
+	}
+	return l + math.Log2(math.Abs(float64(t.num))/float64(t.den))
+}
+
+// scaleEntry is one number of the pencil on its way to an integer.
+type scaleEntry struct {
+	row, col int
+	reactive bool // of C
+	log      float64
+	tenfold
 }
 
 // scaled returns the integer form of p with small numbers.
 func (p *Pencil) scaled() *intPencil {
 	n := p.Size()
-	q := &intPencil{
-		rows:     make([][]intEntry, n),
-		rowScale: make([]*big.Rat, n),
-		colScale: make([]*big.Rat, n),
-		exponent: p.timeScale(),
+	count := 0
+	for _, r := range p.rows {
+		count += 2 * len(r)
 	}
-	t := powerOfTen(q.exponent)
-	colGCD := make([]*big.Int, n)
-	var scaledC big.Rat
+	list := make([]scaleEntry, 0, count)
 	for i, r := range p.rows {
-		// Over the common denominator of the row, without common factor.
-		den, num := big.NewInt(1), new(big.Int)
-		row := make([]intEntry, 0, len(r))
-		cs := make([]big.Rat, len(r))
-		for k, e := range r {
+		for k := range r {
+			e := &r[k]
+			if e.G.Sign() != 0 {
+				list = append(list, scaleEntry{row: i, col: e.Col, tenfold: newTenfold(e.G)})
+			}
 			if e.C.Sign() != 0 {
-				cs[k].Set(scaledC.Mul(e.C, t))
-			}
-			lcmInto(den, e.G.Denom())
-			lcmInto(den, cs[k].Denom())
-		}
-		for k, e := range r {
-			v := intEntry{col: e.Col, g: overDenominator(e.G, den), c: overDenominator(&cs[k], den)}
-			if v.g != nil || v.c != nil {
-				gcdInto(num, v.g)
-				gcdInto(num, v.c)
-				row = append(row, v)
+				list = append(list, scaleEntry{row: i, col: e.Col, reactive: true, tenfold: newTenfold(e.C)})
 			}
 		}
-		if num.Sign() == 0 {
-			num.SetInt64(1)
-		}
-		q.rowScale[i] = new(big.Rat).SetFrac(den, num)
-		for k := range row {
-			row[k].divide(num)
-			if colGCD[row[k].col] == nil {
-				colGCD[row[k].col] = new(big.Int)
-			}
-			gcdInto(colGCD[row[k].col], row[k].g)
-			gcdInto(colGCD[row[k].col], row[k].c)
-		}
-		q.rows[i] = row
 	}
-	for j, g := range colGCD {
-		if g == nil {
-			g = big.NewInt(1)
-		}
-		colGCD[j] = g
-		q.colScale[j] = new(big.Rat).SetFrac(bigOne, g)
+	for i := range list {
+		list[i].log = list[i].tenfold.log()
 	}
-	for _, row := range q.rows {
-		for k := range row {
-			row[k].divide(colGCD[row[k].col])
+	q := &intPencil{exponent: timeScale(list, n)}
+	for i := range list {
+		if list[i].reactive {
+			list[i].two += q.exponent
+			list[i].five += q.exponent
 		}
 	}
+	row := func(e *scaleEntry) int { return e.row }
+	col := func(e *scaleEntry) int { return e.col }
+	q.rowScale = clearLines(list, n, row)
+	q.colScale = clearLines(list, n, col)
+	q.rows = integerRows(list, n)
 	return q
 }
 
-// divide divides an entry by a common factor.
-func (e *intEntry) divide(g *big.Int) {
-	if isOne(g) {
-		return
+// clearLines multiplies every row (or column, as line tells) by the positive
+// number that makes its entries integers without common factor, and returns
+// these numbers.
+func clearLines(list []scaleEntry, n int, line func(*scaleEntry) int) []tenfold {
+	scale := make([]tenfold, n)
+	for i := range scale {
+		scale[i] = tenfold{num: 0, den: 1, two: math.MaxInt, five: math.MaxInt}
 	}
-	if e.g != nil {
-		e.g.Quo(e.g, g)
+	// Short arithmetic first: the common denominator in den, then the common
+	// factor of the numerators in num; 0 marks a line that needs long numbers.
+	for i := range list {
+		e, s := &list[i], &scale[line(&list[i])]
+		s.two, s.five = min(s.two, e.two), min(s.five, e.five)
+		if e.long != nil || s.den == 0 {
+			s.den = 0
+			continue
+		}
+		s.den = lcmShort(s.den, e.den)
 	}
-	if e.c != nil {
-		e.c.Quo(e.c, g)
+	for i := range list {
+		e, s := &list[i], &scale[line(&list[i])]
+		if s.den == 0 {
+			continue
+		}
+		if v, ok := mulShort(e.num, s.den/e.den); ok {
+			s.num = gcdShort(s.num, v)
+		} else {
+			s.den = 0
+		}
 	}
+	long := map[int]bool{}
+	for i := range scale {
+		s := &scale[i]
+		switch {
+		case s.two == math.MaxInt: // empty
+			*s = tenfold{num: 1, den: 1}
+		case s.den == 0:
+			long[i] = true
+			s.two, s.five = -s.two, -s.five
+		default:
+			*s = tenfold{num: s.den, den: s.num, two: -s.two, five: -s.five}
+		}
+	}
+	if len(long) > 0 {
+		longLines(list, scale, long, line)
+	}
+	for i := range list {
+		e, s := &list[i], &scale[line(&list[i])]
+		e.two, e.five = e.two+s.two, e.five+s.five
+		if s.long == nil {
+			e.num, e.den = e.num*(s.num/e.den)/s.den, 1
+		}
+	}
+	return scale
+}
+
+// longLines finds the scale of the marked lines with long integers and
+// applies it to the numerators and denominators of their entries.
+func longLines(list []scaleEntry, scale []tenfold, long map[int]bool, line func(*scaleEntry) int) {
+	lcm, gcd := map[int]*big.Int{}, map[int]*big.Int{}
+	for i := range long {
+		lcm[i], gcd[i] = big.NewInt(1), new(big.Int)
+	}
+	for i := range list {
+		e := &list[i]
+		l := line(e)
+		if !long[l] {
+			continue
+		}
+		if e.long == nil {
+			e.long = big.NewRat(e.num, e.den)
+		}
+		lcmInto(lcm[l], e.long.Denom())
+	}
+	for i := range list {
+		if l := line(&list[i]); long[l] {
+			e := &list[i]
+			e.long = new(big.Rat).SetInt(overDenominator(e.long, lcm[l]))
+			gcdInto(gcd[l], e.long.Num())
+		}
+	}
+	for i := range list {
+		if l := line(&list[i]); long[l] {
+			e := &list[i]
+			e.long.SetInt(new(big.Int).Quo(e.long.Num(), gcd[l]))
+		}
+	}
+	for i := range long {
+		scale[i].long = new(big.Rat).SetFrac(lcm[i], gcd[i])
+	}
+}
+
+// lcmShort returns the least common multiple, 0 if it is not short.
+func lcmShort(a, b int64) int64 {
+	if b == 1 || a == b {
+		return a
+	}
+	v, ok := mulShort(a/gcdShort(a, b), b)
+	if !ok {
+		return 0
+	}
+	return v
+}
+
+// gcdShort returns gcd(|a|, |b|).
+func gcdShort(a, b int64) int64 {
+	if a < 0 {
+		a = -a
+	}
+	if b < 0 {
+		b = -b
+	}
+	for b != 0 {
+		a, b = b, a%b
+	}
+	return a
+}
+
+// mulShort returns a·b and whether it stayed short.
+func mulShort(a, b int64) (int64, bool) {
+	if max(a, -a) >= shortLimit || max(b, -b) >= shortLimit {
+		return 0, false
+	}
+	v := a * b
+	return v, max(v, -v) < shortLimit
+}
+
+// integerRows makes the rows of the integer pencil from numbers that have
+// become integers.
+func integerRows(list []scaleEntry, n int) [][]intEntry {
+	rows := make([][]intEntry, n)
+	ints := make([]big.Int, len(list))
+	entries := make([]intEntry, 0, len(list))
+	for i := 0; i < len(list); {
+		row, start := list[i].row, len(entries)
+		for ; i < len(list) && list[i].row == row; i++ {
+			e, v := &list[i], &ints[i]
+			if e.long != nil {
+				v.Set(e.long.Num())
+			} else {
+				v.SetInt64(e.num)
+			}
+			shiftTens(v, e.two, e.five)
+			if k := len(entries); k == start || entries[k-1].col != e.col {
+				entries = append(entries, intEntry{col: e.col})
+			}
+			if e.reactive {
+				entries[len(entries)-1].c = v
+			} else {
+				entries[len(entries)-1].g = v
+			}
+		}
+		rows[row] = slices.Clip(entries[start:])
+	}
+	return rows
 }
 
 // overDenominator returns r·den, nil for zero; den is a multiple of r's
@@ -138,160 +364,4 @@ func powerOfTen(e int) *big.Rat {
 		return new(big.Rat).SetFrac(bigOne, x)
 	}
 	return new(big.Rat).SetInt(x)
-}
-
-// magnitude is what the choice of the time scale looks at in one number: its
-// size and its powers of 2 and 5.
-type magnitude struct {
-	row, col  int
-	log       float64 // log2|x|
-	two, five int
-	reactive  bool
-}
-
-// timeScale returns the exponent k for which s = s'·10^k makes the numbers of
-// the scaled pencil shortest, by the estimate of scaledBits. Only speed
-// depends on it.
-func (p *Pencil) timeScale() int {
-	var list []magnitude
-	gLo, gHi, cLo, cHi := math.Inf(1), math.Inf(-1), math.Inf(1), math.Inf(-1)
-	for e := range p.Entries() {
-		if e.G.Sign() != 0 {
-			m := measure(e.G)
-			m.row, m.col = e.Row, e.Col
-			gLo, gHi = min(gLo, m.log), max(gHi, m.log)
-			list = append(list, m)
-		}
-		if e.C.Sign() != 0 {
-			m := measure(e.C)
-			m.row, m.col, m.reactive = e.Row, e.Col, true
-			cLo, cHi = min(cLo, m.log), max(cHi, m.log)
-			list = append(list, m)
-		}
-	}
-	if gLo > gHi || cLo > cHi {
-		return 0
-	}
-	const log2Of10 = 3.3219280948873623
-	lo := int(math.Floor((gLo - cHi) / log2Of10))
-	hi := int(math.Ceil((gHi - cLo) / log2Of10))
-	work := scaleWork{
-		row2: make([]int, p.Size()), row5: make([]int, p.Size()), rowMax: make([]float64, p.Size()),
-		col2: make([]int, p.Size()), col5: make([]int, p.Size()),
-	}
-	const candidates = 12
-	best, bestBits := 0, math.Inf(1)
-	for {
-		step := max(1, (hi-lo)/candidates)
-		for k := lo; k <= hi; k += step {
-			if b := work.bits(list, k); b < bestBits {
-				best, bestBits = k, b
-			}
-		}
-		if step == 1 {
-			return best
-		}
-		lo, hi = best-step+1, best+step-1
-	}
-}
-
-// measure reads size and valuations of a nonzero number.
-func measure(r *big.Rat) magnitude {
-	n2, n5 := valuations(r.Num())
-	d2, d5 := valuations(r.Denom())
-	return magnitude{log: log2Int(r.Num()) - log2Int(r.Denom()), two: n2 - d2, five: n5 - d5}
-}
-
-// valuations returns the exponents of 2 and of 5 in x ≠ 0; the second is 0
-// also for long numbers, where it is not worth the division.
-func valuations(x *big.Int) (two, five int) {
-	two = int(x.TrailingZeroBits())
-	if !x.IsUint64() && !x.IsInt64() {
-		if x.BitLen() > 320 {
-			return two, 0
-		}
-		var q, r big.Int
-		q.Rsh(x, uint(two))
-		for {
-			quo, rem := new(big.Int).QuoRem(&q, bigFive, &r)
-			if rem.Sign() != 0 {
-				return two, five
-			}
-			q.Set(quo)
-			five++
-		}
-	}
-	var t big.Int
-	v := t.Abs(x).Uint64() >> uint(two)
-	for v%5 == 0 {
-		v /= 5
-		five++
-	}
-	return two, five
-}
-
-var bigFive = big.NewInt(5)
-
-// log2Int returns log2|x| for x ≠ 0 with a relative error of the argument
-// below 2^-50.
-func log2Int(x *big.Int) float64 {
-	k := x.BitLen()
-	if k <= 63 {
-		v := x.Int64()
-		return math.Log2(math.Abs(float64(v)))
-	}
-	var t big.Int
-	return math.Log2(float64(t.Rsh(t.Abs(x), uint(k-63)).Int64())) + float64(k-63)
-}
-
-// scaleWork is the memory of the estimate.
-type scaleWork struct {
-	row2, row5, col2, col5 []int
-	rowMax                 []float64
-}
-
-// bits estimates the length of the determinant's coefficients for the time
-// scale 10^k: the logarithms of the rows' largest numbers after removing
-// denominators by rows and common factors by columns.
-func (w *scaleWork) bits(list []magnitude, k int) float64 {
-	const none = math.MaxInt / 2
-	for i := range w.row2 {
-		w.row2[i], w.row5[i], w.rowMax[i], w.col2[i], w.col5[i] = none, none, math.Inf(-1), none, none
-	}
-	for i := range list {
-		m := &list[i]
-		d := 0
-		if m.reactive {
-			d = k
-		}
-		w.row2[m.row] = min(w.row2[m.row], m.two+d)
-		w.row5[m.row] = min(w.row5[m.row], m.five+d)
-	}
-	for i := range list {
-		m := &list[i]
-		d := 0
-		if m.reactive {
-			d = k
-		}
-		w.col2[m.col] = min(w.col2[m.col], m.two+d-w.row2[m.row])
-		w.col5[m.col] = min(w.col5[m.col], m.five+d-w.row5[m.row])
-	}
-	const log2Of5 = 2.321928094887362
-	for i := range list {
-		m := &list[i]
-		d := 0
-		if m.reactive {
-			d = k
-		}
-		l := m.log + float64(d)*(1+log2Of5) -
-			float64(w.row2[m.row]+w.col2[m.col]) - log2Of5*float64(w.row5[m.row]+w.col5[m.col])
-		w.rowMax[m.row] = max(w.rowMax[m.row], l)
-	}
-	sum := 0.0
-	for _, l := range w.rowMax {
-		if !math.IsInf(l, -1) {
-			sum += l
-		}
-	}
-	return sum
 }
