@@ -18,7 +18,7 @@ type handPlant struct {
 
 func (p *handPlant) memories() []memory { return p.names }
 
-func (p *handPlant) memoryRow(_ context.Context, i int) (*row, error) { return p.rows[i], nil }
+func (p *handPlant) memoryRows(context.Context, bool) ([]*row, error) { return p.rows, nil }
 
 func poly(c ...int64) exact.Poly { return exact.PolyFromInt64s(c...) }
 
@@ -57,7 +57,7 @@ func delayedStep(x, from number.Exact) Wave {
 // transferSignal is the answer to one source through a transfer h.
 func transferSignal(t testing.TB, h exact.Ratio, w Wave) *Signal {
 	t.Helper()
-	s, err := newSolution([]*big.Rat{new(big.Rat)}, []plant{&handPlant{}}, []driven{{0, w}}, nil)
+	s, err := newSolution([]*big.Rat{new(big.Rat)}, []plant{&handPlant{}}, []driven{{0, w}})
 	if err != nil {
 		t.Fatal(err)
 	}

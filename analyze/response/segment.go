@@ -208,7 +208,7 @@ func (g *gathering) sum() *sum {
 
 func (f *family) termPole(j int, p number.ComplexBall) termPole {
 	k := f.poles[j]
-	id := fmt.Sprintf("%d.%d.%p", k.member, k.index, f)
+	id := fmt.Sprintf("%p.%d", f.factors[k.member], k.index)
 	if k.rational != nil {
 		id = k.rational.RatString()
 	}

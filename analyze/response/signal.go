@@ -46,6 +46,9 @@ type Signal struct {
 	comps    []component
 	// before gives the value at 0−; nil is zero.
 	before func(ctx context.Context) (number.Exact, error)
+	// kin, when set, are the components whose poles the family has to tell
+	// apart: those of this signal and of others it is multiplied with.
+	kin []component
 
 	mu         sync.Mutex
 	family     *family
@@ -297,24 +300,11 @@ func (s *Signal) prepared(ctx context.Context) (*family, []*expansion, error) {
 	if s.family != nil {
 		return s.family, s.expansions, nil
 	}
-	var b base
-	for _, c := range s.comps {
-		if c.fraction.den.Order() > 0 {
-			b.insert(exact.PolyFromInt64s(0, 1))
-			break
-		}
+	kin := s.kin
+	if kin == nil {
+		kin = s.comps
 	}
-	for _, c := range s.comps {
-		for _, p := range []exact.Poly{c.fraction.source, c.forced} {
-			if p.Degree() > 0 {
-				b.insert(exact.GCD(c.fraction.den, p).Radical())
-			}
-		}
-	}
-	for _, c := range s.comps {
-		b.insertFactors(c.fraction.factors)
-	}
-	f, err := newFamily(ctx, b, s.solution.library)
+	f, err := newFamily(ctx, baseOf(kin), s.solution.library)
 	if err != nil {
 		return nil, nil, err
 	}
@@ -329,6 +319,30 @@ func (s *Signal) prepared(ctx context.Context) (*family, []*expansion, error) {
 	}
 	s.family = f
 	return f, s.expansions, nil
+}
+
+// baseOf refines the denominators of all components into coprime factors. The
+// pole at the origin, the sources' frequencies and those that count as forced
+// get factors of their own.
+func baseOf(list []component) base {
+	var b base
+	for _, c := range list {
+		if c.fraction.den.Order() > 0 {
+			b.insert(polyS)
+			break
+		}
+	}
+	for _, c := range list {
+		for _, p := range []exact.Poly{c.fraction.source, c.forced} {
+			if p.Degree() > 0 {
+				b.insert(exact.GCD(c.fraction.den, p).Radical())
+			}
+		}
+	}
+	for _, c := range list {
+		b.insertFactors(c.fraction.factors)
+	}
+	return b
 }
 
 // counts tells whether the poles of a member of the base count in component c.

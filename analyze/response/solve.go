@@ -8,6 +8,7 @@ import (
 	"sync"
 
 	"portlight/analyze/exact"
+	"portlight/analyze/network"
 	"portlight/dialect/number"
 )
 
@@ -27,13 +28,15 @@ var (
 // times what a shown figure needs, and reached in well under a second.
 const maxPrecision = 1 << 14
 
-// memory names a quantity that carries over from one interval to the next: a
-// capacitor voltage, an inductor current, or an inner state of an element.
-type memory struct{ element, index int }
+// memory names what carries over from one interval to the next: a capacitor
+// voltage, an inductor current, or an inner state of an element.
+type memory = network.Memory
 
-// row holds the transfers to one output: from every memory of the network and
-// from every source element that can act.
+// row holds the transfers to one output: from the given initial state as a
+// whole, from every memory of the network alone, and from every source element
+// that can act. Only one of initial and memories is there, as asked.
 type row struct {
+	initial  exact.Ratio
 	memories []exact.Ratio
 	sources  map[int]exact.Ratio
 }
@@ -42,8 +45,9 @@ type row struct {
 type plant interface {
 	// memories lists the memories in the order of row.memories.
 	memories() []memory
-	// memoryRow returns the transfers to the value of a memory.
-	memoryRow(ctx context.Context, index int) (*row, error)
+	// memoryRows returns the transfers to the value of every memory; first
+	// says whether from the initial state or from memories.
+	memoryRows(ctx context.Context, first bool) ([]*row, error)
 }
 
 // driven is a source with its wave.
@@ -66,20 +70,18 @@ type stretch struct {
 // It is safe for concurrent use.
 type Solution struct {
 	stretches []*stretch
-	before    plant // nil: as in the first stretch
-	steady    bool
 	sources   []driven
-	initial   map[memory]number.Exact
+	before    *past
 	exact     bool // no number of sources and state is a stand-in
 	library   *rootLibrary
 }
 
 // newSolution checks the intervals and prepares; nothing is computed yet.
-func newSolution(starts []*big.Rat, plants []plant, sources []driven, initial map[memory]number.Exact) (*Solution, error) {
+func newSolution(starts []*big.Rat, plants []plant, sources []driven) (*Solution, error) {
 	if len(starts) == 0 || starts[0].Sign() != 0 {
 		return nil, ErrIntervals
 	}
-	s := &Solution{sources: sources, initial: initial, exact: true, library: &rootLibrary{}}
+	s := &Solution{sources: sources, exact: true, library: &rootLibrary{}}
 	for i, start := range starts {
 		st := &stretch{start: start, plant: plants[i], state: map[uint][][]number.Ball{}}
 		if i > 0 {
@@ -92,9 +94,6 @@ func newSolution(starts []*big.Rat, plants []plant, sources []driven, initial ma
 	}
 	for _, d := range sources {
 		s.exact = s.exact && d.wave.isExact()
-	}
-	for _, x := range initial {
-		s.exact = s.exact && x.IsExact()
 	}
 	return s, nil
 }
@@ -136,17 +135,10 @@ func (s *Solution) components(ctx context.Context, k int, r *row) ([]component, 
 
 // initialComponent is the zero-input answer in the first stretch: exact.
 func (s *Solution) initialComponent(st *stretch, r *row) (component, bool) {
-	sum := exact.PolyRatio(exact.Poly{})
-	for i, m := range st.plant.memories() {
-		x, ok := s.initial[m]
-		if ok && x.Rat().Sign() != 0 {
-			sum = sum.Add(r.memories[i].ScaleBy(x.Rat()))
-		}
-	}
-	if sum.IsZero() {
+	if r.initial.IsZero() {
 		return component{}, false
 	}
-	f := newFraction(sum, denominator(sum), one)
+	f := newFraction(r.initial, denominator(r.initial), one)
 	return component{from: st.start, until: st.end, weight: unitWeight, fraction: f}, true
 }
 
@@ -207,12 +199,12 @@ func (s *Solution) memoryComponents(ctx context.Context, k int) ([][]component, 
 	if st.rows != nil {
 		return st.rows, nil
 	}
-	rows := make([][]component, len(st.plant.memories()))
-	for i := range rows {
-		r, err := st.plant.memoryRow(ctx, i)
-		if err != nil {
-			return nil, err
-		}
+	transfers, err := st.plant.memoryRows(ctx, k == 0)
+	if err != nil {
+		return nil, err
+	}
+	rows := make([][]component, len(transfers))
+	for i, r := range transfers {
 		if rows[i], err = s.components(ctx, k, r); err != nil {
 			return nil, err
 		}

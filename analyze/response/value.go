@@ -187,20 +187,37 @@ func (s *Signal) ExactAt(ctx context.Context, t *big.Rat, side Side) (*big.Rat, 
 		x, err := s.Before(ctx)
 		return x.Rat(), err == nil, err
 	}
-	parts, err := s.partsAt(ctx, t, side, number.MinPrecision)
-	if err != nil {
-		return nil, false, err
-	}
 	sum := new(big.Rat)
-	for _, c := range parts {
-		if c.some {
+	for i := range s.comps {
+		c := &s.comps[i]
+		if !c.acts(t, side) {
+			continue
+		}
+		x, ok := c.exactAt(new(big.Rat).Sub(t, c.from))
+		if !ok {
 			return nil, false, nil
 		}
-		if c.exact != nil {
-			sum.Add(sum, c.exact)
-		}
+		sum.Add(sum, x)
 	}
 	return sum, true, nil
+}
+
+// exactAt is the component's value at τ when it is rational for sure: at its
+// beginning, and where its only pole is the origin.
+func (c *component) exactAt(tau *big.Rat) (*big.Rat, bool) {
+	if c.weight.at != nil || c.share != wholeShare {
+		return nil, false
+	}
+	v := new(big.Rat)
+	switch f := c.fraction; {
+	case tau.Sign() == 0:
+		v = f.initialValue()
+	case f.den.Degree() == f.den.Order():
+		v = polynomialAt(f.originCoefficients(), tau)
+	default:
+		return nil, false
+	}
+	return v.Mul(v, c.weight.rational), true
 }
 
 // Value returns the value at t, the right limit or the left one, with the

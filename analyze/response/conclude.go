@@ -1,0 +1,378 @@
+package response
+
+import (
+	"context"
+	"math"
+	"math/big"
+
+	"portlight/dialect/number"
+)
+
+// place is a candidate for the greatest value: bounds of it and where it is.
+type place struct {
+	value    number.Ball
+	exact    *big.Rat
+	at       number.Ball
+	hasAt    bool
+	left     bool
+	attained bool
+}
+
+// conclude refines every place where the maximum may be and takes the greatest.
+// The limit for t → ∞, when there is one, competes.
+func (s *search) conclude(ctx context.Context, limit *Extreme) (Extreme, error) {
+	list := s.clusters()
+	if len(list) > clusterBudget {
+		return Extreme{}, undecided("the curve has too many nearly equal peaks in the range")
+	}
+	var places []place
+	if limit != nil {
+		places = append(places, place{value: limit.Value, exact: limit.Exact})
+	}
+	refined := 0
+	for _, c := range list {
+		if err := ctx.Err(); err != nil {
+			return Extreme{}, err
+		}
+		if refined++; refined > 64 && len(places) > 0 {
+			// Equal peaks of an oscillation: the coarse bounds of the later ones
+			// do not change which is the first.
+			places = append(places, s.coarse(c))
+			continue
+		}
+		p, ok, err := s.refine(ctx, c)
+		if err != nil {
+			return Extreme{}, err
+		}
+		if ok {
+			places = append(places, p)
+		}
+	}
+	if len(places) == 0 {
+		return Extreme{}, undecided("no greatest value was found")
+	}
+	return greatestOf(places), nil
+}
+
+// greatestOf takes the greatest of the places; where balls overlap, the first
+// one that is taken and not only approached names the instant.
+func greatestOf(places []place) Extreme {
+	lower := places[0].value.Lower()
+	for _, p := range places[1:] {
+		if l := p.value.Lower(); l.Cmp(lower) > 0 {
+			lower = l
+		}
+	}
+	var out *place
+	var upper *big.Float
+	for i := range places {
+		p := &places[i]
+		u := p.value.Upper()
+		if u.Cmp(lower) < 0 {
+			continue
+		}
+		if upper == nil || u.Cmp(upper) > 0 {
+			upper = u
+		}
+		if out == nil || p.hasAt && !out.hasAt {
+			out = p
+		}
+	}
+	e := Extreme{At: out.at, HasAt: out.hasAt, Left: out.left, Attained: out.attained, Proved: true}
+	e.Value = number.Hull(lower, upper, out.value.Prec())
+	if out.exact != nil && out.value.Upper().Cmp(upper) >= 0 {
+		e.Exact, e.Value = out.exact, out.value
+	}
+	return e
+}
+
+// coarse is what the search itself knows of a cluster.
+func (s *search) coarse(c cluster) place {
+	lo, hi := new(big.Float).SetFloat64(s.best), new(big.Float).SetFloat64(c.hi)
+	p := place{value: number.Hull(lo, hi, refinePrecision), attained: true, hasAt: true}
+	p.at = number.Hull(new(big.Float).SetFloat64(c.a), new(big.Float).SetFloat64(c.b), refinePrecision)
+	p.at = p.at.Add(number.BallFromRat(c.stage.origin, refinePrecision))
+	return p
+}
+
+// refine finds the greatest value within a cluster to many digits: at an end
+// when the curve is monotone there, or at the one zero of the derivative. ok is
+// false when the cluster turns out to hold no maximum of its own.
+func (s *search) refine(ctx context.Context, c cluster) (place, bool, error) {
+	if math.IsInf(c.b, 1) {
+		return s.refineTail(ctx, c)
+	}
+	switch {
+	case c.rising:
+		return s.end(ctx, c, true)
+	case c.falling:
+		return s.end(ctx, c, false)
+	}
+	sums, ok := s.resolve(c)
+	if !ok {
+		return s.coarse(c), true, nil
+	}
+	d1 := sums.derivative()
+	if len(d1.terms) == 0 { // constant
+		return s.end(ctx, c, false)
+	}
+	d2 := d1.derivative()
+	box := ballBetween(c.a, c.b)
+	if sign, decided := d2.at(box).Sign(); !decided || sign >= 0 {
+		return s.coarse(c), true, nil
+	}
+	// The derivative falls: it has one zero, or none and the maximum is an end.
+	if sign, decided := d1.at(number.BallFromFloat64(c.a, refinePrecision)).Sign(); decided && sign <= 0 {
+		return s.end(ctx, c, false)
+	}
+	if c.b < c.stage.length {
+		if sign, decided := d1.at(number.BallFromFloat64(c.b, refinePrecision)).Sign(); decided && sign >= 0 {
+			return s.end(ctx, c, true)
+		}
+	} else if sign, decided := d1.at(c.stage.lengthBall()).Sign(); decided && sign >= 0 {
+		return s.end(ctx, c, true)
+	}
+	tau := newton(d1, d2, box)
+	mid := number.BallFromFloat(tau.Mid(), refinePrecision)
+	// f(τ) = f(mid) + f′(ξ)(τ−mid) with ξ in the ball of τ.
+	reach := d1.at(tau).Abs().Mul(number.BallFromFloat(tau.Rad(), refinePrecision))
+	p := place{value: sums.at(mid).WithBound(reach), hasAt: true, attained: true}
+	p.at = tau.Add(number.BallFromRat(c.stage.origin, refinePrecision))
+	return p, true, nil
+}
+
+// ballBetween holds every τ from a to b.
+func ballBetween(a, b float64) number.Ball {
+	return number.Hull(new(big.Float).SetFloat64(a), new(big.Float).SetFloat64(b), refinePrecision)
+}
+
+// lengthBall is the length of a stage that ends.
+func (st *stage) lengthBall() number.Ball {
+	switch {
+	case st.period != nil:
+		return *st.period
+	case st.end == nil:
+		return number.BallFromFloat64(st.length, refinePrecision)
+	}
+	return number.BallFromRat(new(big.Rat).Sub(st.end, st.origin), refinePrecision)
+}
+
+// newton encloses the zero of f in box, where df, its derivative, has no zero:
+// the interval Newton step N = m − f(m)/df(box) keeps every zero, and steps are
+// taken while they gain.
+func newton(f, df *sum, box number.Ball) number.Ball {
+	for range 40 {
+		mid := number.BallFromFloat(box.Mid(), refinePrecision)
+		next := mid.Sub(f.at(mid).Quo(df.at(box)))
+		if !next.IsFinite() {
+			return box
+		}
+		next = intersect(next, box)
+		gain := new(big.Float).Mul(next.Rad(), big.NewFloat(1.5))
+		if gain.Cmp(box.Rad()) >= 0 {
+			return next
+		}
+		box = next
+	}
+	return box
+}
+
+// intersect holds what two balls that share a number have in common.
+func intersect(a, b number.Ball) number.Ball {
+	lo, hi := a.Lower(), a.Upper()
+	if b.Lower().Cmp(lo) > 0 {
+		lo = b.Lower()
+	}
+	if b.Upper().Cmp(hi) < 0 {
+		hi = b.Upper()
+	}
+	if lo.Cmp(hi) > 0 {
+		return a
+	}
+	return number.Hull(lo, hi, refinePrecision)
+}
+
+// end evaluates the curve at one end of a cluster. An end inside a stage borders
+// on a box that was ruled out, so it is no maximum; it is kept as a bound.
+func (s *search) end(ctx context.Context, c cluster, right bool) (place, bool, error) {
+	st := c.stage
+	if right && (st.end == nil || c.b < st.length) || !right && c.a > 0 {
+		tau := c.a
+		if right {
+			tau = c.b
+		}
+		x := number.BallFromFloat64(tau, refinePrecision)
+		p := place{value: s.curve.valueOfSums(st.sums, x), hasAt: true, attained: true}
+		p.at = x.Add(number.BallFromRat(st.origin, refinePrecision))
+		return p, true, nil
+	}
+	t, side := st.origin, Right
+	if right {
+		t, side = st.end, Left
+		if t == nil || st.end.Cmp(st.origin) == 0 {
+			t, side = st.origin, Right
+		}
+	}
+	p := place{hasAt: true, attained: true, left: side == Left}
+	p.at = number.BallFromRat(t, refinePrecision)
+	tau := number.BallFromRat(new(big.Rat).Sub(t, st.origin), refinePrecision)
+	p.value = s.curve.valueOfSums(st.sums, tau)
+	if st.steady {
+		return p, true, nil
+	}
+	r, ok, err := s.curve.ExactAt(ctx, t, side)
+	if err != nil {
+		return p, false, err
+	}
+	if ok {
+		p.exact, p.value = r, number.BallFromRat(r, refinePrecision)
+	}
+	return p, true, nil
+}
+
+// valueOfSums evaluates the curve from the sums of its leaves.
+func (c *Curve) valueOfSums(sums []*sum, tau number.Ball) number.Ball {
+	v, _ := c.valueNext(sums, tau)
+	return v
+}
+
+func (c *Curve) valueNext(sums []*sum, tau number.Ball) (number.Ball, []*sum) {
+	if c.op == opLeaf {
+		return sums[0].at(tau), sums[1:]
+	}
+	v := make([]number.Ball, len(c.args))
+	for i, a := range c.args {
+		v[i], sums = a.valueNext(sums, tau)
+	}
+	return applyBall(c.op, v), sums
+}
+
+// resolve finds the one sum that the curve is within a cluster, when the signs
+// and orders that abs, least and greatest depend on do not change there.
+func (s *search) resolve(c cluster) (*sum, bool) {
+	leaves := make([]enclosure, len(c.stage.sums))
+	if math.IsInf(c.b, 1) {
+		for i, x := range c.stage.floats {
+			leaves[i] = x.crude(c.a, c.b)
+		}
+	} else {
+		box := ballBetween(c.a, c.b)
+		for i, x := range c.stage.sums {
+			v := x.at(box)
+			lo, _ := v.Lower().Float64()
+			hi, _ := v.Upper().Float64()
+			leaves[i] = enclosure{lo: math.Nextafter(lo, math.Inf(-1)), hi: math.Nextafter(hi, math.Inf(1))}
+		}
+	}
+	signs, _, rest, ok := s.curve.branch(leaves, 1)
+	if !ok || len(rest) != 0 {
+		return nil, false
+	}
+	return combineSums(c.stage.sums, signs), true
+}
+
+// branch tells with which sign each leaf counts, given enclosures of the leaves.
+func (c *Curve) branch(leaves []enclosure, sign int) (signs []int, value enclosure, rest []enclosure, ok bool) {
+	if c.op == opLeaf {
+		return []int{sign}, leaves[0], leaves[1:], true
+	}
+	first := sign
+	if c.op == opNegate {
+		first = -sign
+	}
+	signs, value, rest, ok = c.args[0].branch(leaves, first)
+	if !ok {
+		return nil, value, rest, false
+	}
+	switch c.op {
+	case opNegate:
+		return signs, value.negated(), rest, true
+	case opAbs:
+		switch {
+		case value.lo >= 0:
+			return signs, value, rest, true
+		case value.hi <= 0:
+			for i := range signs {
+				signs[i] = -signs[i]
+			}
+			return signs, value.negated(), rest, true
+		}
+		return nil, value, rest, false
+	}
+	more, other, rest, ok := c.args[1].branch(rest, sign)
+	if !ok {
+		return nil, value, rest, false
+	}
+	switch {
+	case c.op == opAdd:
+		sum := enclosure{lo: value.lo + other.lo, hi: value.hi + other.hi}.outward()
+		return append(signs, more...), sum, rest, true
+	case value.hi < other.lo && c.op == opLeast || value.lo > other.hi && c.op == opGreatest:
+		return append(signs, make([]int, len(more))...), value, rest, true
+	case other.hi < value.lo && c.op == opLeast || other.lo > value.hi && c.op == opGreatest:
+		return append(make([]int, len(signs)), more...), other, rest, true
+	}
+	return nil, value, rest, false
+}
+
+// refineTail treats a cluster without end: when the curve is monotone from its
+// beginning on, it either falls, and has its greatest value there, or rises
+// towards its limit, which competes already.
+func (s *search) refineTail(ctx context.Context, c cluster) (place, bool, error) {
+	if sums, ok := s.resolve(c); ok {
+		d := sums.derivative()
+		if len(d.terms) == 0 { // constant
+			p, ok, err := s.end(ctx, cluster{stage: c.stage, index: c.index, a: c.a, b: c.b}, false)
+			return p, ok, err
+		}
+		for t := c.a; t < 1e6*math.Max(c.a, 1/math.Max(c.stage.slowest(), 1e-250)); t = 2*t + 1/math.Max(c.stage.slowest(), 1e-250) {
+			sign := d.dominance(number.BallFromFloat64(t, refinePrecision))
+			switch {
+			case sign == 0:
+				continue
+			case t > c.a:
+				return s.cutThenRefine(ctx, c, t, sign)
+			case sign > 0:
+				return place{}, false, nil
+			}
+			return s.end(ctx, c, false)
+		}
+	}
+	p := s.coarse(cluster{stage: c.stage, index: c.index, a: c.a, b: c.a, hi: c.hi})
+	p.hasAt, p.attained = false, false
+	return p, true, nil
+}
+
+// cutThenRefine treats a tail that is monotone only from τ = t on: what lies
+// before is searched on its own.
+func (s *search) cutThenRefine(ctx context.Context, c cluster, t float64, sign int) (place, bool, error) {
+	inner := &search{curve: s.curve, stages: s.stages, scale: s.scale, best: s.best, ceiling: math.NaN()}
+	inner.add(&box{stage: c.stage, index: c.index, a: c.a, b: t, on: c.stage.crude(s.curve, c.a, t)})
+	if err := inner.run(ctx); err != nil {
+		return place{}, false, err
+	}
+	var found []place
+	for _, d := range inner.clusters() {
+		p, ok, err := inner.refine(ctx, d)
+		if err != nil {
+			return place{}, false, err
+		}
+		if ok {
+			found = append(found, p)
+		}
+	}
+	if sign < 0 {
+		p, ok, err := s.end(ctx, cluster{stage: c.stage, index: c.index, a: t, b: c.b}, false)
+		if err != nil {
+			return place{}, false, err
+		}
+		if ok {
+			found = append(found, p)
+		}
+	}
+	if len(found) == 0 {
+		return place{}, false, nil
+	}
+	e := greatestOf(found)
+	return place{value: e.Value, exact: e.Exact, at: e.At, hasAt: e.HasAt, left: e.Left, attained: e.Attained}, true, nil
+}

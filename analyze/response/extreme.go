@@ -1,0 +1,481 @@
+package response
+
+import (
+	"container/heap"
+	"context"
+	"math"
+	"math/big"
+	"sort"
+
+	"portlight/dialect/number"
+)
+
+const (
+	// tolerance, relative to the size of the signal, is how near the bound of
+	// the unsearched rest must come before the place of a maximum is refined.
+	tolerance = 2e-13
+	// panelFloor is the size, relative to the signal, below which a term that is
+	// too fast for a panel becomes a bound.
+	panelFloor = 1e-17
+	// narrowest is the width in x at which a panel is cut no further.
+	narrowest = 1.0 / (1 << 24)
+	// searchBudget is how many boxes a search may look at: seconds of work.
+	searchBudget = 4_000_000
+	// clusterBudget is how many places may compete for the maximum in the end.
+	clusterBudget = 200_000
+	// refinePrecision is the working precision of the last refinement.
+	refinePrecision = 256
+)
+
+// Extreme is a greatest value, or a least one.
+type Extreme struct {
+	Value number.Ball
+	Exact *big.Rat // the value, when it is rational for sure
+	// At is the first instant where it is taken; HasAt is false where it is only
+	// approached in the limit. Left tells that it is the left limit there.
+	At    number.Ball
+	HasAt bool
+	Left  bool
+	// Attained is false where the value is approached but maybe never taken.
+	Attained bool
+	// Proved is false only where ErrUndecided is returned beside the best bounds.
+	Proved bool
+}
+
+// box is a stretch of time within a stage, and what is known of the curve there.
+type box struct {
+	stage  *stage
+	index  int     // of the stage
+	a, b   float64 // τ; b may be infinite
+	models []model // of the leaves, once the panel is narrow enough
+	m, h   float64
+	u, v   float64 // part of the panel the box is
+	on     enclosure
+}
+
+// boxes is a heap, greatest upper bound first.
+type boxes []*box
+
+func (q boxes) Len() int           { return len(q) }
+func (q boxes) Less(i, j int) bool { return q[i].on.hi > q[j].on.hi }
+func (q boxes) Swap(i, j int)      { q[i], q[j] = q[j], q[i] }
+func (q *boxes) Push(x any)        { *q = append(*q, x.(*box)) }
+func (q *boxes) Pop() any {
+	old := *q
+	x := old[len(old)-1]
+	*q = old[:len(old)-1]
+	return x
+}
+
+// search is the branch and bound for the greatest value of a curve.
+type search struct {
+	curve  *Curve
+	stages []*stage
+	scale  float64
+	best   float64 // the curve is at least that somewhere, or in the limit
+	queue  boxes
+	stuck  []*box
+	steps  int
+	// ceiling bounds the steady oscillation of the last stage from above, when
+	// it goes on for ever and oscillates; otherwise it is NaN.
+	ceiling float64
+}
+
+func newSearch(c *Curve, stages []*stage) *search {
+	s := &search{curve: c, stages: stages, best: math.Inf(-1), ceiling: math.NaN()}
+	for i, st := range stages {
+		s.scale = math.Max(s.scale, st.scale)
+		s.add(&box{stage: st, index: i, a: 0, b: st.length, on: st.crude(c, 0, st.length)})
+	}
+	return s
+}
+
+func (s *search) add(b *box) {
+	if b.on.hi >= s.best {
+		heap.Push(&s.queue, b)
+	}
+}
+
+// run narrows the search until no box can hold more than best + tolerance. The
+// boxes that may hold the maximum are then in queue and stuck.
+func (s *search) run(ctx context.Context) error {
+	for len(s.queue) > 0 && s.queue[0].on.hi > s.best+tolerance*s.scale {
+		if s.steps++; s.steps > searchBudget {
+			return undecided("the curve has too many nearly equal peaks in the range")
+		}
+		if s.steps%256 == 0 {
+			if err := ctx.Err(); err != nil {
+				return err
+			}
+		}
+		s.split(heap.Pop(&s.queue).(*box))
+	}
+	return nil
+}
+
+// split replaces a box by narrower ones with better bounds.
+func (s *search) split(b *box) {
+	switch {
+	case math.IsInf(b.b, 1):
+		s.cutTail(b)
+	case b.models != nil:
+		if b.v-b.u <= narrowest {
+			s.stuck = append(s.stuck, b)
+			return
+		}
+		c := (b.u + b.v) / 2
+		s.addPart(b, b.u, c)
+		s.addPart(b, c, b.v)
+	case s.makePanel(b):
+		s.addPart(b, -1, 1)
+	default:
+		c := b.a + (b.b-b.a)/2
+		if c <= b.a || c >= b.b {
+			s.stuck = append(s.stuck, b)
+			return
+		}
+		for _, part := range [][2]float64{{b.a, c}, {c, b.b}} {
+			s.add(&box{stage: b.stage, index: b.index, a: part[0], b: part[1], on: b.stage.crude(s.curve, part[0], part[1])})
+		}
+	}
+}
+
+// cutTail cuts a piece off a box without end.
+func (s *search) cutTail(b *box) {
+	cut := math.Max(2*b.a, 1/math.Max(b.stage.slowest(), 1e-250))
+	if math.IsInf(cut, 1) || cut <= b.a {
+		s.stuck = append(s.stuck, b)
+		return
+	}
+	s.add(&box{stage: b.stage, index: b.index, a: b.a, b: cut, on: b.stage.crude(s.curve, b.a, cut)})
+	rest := &box{stage: b.stage, index: b.index, a: cut, b: b.b, on: b.stage.crude(s.curve, cut, b.b)}
+	if !math.IsNaN(s.ceiling) {
+		rest.on.hi = math.Min(rest.on.hi, s.ceiling+b.stage.transientBound(cut))
+	}
+	s.add(rest)
+}
+
+// slowest is the least |Re p| of what decays or grows, or the largest |p| when
+// nothing does.
+func (st *stage) slowest() float64 {
+	slow, fast := math.Inf(1), 0.0
+	for _, x := range st.floats {
+		for i := range x.terms {
+			f := &x.terms[i]
+			fast = math.Max(fast, f.rate)
+			if !f.zero && !f.axis {
+				slow = math.Min(slow, math.Abs(f.sigma))
+			}
+		}
+	}
+	if math.IsInf(slow, 1) || slow == 0 {
+		return fast
+	}
+	return slow
+}
+
+// transientBound bounds what all decaying terms add up to from τ on.
+func (st *stage) transientBound(tau float64) float64 {
+	total := 0.0
+	for _, x := range st.floats {
+		for i := range x.terms {
+			if f := &x.terms[i]; !f.zero && !f.axis {
+				total += f.bound(tau, math.Inf(1))
+			}
+		}
+	}
+	return total * (1 + 8*unit)
+}
+
+// makePanel builds the models of a box, if it is narrow enough for them.
+func (s *search) makePanel(b *box) bool {
+	b.m = b.a + (b.b-b.a)/2
+	b.h = math.Nextafter(math.Max(b.b-b.m, b.m-b.a), math.Inf(1))
+	models, ok := b.stage.models(b.m, b.h, s.scale)
+	if ok {
+		b.models = models
+	}
+	return ok
+}
+
+// models expands every leaf on [m−h, m+h].
+func (st *stage) models(m, h, scale float64) ([]model, bool) {
+	out := make([]model, len(st.floats))
+	for i, x := range st.floats {
+		if x.rate*h > 64*panelPhase && m-h <= 0 {
+			return nil, false
+		}
+		var ok bool
+		if out[i], ok = x.model(m, h, panelFloor*scale); !ok {
+			return nil, false
+		}
+		if out[i].err > 1e-11*out[i].size() && out[i].err > tolerance*scale/4 {
+			// Terms cancel: expand them with balls, on a panel narrow enough.
+			if x.rate*h > panelPhase/8 {
+				return nil, false
+			}
+			out[i] = st.sums[i].ballModel(m, h)
+		}
+	}
+	return out, true
+}
+
+// size is the sum of the coefficients' sizes.
+func (p *model) size() float64 {
+	s := 0.0
+	for _, a := range p.a {
+		s += math.Abs(a)
+	}
+	return s
+}
+
+// addPart adds the part [u, v] of a panel.
+func (s *search) addPart(b *box, u, v float64) {
+	part := &box{stage: b.stage, index: b.index, models: b.models, m: b.m, h: b.h, u: u, v: v}
+	part.a = math.Max(b.a, down(b.m+b.h*u, b.m))
+	part.b = math.Min(b.b, up(b.m+b.h*v, b.m))
+	part.on = s.evaluate(b.models, u, v)
+	c := (u + v) / 2
+	s.best = math.Max(s.best, s.evaluate(b.models, c, c).lo)
+	s.add(part)
+}
+
+// down and up leave room for the rounding of m + h·x.
+func down(x, m float64) float64 { return x - 4*unit*(math.Abs(x)+m) }
+func up(x, m float64) float64   { return x + 4*unit*(math.Abs(x)+m) }
+
+// evaluate encloses the curve on a part of a panel.
+func (s *search) evaluate(models []model, u, v float64) enclosure {
+	leaves := make([]enclosure, len(models))
+	for i := range models {
+		leaves[i] = models[i].on(u, v)
+	}
+	return s.curve.enclose(leaves)
+}
+
+// cluster is a connected stretch of boxes that may hold the maximum.
+type cluster struct {
+	stage           *stage
+	index           int
+	a, b            float64
+	hi              float64
+	rising, falling bool
+}
+
+// clusters joins the boxes that may hold the maximum, in order of time.
+func (s *search) clusters() []cluster {
+	var list []*box
+	for _, b := range append(append([]*box(nil), s.queue...), s.stuck...) {
+		if b.on.hi >= s.best {
+			list = append(list, b)
+		}
+	}
+	sort.Slice(list, func(i, j int) bool {
+		if list[i].index != list[j].index {
+			return list[i].index < list[j].index
+		}
+		return list[i].a < list[j].a
+	})
+	var out []cluster
+	for _, b := range list {
+		rising, falling := b.on.dlo > 0, b.on.dhi < 0
+		if n := len(out); n > 0 && out[n-1].index == b.index && b.a <= out[n-1].b {
+			c := &out[n-1]
+			c.b, c.hi = math.Max(c.b, b.b), math.Max(c.hi, b.on.hi)
+			c.rising, c.falling = c.rising && rising, c.falling && falling
+			continue
+		}
+		out = append(out, cluster{b.stage, b.index, b.a, b.b, b.on.hi, rising, falling})
+	}
+	return out
+}
+
+// greatest finds the greatest value of the curve in the range.
+func (c *Curve) greatest(ctx context.Context, r Range) (Extreme, error) {
+	if t, yes, err := c.hasImpulse(ctx, r); err != nil {
+		return Extreme{}, err
+	} else if yes {
+		return Extreme{}, undefined("there is an impulse at t = %s s", shortTime(t))
+	}
+	stages, err := c.stages(ctx, r, refinePrecision)
+	if err != nil {
+		return Extreme{}, err
+	}
+	s := newSearch(c, stages)
+	var floor *Extreme // the least upper limit for t → ∞
+	if last := stages[len(stages)-1]; last.end == nil {
+		if floor, err = s.prepareTail(ctx, last); err != nil {
+			return Extreme{}, err
+		}
+	}
+	if err := s.run(ctx); err != nil {
+		return Extreme{}, err
+	}
+	return s.conclude(ctx, floor)
+}
+
+// shortTime writes an instant for a message.
+func shortTime(t *big.Rat) string {
+	f, _ := t.Float64()
+	return new(big.Float).SetFloat64(f).Text('g', 6)
+}
+
+// prepareTail looks at what remains for t → ∞: a limit, a steady oscillation,
+// or growth.
+func (s *search) prepareTail(ctx context.Context, st *stage) (*Extreme, error) {
+	course := settles
+	for _, x := range st.sums {
+		course = max(course, x.course())
+	}
+	switch course {
+	case grows:
+		if s.fallsForEver(st) {
+			return nil, nil
+		}
+		return nil, undefined("it grows without bound")
+	case settles:
+		v, exactly := s.curve.limitOf(st.sums)
+		lower, _ := v.Lower().Float64()
+		s.best = math.Max(s.best, math.Nextafter(lower, math.Inf(-1)))
+		return &Extreme{Value: v, Exact: exactly, Proved: true}, nil
+	}
+	return s.steadySupremum(ctx, st)
+}
+
+// limitOf applies the curve to the limits of its leaves.
+func (c *Curve) limitOf(sums []*sum) (number.Ball, *big.Rat) {
+	v, r, _ := c.limitNext(sums)
+	return v, r
+}
+
+func (c *Curve) limitNext(sums []*sum) (number.Ball, *big.Rat, []*sum) {
+	if c.op == opLeaf {
+		v, r := sums[0].limit()
+		return v, r, sums[1:]
+	}
+	balls := make([]number.Ball, len(c.args))
+	exacts := make([]*big.Rat, len(c.args))
+	known := true
+	for i, a := range c.args {
+		balls[i], exacts[i], sums = a.limitNext(sums)
+		known = known && exacts[i] != nil
+	}
+	if known {
+		r := applyExact(c.op, exacts)
+		return number.BallFromRat(r, refinePrecision), r, sums
+	}
+	return applyBall(c.op, balls), nil, sums
+}
+
+// fallsForEver tells whether the curve, a single form, falls from some time on,
+// and replaces the tail from there by nothing.
+func (s *search) fallsForEver(st *stage) bool {
+	if s.curve.op != opLeaf {
+		return false
+	}
+	d := st.sums[0].derivative()
+	for t := 1 / math.Max(st.floats[0].rate, 1e-250); t < 1e250; t *= 4 {
+		if d.dominance(number.BallFromFloat64(t, refinePrecision)) < 0 {
+			s.replaceTail(st, t)
+			return true
+		}
+		if t > 1e12/math.Max(st.slowest(), 1e-250) {
+			break
+		}
+	}
+	return false
+}
+
+// replaceTail ends the last stage at τ = t for the search.
+func (s *search) replaceTail(st *stage, t float64) {
+	kept := s.queue[:0]
+	for _, b := range s.queue {
+		if b.stage == st && math.IsInf(b.b, 1) {
+			b.b = t
+			b.on = st.crude(s.curve, b.a, t)
+		}
+		kept = append(kept, b)
+	}
+	s.queue = kept
+	heap.Init(&s.queue)
+}
+
+// steadySupremum finds the least upper bound of the steady oscillation that
+// remains. It needs a period: one frequency, or several in rational ratios.
+func (s *search) steadySupremum(ctx context.Context, st *stage) (*Extreme, error) {
+	_, period, ok := periodBall(st.sums)
+	if !ok {
+		return nil, undecided("it oscillates for ever at several frequencies without a common period; ask over a range of time")
+	}
+	steady, transient, err := st.steadyStage(period)
+	if err != nil {
+		return nil, err
+	}
+	if !transient { // the first period shows everything
+		s.replaceTail(st, period)
+		return nil, nil
+	}
+	inner := newSearch(s.curve, []*stage{steady})
+	if err := inner.run(ctx); err != nil {
+		return nil, err
+	}
+	top, err := inner.conclude(ctx, nil)
+	if err != nil {
+		return nil, err
+	}
+	lower, _ := top.Value.Lower().Float64()
+	upper, _ := top.Value.Upper().Float64()
+	s.best = math.Max(s.best, math.Nextafter(lower, math.Inf(-1)))
+	s.ceiling = math.Nextafter(upper, math.Inf(1))
+	return &Extreme{Value: top.Value, Proved: true}, nil
+}
+
+// periodBall is the least common period of all oscillations that do not decay,
+// and a float64 that is not less.
+func periodBall(sums []*sum) (number.Ball, float64, bool) {
+	ids := map[string]termPole{}
+	for _, x := range sums {
+		for _, t := range x.terms {
+			if t.pole.axis && !t.pole.zero {
+				ids[t.pole.id] = t.pole
+			}
+		}
+	}
+	base := new(big.Rat)
+	var one termPole
+	for _, p := range ids {
+		one = p
+		if p.omega == nil {
+			base = nil
+			break
+		}
+		base = ratGCD(base, p.omega)
+	}
+	turn := number.PiBall(refinePrecision).MulPow2(1)
+	var period number.Ball
+	switch {
+	case base != nil:
+		period = turn.Quo(number.BallFromRat(base, refinePrecision))
+	case len(ids) == 1:
+		period = turn.Quo(one.p.Im)
+	default:
+		return period, 0, false
+	}
+	for _, p := range ids {
+		if cycles := upperFloat(p.p.Im.Mul(period).Abs()); cycles > 1e5 {
+			return period, 0, false
+		}
+	}
+	return period, upperFloat(period), true
+}
+
+// ratGCD is the greatest rational that divides both a whole number of times.
+func ratGCD(a, b *big.Rat) *big.Rat {
+	if a.Sign() == 0 {
+		return new(big.Rat).Abs(b)
+	}
+	l := new(big.Int).Mul(a.Denom(), b.Denom())
+	x := new(big.Int).Mul(a.Num(), b.Denom())
+	y := new(big.Int).Mul(b.Num(), a.Denom())
+	return new(big.Rat).SetFrac(new(big.Int).GCD(nil, nil, x.Abs(x), y.Abs(y)), l)
+}

@@ -1,0 +1,333 @@
+package response
+
+import (
+	"math"
+	"math/big"
+
+	"portlight/dialect/number"
+)
+
+// Between two samples a signal is bounded by Taylor models: on τ = m + h·x with
+// x in [−1, 1] it is a polynomial of degree panelOrder with a proved bound of
+// what is left out. (K. Makino, M. Berz, "Taylor models and other validated
+// functional inclusion methods", Int. J. Pure Appl. Math. 4 (2003).)
+const (
+	panelOrder = 24
+	// panelPhase is the largest |p|·h of a term that is expanded. The remainder
+	// of e^z after panelOrder terms is then below 2^25/25!·1.1 < 3e-18.
+	panelPhase = 2.0
+	// panelUnits bounds the rounding errors of all coefficients of a term
+	// together, in units of its size bound |c|·e^{|z|}: the exponential
+	// (exponentialUnits), the coefficient of c rounded to float64 and moved to m
+	// (8 for each power), and for each of the coefficients, built by one complex
+	// product and one quotient after another (8 each, weighted by |z|^k/k!, whose
+	// mean place in the sum is at most |z| ≤ 2 … 4), and the final sum.
+	panelUnits = 96
+)
+
+// model is the Taylor model of one form on a panel.
+type model struct {
+	a          [panelOrder + 1]float64
+	err, slope float64 // bounds on the rest of the value and of d/dx
+}
+
+// model expands the sum on [m−h, m+h]. Terms that turn or decay too fast to be
+// expanded are put into the bounds when they are below floor; when they are not,
+// there is no model and the panel has to be cut.
+func (x *floatSum) model(m, h, floor float64) (out model, ok bool) {
+	for i := range x.terms {
+		f := &x.terms[i]
+		if f.zero && len(f.re) == 1 {
+			out.a[0] += f.re[0]
+			out.err += 4 * unit * f.size[0]
+			continue
+		}
+		if f.rate*h > panelPhase {
+			value, slope := f.bounds(m-h, m+h)
+			if value > floor {
+				return out, false
+			}
+			out.err += value
+			out.slope += slope * h
+			continue
+		}
+		f.expand(m, h, &out)
+	}
+	return out, true
+}
+
+// bounds are upper bounds of a term and of its derivative on [a, b].
+func (f *floatTerm) bounds(a, b float64) (value, slope float64) {
+	value = f.bound(a, b)
+	slope = f.rate * value
+	for m := 1; m < len(f.size); m++ {
+		g := floatTerm{size: make([]float64, m), sigmaUpper: f.sigmaUpper}
+		g.size[m-1] = f.size[m] * float64(m)
+		slope += g.bound(a, b)
+	}
+	return value, slope * (1 + 8*unit)
+}
+
+// expand adds the term's expansion: with q(x) = Σ c[k](m+h·x)^k = Σ q[i]·x^i and
+// z = p·h it is Re(e^{pm} Σ q[i] x^i Σ z^j x^j/j!).
+func (f *floatTerm) expand(m, h float64, out *model) {
+	n := len(f.re)
+	qr, qi := make([]float64, n), make([]float64, n)
+	copy(qr, f.re)
+	copy(qi, f.im)
+	for i := range n {
+		for k := n - 2; k >= i; k-- {
+			qr[k] += qr[k+1] * m
+			qi[k] += qi[k+1] * m
+		}
+	}
+	er, ei := f.exponential(m, 0)
+	scale, size := 1.0, 0.0
+	for i := range n {
+		qr[i], qi[i] = (qr[i]*er-qi[i]*ei)*scale, (qr[i]*ei+qi[i]*er)*scale
+		scale *= h
+	}
+	// The size bound: Σ |c[k]| (m+h)^k e^{σm}.
+	for k, power := 0, 1.0; k < n; k++ {
+		size += f.size[k] * power
+		power *= m + h
+	}
+	size *= math.Exp(f.sigmaUpper*m) * (1 + 4096*unit)
+	zr, zi := f.sigma*h, f.omega*h
+	if n == 1 {
+		cr, ci := qr[0], qi[0]
+		out.a[0] += cr
+		for k := 1; k <= panelOrder; k++ {
+			cr, ci = (cr*zr-ci*zi)/float64(k), (cr*zi+ci*zr)/float64(k)
+			out.a[k] += cr
+		}
+	} else {
+		for i := range n {
+			cr, ci := qr[i], qi[i]
+			out.a[i] += cr
+			for k := 1; i+k <= panelOrder; k++ {
+				cr, ci = (cr*zr-ci*zi)/float64(k), (cr*zi+ci*zr)/float64(k)
+				out.a[i+k] += cr
+			}
+		}
+	}
+	z := f.rate * h
+	tail, tailSlope := 0.0, 0.0
+	if z > 0 {
+		tail = expTail(z, panelOrder-n+1)
+		// d/dx of Σ_{k>K} z^k x^k/k! is z·Σ_{k>K−1}; of x^i times it, i times
+		// the tail more.
+		tailSlope = z*expTail(z, panelOrder-n) + float64(n)*tail
+	}
+	rounding := (panelUnits + 8*float64(n)) * unit * math.Exp(z)
+	out.err += size*(tail+rounding) + leastBound
+	out.slope += size*(tailSlope+rounding*(z+float64(n))) + leastBound
+}
+
+// expTail bounds Σ_{k>n} z^k/k! for 0 ≤ z ≤ panelPhase: the first term over
+// 1 − z/(n+2).
+func expTail(z float64, n int) float64 {
+	t := 1.0
+	for k := 1; k <= n+1; k++ {
+		t *= z / float64(k)
+	}
+	return t / (1 - z/float64(n+2)) * (1 + 64*unit)
+}
+
+// enclosure is bounds of a value and of its derivative with respect to x.
+type enclosure struct{ lo, hi, dlo, dhi float64 }
+
+// on encloses the model for x in [u, v] ⊂ [−1, 1]. With x = c + w·y the
+// coefficients of y are those of a Taylor shift; the rounding errors of the
+// shift are below 2·panelOrder units of Σ|a|, because |c|+w ≤ 1, and those of
+// the sums below panelOrder more.
+func (p *model) on(u, v float64) enclosure {
+	c, w := (u+v)/2, (v-u)/2
+	b := p.a
+	n := panelOrder
+	sum := 0.0
+	for n > 0 && b[n] == 0 {
+		n--
+	}
+	for i := 0; i <= n; i++ {
+		sum += math.Abs(p.a[i])
+	}
+	if c != 0 {
+		for i := 0; i <= n; i++ {
+			for k := n - 1; k >= i; k-- {
+				b[k] += b[k+1] * c
+			}
+		}
+	}
+	spread, bend, scale := 0.0, 0.0, w
+	for k := 1; k <= n; k++ {
+		m := math.Abs(b[k]) * scale
+		if k > 1 {
+			bend += float64(k) * m
+		}
+		spread += m
+		scale *= w
+	}
+	rest := p.err + 4*panelOrder*unit*sum
+	// The derivative's rounding: coefficient k counts k-fold.
+	restSlope := p.slope + 4*panelOrder*unit*p.slopeSum(n)
+	if w > 0 {
+		bend /= w
+	}
+	return enclosure{b[0] - spread - rest, b[0] + spread + rest, b[1] - bend - restSlope, b[1] + bend + restSlope}.outward()
+}
+
+func (p *model) slopeSum(n int) float64 {
+	s := 0.0
+	for k := 1; k <= n; k++ {
+		s += float64(k) * math.Abs(p.a[k])
+	}
+	return s
+}
+
+// outward makes room for the rounding of the ends themselves.
+func (e enclosure) outward() enclosure {
+	inf := math.Inf(1)
+	return enclosure{math.Nextafter(e.lo, -inf), math.Nextafter(e.hi, inf), math.Nextafter(e.dlo, -inf), math.Nextafter(e.dhi, inf)}
+}
+
+// enclose applies the curve's operations to the enclosures of its leaves, which
+// are used up in order.
+func (c *Curve) enclose(leaves []enclosure) enclosure {
+	e, _ := c.encloseNext(leaves)
+	return e
+}
+
+func (c *Curve) encloseNext(leaves []enclosure) (enclosure, []enclosure) {
+	if c.op == opLeaf {
+		return leaves[0], leaves[1:]
+	}
+	x, rest := c.args[0].encloseNext(leaves)
+	switch c.op {
+	case opNegate:
+		return enclosure{-x.hi, -x.lo, -x.dhi, -x.dlo}, rest
+	case opAbs:
+		return x.abs(), rest
+	}
+	y, rest := c.args[1].encloseNext(rest)
+	switch c.op {
+	case opLeast:
+		return x.least(y), rest
+	case opGreatest:
+		n := x.negated().least(y.negated())
+		return n.negated(), rest
+	}
+	return enclosure{x.lo + y.lo, x.hi + y.hi, x.dlo + y.dlo, x.dhi + y.dhi}.outward(), rest
+}
+
+func (e enclosure) negated() enclosure { return enclosure{-e.hi, -e.lo, -e.dhi, -e.dlo} }
+
+func (e enclosure) abs() enclosure {
+	switch {
+	case e.lo >= 0:
+		return e
+	case e.hi <= 0:
+		return e.negated()
+	}
+	d := math.Max(math.Abs(e.dlo), math.Abs(e.dhi))
+	return enclosure{0, math.Max(-e.lo, e.hi), -d, d}
+}
+
+func (e enclosure) least(f enclosure) enclosure {
+	switch {
+	case e.hi < f.lo:
+		return e
+	case f.hi < e.lo:
+		return f
+	}
+	return enclosure{math.Min(e.lo, f.lo), math.Min(e.hi, f.hi), math.Min(e.dlo, f.dlo), math.Max(e.dhi, f.dhi)}
+}
+
+// crude encloses every leaf on [a, b] by the sizes of its terms; b may be
+// infinite. Nothing is said about derivatives.
+func (st *stage) crude(c *Curve, a, b float64) enclosure {
+	leaves := make([]enclosure, len(st.floats))
+	for i, x := range st.floats {
+		leaves[i] = x.crude(a, b)
+	}
+	return c.enclose(leaves)
+}
+
+// crude bounds the sum on [a, b] by the sizes of its terms, real ones of degree
+// 0 by their monotone course.
+func (x *floatSum) crude(a, b float64) enclosure {
+	inf := math.Inf(1)
+	lo, hi := 0.0, 0.0
+	for i := range x.terms {
+		f := &x.terms[i]
+		if !f.real || len(f.re) > 1 {
+			s := f.bound(a, b)
+			lo, hi = lo-s, hi+s
+			continue
+		}
+		s := []float64{f.re[0] * powerExp(a, 0, f.sigma), f.re[0] * powerExp(b, 0, f.sigma)}
+		if f.zero {
+			s[1] = s[0]
+		}
+		slack := (math.Abs(s[0])+math.Abs(s[1]))*4096*unit + leastBound
+		if f.zero {
+			slack = math.Abs(s[0]) * 4 * unit
+		}
+		lo += math.Min(s[0], s[1]) - slack
+		hi += math.Max(s[0], s[1]) + slack
+	}
+	pad := (math.Abs(lo) + math.Abs(hi)) * 4 * unit * float64(len(x.terms)+1)
+	if math.IsNaN(lo) || math.IsNaN(hi) {
+		return enclosure{-inf, inf, -inf, inf}
+	}
+	return enclosure{lo - pad, hi + pad, -inf, inf}
+}
+
+// ballModel is the model of a sum whose terms cancel: the coefficients are
+// computed with balls and only then rounded to float64.
+func (x *sum) ballModel(m, h float64) model {
+	var out model
+	at := number.BallFromFloat64(m, refinePrecision)
+	half := number.BallFromFloat64(h, refinePrecision)
+	total := make([]number.Ball, panelOrder+1)
+	for i := range x.terms {
+		t := &x.terms[i]
+		n := len(t.c)
+		q := append([]number.ComplexBall(nil), t.c...)
+		for i := range n {
+			for k := n - 2; k >= i; k-- {
+				q[k] = q[k].Add(q[k+1].MulBall(at))
+			}
+		}
+		e := t.pole.p.MulBall(at).Exp()
+		if !t.pole.real {
+			e = e.MulPow2(1)
+		}
+		scale := number.BallFromInt(1, refinePrecision)
+		z := t.pole.p.MulBall(half)
+		size := 0.0
+		for i := range n {
+			c := q[i].Mul(e).MulBall(scale)
+			size += upperFloat(c.Abs())
+			total[i] = total[i].Add(c.Re)
+			for k := 1; i+k <= panelOrder; k++ {
+				c = c.Mul(z).MulRat(big.NewRat(1, int64(k)))
+				total[i+k] = total[i+k].Add(c.Re)
+			}
+			scale = scale.Mul(half)
+		}
+		if !t.pole.zero {
+			zf := upperFloat(z.Abs())
+			tail := expTail(zf, panelOrder-n+1)
+			out.err += size * tail * (1 + 64*unit)
+			out.slope += size * (zf*expTail(zf, panelOrder-n) + float64(n)*tail) * (1 + 64*unit)
+		}
+	}
+	for k, b := range total {
+		out.a[k] = b.MidFloat64()
+		lost := upperFloat(b.Sub(number.BallFromFloat64(out.a[k], refinePrecision)).Abs())
+		out.err += lost
+		out.slope += float64(k) * lost
+	}
+	return out
+}
