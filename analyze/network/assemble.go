@@ -120,6 +120,17 @@ func (s *System) MemoryIndex(m Memory) int {
 // where there is one.
 func (s *System) Island(node int) int { return s.frame.island[node] }
 
+// IslandNodes lists the nodes of the island a node lies in.
+func (s *System) IslandNodes(node int) []int {
+	var out []int
+	for v, i := range s.frame.island {
+		if i == s.frame.island[node] {
+			out = append(out, v)
+		}
+	}
+	return out
+}
+
 // assembler is a System in the making.
 type assembler struct {
 	*System

@@ -1,5 +1,7 @@
 package network
 
+import "slices"
+
 // branch is one two-terminal path for a current: a two-terminal element, a
 // winding of a transformer, or an op amp's output, which returns to the
 // reference.
@@ -289,6 +291,7 @@ func stars(vertices, root int, edges []edge, report func(vertex int, ids []int))
 			}
 		}
 		for _, v := range members {
+			slices.Sort(cut[v])
 			report(v, cut[v])
 			delete(cut, v)
 		}

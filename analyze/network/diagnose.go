@@ -2,6 +2,7 @@ package network
 
 import (
 	"context"
+	"math/big"
 	"slices"
 )
 
@@ -43,8 +44,8 @@ func (s *System) diagnose(ctx context.Context) ([]Problem, error) {
 	if err != nil || !det.IsZero() {
 		return nil, err
 	}
-	rows, cols := s.pencil.Kernel(ctx)
-	if err := ctx.Err(); err != nil {
+	rows, cols, err := s.nullVectors(ctx)
+	if err != nil {
 		return nil, err
 	}
 	if p, ok := s.doubtful(rows, cols); ok {
@@ -63,6 +64,56 @@ func (s *System) structural() []Problem {
 		}
 	}
 	return out
+}
+
+// denseLimit is the number of unknowns up to which the dense elimination of
+// Pencil.Kernel is used, whose time grows with the cube.
+const denseLimit = 400
+
+// nullVectors returns the equations and the unknowns of smallest null vectors,
+// in ascending order.
+func (s *System) nullVectors(ctx context.Context) (rows, cols []int, err error) {
+	if s.Size() <= denseLimit {
+		rows, cols = s.pencil.Kernel(ctx)
+		return rows, cols, ctx.Err()
+	}
+	// At a point that is no special value of a network with round figures.
+	point := big.NewRat(1299709, 104729)
+	cells := make([][]cell, s.Size())
+	for e := range s.pencil.Entries() {
+		v := new(big.Rat).Mul(e.C, point)
+		cells[e.Row] = append(cells[e.Row], cell{col: e.Col, re: v.Add(v, e.G)})
+	}
+	matrix := make([]row, s.Size())
+	for i := range matrix {
+		matrix[i] = newRow(cells[i])
+	}
+	if rows, err = smallestNull(ctx, transpose(matrix, s.Size()), s.Size()); err != nil {
+		return nil, nil, err
+	}
+	cols, err = smallestNull(ctx, matrix, s.Size())
+	return rows, cols, err
+}
+
+// smallestNull returns the smallest support of a basis of null vectors.
+func smallestNull(ctx context.Context, rows []row, cols int) ([]int, error) {
+	e, err := eliminate(ctx, rows, cols)
+	if err != nil {
+		return nil, err
+	}
+	var best []int
+	for _, x := range e.kernel() {
+		var support []int
+		for i, v := range x {
+			if !v.zero() {
+				support = append(support, i)
+			}
+		}
+		if best == nil || len(support) < len(best) {
+			best = support
+		}
+	}
+	return best, nil
 }
 
 // doubtful returns a loop or cutset with a dependent source in it that the

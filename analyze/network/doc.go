@@ -18,16 +18,19 @@
 //
 // From the bottom up:
 //
-//	element.go    Element, Network, what an element is made of
+//	element.go    Element, Network: what a network is made of
 //	problem.go    Problem: what is wrong or worth knowing, as data
-//	branch.go     branches, connectivity, spanning forests
+//	check.go values.go   references and values that cannot be
+//	branch.go     branches, connectivity, forests, loops and cutsets of graphs
 //	inspect.go    Inspect: all structural problems at once
 //	island.go loops.go cutsets.go feedback.go coupling.go   one family each
-//	partition.go  groups of elements that cannot influence one another
+//	partition.go  pieces that cannot influence one another
 //	assemble.go   Assemble: the pencil; stamp.go and row.go fill it
-//	output.go     quantities as functionals of the unknowns
+//	output.go     quantities and drives as vectors over the unknowns
 //	transfer.go   exact numerators and the determinant
-//	steady.go     the state at 0− of a network that has run for ever
+//	diagnose.go   why equations have no unique solution
+//	sparse.go     sparse elimination over the Gaussian rationals
+//	steady.go steady_free.go   the state at 0− of a network that has run for ever
 //	conflict.go   initial values that violate Kirchhoff's laws
 //
 // The package knows nothing of the notation and does no input or output.

@@ -42,8 +42,9 @@ type influence struct {
 	seenNode, seenElement []int // the walk in which each was last seen
 	walk                  int
 	heldSeen              bool
-	nodes                 []int
-	elements              []int
+	queue                 []int // nodes, and elements complemented
+	plus, minus           int   // the inputs looked for
+	found                 bool
 }
 
 func newInfluence(f *frame) *influence {
@@ -102,35 +103,29 @@ func (f *frame) heldNodes() (held []bool, holders []int) {
 	return held, holders
 }
 
-// feedsBack tells whether op amp u's output influences an input of it.
+// feedsBack tells whether op amp u's output influences an input of it. The walk
+// is breadth first, so that feedback close by is found at once.
 func (w *influence) feedsBack(u int) bool {
 	w.walk++
-	w.heldSeen = false
-	w.nodes, w.elements = w.nodes[:0], w.elements[:0]
+	w.heldSeen, w.found = false, false
+	w.queue = w.queue[:0]
 	e := &w.Elements[u]
+	w.plus, w.minus = e.Plus, e.Minus
 	w.touchElement(u)
 	w.touchNode(e.Output)
-	for len(w.nodes)+len(w.elements) > 0 {
-		if w.seenNode[e.Plus] == w.walk || w.seenNode[e.Minus] == w.walk {
-			return true
-		}
-		if k := len(w.nodes) - 1; k >= 0 {
-			v := w.nodes[k]
-			w.nodes = w.nodes[:k]
+	for k := 0; k < len(w.queue) && !w.found; k++ {
+		if v := w.queue[k]; v >= 0 {
 			for _, b := range w.at.at(v) {
 				w.touchElement(w.edges[b].id)
 			}
 			for _, d := range w.byVoltage[v] {
 				w.touchElement(d)
 			}
-			continue
+		} else {
+			w.spread(^v)
 		}
-		k := len(w.elements) - 1
-		d := w.elements[k]
-		w.elements = w.elements[:k]
-		w.spread(d)
 	}
-	return w.seenNode[e.Plus] == w.walk || w.seenNode[e.Minus] == w.walk
+	return w.found
 }
 
 // spread goes from an element, whose current or drive depends on the output,
@@ -163,14 +158,15 @@ func (w *influence) touchNode(v int) {
 	}
 	if w.seenNode[v] != w.walk {
 		w.seenNode[v] = w.walk
-		w.nodes = append(w.nodes, v)
+		w.queue = append(w.queue, v)
+		w.found = w.found || v == w.plus || v == w.minus
 	}
 }
 
 func (w *influence) touchElement(d int) {
 	if w.seenElement[d] != w.walk {
 		w.seenElement[d] = w.walk
-		w.elements = append(w.elements, d)
+		w.queue = append(w.queue, ^d)
 	}
 }
 

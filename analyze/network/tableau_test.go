@@ -296,7 +296,7 @@ func randomNetwork(t *rapid.T) *Network {
 				if k := len(n.Elements); k > 0 && rapid.Bool().Draw(t, "current") {
 					p.Element = rapid.IntRange(0, k-1).Draw(t, "sensed")
 					switch s := n.Elements[p.Element]; {
-					case s.Kind.twoTerminal():
+					case s.Kind.twoTerminal() || s.Kind == Open:
 						p.Quantity = ElementFlow
 					case s.Kind == OpAmp || s.Kind == Transformer:
 						p.Quantity = TerminalCurrent
