@@ -20,20 +20,21 @@ func (s *System) Diagnose(ctx context.Context) ([]Problem, error) {
 	}
 	p := s.network.Partition()
 	var out []Problem
-	for _, g := range p.Groups {
-		part := s
-		if len(p.Groups) > 1 {
-			var problems []Problem
-			if part, problems = Assemble(s.network.Restrict(p, g)); part == nil {
-				out = append(out, problems...)
-				continue
+	if len(p.Groups) == 1 {
+		return s.diagnose(ctx)
+	}
+	for g := range p.Groups {
+		piece := s.network.Extract(p, g)
+		part, problems := Assemble(piece.Network)
+		if part != nil {
+			var err error
+			if problems, err = part.diagnose(ctx); err != nil {
+				return nil, err
 			}
 		}
-		problems, err := part.diagnose(ctx)
-		if err != nil {
-			return nil, err
+		for _, problem := range problems {
+			out = append(out, piece.Whole(problem))
 		}
-		out = append(out, problems...)
 	}
 	return out, nil
 }

@@ -24,7 +24,7 @@
 //	branch.go     branches, connectivity, forests, loops and cutsets of graphs
 //	inspect.go    Inspect: all structural problems at once
 //	island.go loops.go cutsets.go feedback.go coupling.go   one family each
-//	partition.go  pieces that cannot influence one another
+//	partition.go piece.go   pieces that cannot influence one another
 //	assemble.go   Assemble: the pencil; stamp.go and row.go fill it
 //	output.go     quantities and drives as vectors over the unknowns
 //	transfer.go   exact numerators and the determinant

@@ -306,8 +306,8 @@ func TestAnythingIsData(t *testing.T) {
 		}
 		n.Inspect()
 		p := n.Partition()
-		for _, g := range p.Groups {
-			n.Restrict(p, g)
+		for g := range p.Groups {
+			n.Extract(p, g)
 		}
 		if s, _ := Assemble(n); s != nil {
 			if _, err := s.Diagnose(t.Context()); err != nil {

@@ -17,7 +17,7 @@ type Partition struct {
 
 // Partition finds the groups in linear time. The voltages and currents of a
 // group's elements in the whole network are those in the network that
-// [Network.Restrict] makes of the group.
+// [Network.Extract] makes of the group.
 func (n *Network) Partition() Partition {
 	f := newFrame(n)
 	held, holders := f.heldNodes()
@@ -86,34 +86,4 @@ func (f *frame) tie(held, holder []bool) *sets {
 		}
 	}
 	return s
-}
-
-// Restrict returns the network with every element taken out that is neither
-// in the list nor in p.Held; nodes and elements keep their numbers.
-func (n *Network) Restrict(p Partition, elements []int) *Network {
-	keep := make([]bool, len(n.Elements))
-	for _, l := range [][]int{p.Held, elements} {
-		for _, i := range l {
-			keep[i] = true
-		}
-	}
-	out := &Network{Nodes: n.Nodes, Ground: n.Ground, Elements: make([]Element, len(n.Elements))}
-	touched := make([]bool, n.Nodes)
-	for i := range n.Elements {
-		if keep[i] {
-			out.Elements[i] = n.Elements[i]
-			out.Elements[i].terminals(func(v int) {
-				if v >= 0 && v < n.Nodes {
-					touched[v] = true
-				}
-			})
-		} else {
-			out.Elements[i].Name = n.Elements[i].Name
-		}
-	}
-	out.Ported = make([]bool, n.Nodes)
-	for v := range out.Ported {
-		out.Ported[v] = n.ported(v) && touched[v]
-	}
-	return out
 }

@@ -38,20 +38,22 @@ func (n *Network) SteadyState(ctx context.Context, sources map[int][]Sinusoid, g
 	out := &Steady{Values: map[Memory]*big.Rat{}, Exact: true}
 	p := n.Partition()
 	var problems []Problem
-	for _, g := range p.Groups {
-		if !slices.ContainsFunc(g, func(i int) bool { return n.Elements[i].remembers() }) {
+	for g, elements := range p.Groups {
+		if !slices.ContainsFunc(elements, func(i int) bool { return n.Elements[i].remembers() }) {
 			continue
 		}
-		s, bad := Assemble(n.Restrict(p, g))
-		if s == nil {
-			problems = append(problems, bad...)
-			continue
+		piece := n.Extract(p, g)
+		s, found := Assemble(piece.Network)
+		if s != nil {
+			t := &settling{System: s, piece: piece, out: out, sources: sources, given: given}
+			if err := t.run(ctx); err != nil {
+				return nil, nil, err
+			}
+			found = t.problems
 		}
-		t := &settling{System: s, out: out, sources: sources, given: given}
-		if err := t.run(ctx); err != nil {
-			return nil, nil, err
+		for _, problem := range found {
+			problems = append(problems, piece.Whole(problem))
 		}
-		problems = append(problems, t.problems...)
 	}
 	return out, problems, nil
 }
@@ -68,10 +70,11 @@ func (e *Element) remembers() bool {
 // settling finds the steady state of one piece.
 type settling struct {
 	*System
+	piece    *Piece
 	out      *Steady
-	sources  map[int][]Sinusoid
-	given    map[int]number.Exact
-	values   []*big.Rat // of the memories, added up over the frequencies so far
+	sources  map[int][]Sinusoid   // by the whole network's numbers
+	given    map[int]number.Exact // likewise
+	values   []*big.Rat           // of the memories, added up over the frequencies so far
 	problems []Problem
 }
 
@@ -92,7 +95,8 @@ func (t *settling) run(ctx context.Context) error {
 		}
 	}
 	for k, m := range t.memories {
-		t.out.Values[m.Memory] = t.values[k]
+		whole := Memory{t.piece.ElementOf[m.Element], m.Index}
+		t.out.Values[whole] = t.values[k]
 	}
 	return nil
 }
@@ -101,7 +105,7 @@ func (t *settling) run(ctx context.Context) error {
 func (t *settling) frequencies() []number.Exact {
 	out := []number.Exact{{}}
 	for i := range t.network.Elements {
-		for _, w := range t.sources[i] {
+		for _, w := range t.sources[t.piece.ElementOf[i]] {
 			if !slices.ContainsFunc(out, w.Omega.Equal) {
 				out = append(out, w.Omega)
 			}
@@ -148,7 +152,7 @@ func (t *settling) equations(omega number.Exact) ([]row, map[int][]cell) {
 	}
 	drive := map[int][]cell{}
 	for i := range t.network.Elements {
-		for _, w := range t.sources[i] {
+		for _, w := range t.sources[t.piece.ElementOf[i]] {
 			if !w.Omega.Equal(omega) {
 				continue
 			}

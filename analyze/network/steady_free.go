@@ -111,7 +111,7 @@ func (t *settling) givenFor(m memory) (number.Exact, bool) {
 	if k != Capacitor && k != Inductor {
 		return number.Exact{}, false
 	}
-	g, ok := t.given[m.Element]
+	g, ok := t.given[t.piece.ElementOf[m.Element]]
 	return g, ok
 }
 
