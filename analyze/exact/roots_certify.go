@@ -1,0 +1,157 @@
+package exact
+
+import (
+	"math"
+	"math/cmplx"
+)
+
+// match links points that look like conjugates, so that only one of the two is
+// evaluated, and puts points on the real axis that look as if they belong there.
+// These are guesses: the discs prove them in the end, and rethink undoes them
+// where they lead nowhere.
+func (s *rootSolver) match() {
+	for i := range s.roots {
+		a := &s.roots[i]
+		if a.link >= 0 || a.step > 0.1 {
+			continue
+		}
+		x, k := s.views[i].x, s.views[i].k
+		mirror := cmplx.Conj(x)
+		nearest, twin, twinDistance := math.Inf(1), -1, math.Inf(1)
+		for j := range s.views {
+			if j == i {
+				continue
+			}
+			shift := s.views[j].k - k
+			if shift > 60 || shift < -60 {
+				nearest = math.Min(nearest, 0.5)
+				continue
+			}
+			y := s.views[j].x * complex(math.Ldexp(1, shift), 0)
+			if d := cmplx.Abs(mirror - y); d < twinDistance && s.roots[j].link < 0 {
+				twin, twinDistance = j, d
+			}
+			nearest = math.Min(nearest, cmplx.Abs(x-y))
+		}
+		switch {
+		case math.Abs(imag(x)) < nearest/100 && a.tries < 20:
+			a.link = i
+			a.y.SetInt64(0)
+			a.normalise()
+			a.log, a.tries = math.Inf(1), 0
+			s.look(i)
+		case twin >= 0 && twinDistance < nearest/10 && imag(x) != 0:
+			first, second := min(i, twin), max(i, twin)
+			s.roots[first].link, s.roots[second].link = second, first
+			s.roots[first].tries, s.roots[second].tries = 0, 0
+			s.look(first)
+		}
+	}
+}
+
+// isolated tells whether the discs are disjoint; where they are not, it sets
+// the goals of the discs concerned higher.
+func (s *rootSolver) isolated() bool {
+	radius := make([]float64, len(s.roots)) // in units of 2^k
+	for i := range s.roots {
+		radius[i] = math.Exp2(math.Max(s.roots[i].log, -1000)+slack) * cmplx.Abs(s.views[i].x)
+	}
+	isolated := true
+	for i := range s.roots {
+		for j := i + 1; j < len(s.roots); j++ {
+			if s.apart(i, j, radius) {
+				continue
+			}
+			isolated = false
+			for _, m := range []int{i, j} {
+				s.wantMore(m)
+			}
+		}
+	}
+	return isolated
+}
+
+// wantMore sets the goal of a point 30 bits beyond what it has reached.
+func (s *rootSolver) wantMore(i int) {
+	a := &s.roots[i]
+	a.goal = math.Max(a.goal, math.Min(-a.log, a.goal)+30)
+	a.tries = 0
+	if a.link >= 0 && a.link != i {
+		s.roots[a.link].goal = a.goal
+	}
+}
+
+// apart tells whether two discs are disjoint. The views are within 2^-52 of the
+// points, relative to their magnitudes; where that does not decide, the exact
+// difference does, to within 2^-50 of itself.
+func (s *rootSolver) apart(i, j int, radius []float64) bool {
+	if s.views[i].k < s.views[j].k {
+		i, j = j, i
+	}
+	scale := 0.0
+	if shift := s.views[j].k - s.views[i].k; shift > -1000 {
+		scale = math.Ldexp(1, shift)
+	} else {
+		scale = 0x1p-1000
+	}
+	x, y := s.views[i].x, s.views[j].x*complex(scale, 0)
+	both := radius[i] + radius[j]*scale
+	d := math.Max(math.Abs(real(x)-real(y)), math.Abs(imag(x)-imag(y)))
+	if d > (both+0x1p-48)*(1+slack) { // |x|, |y| < 2
+		return true
+	}
+	if d = cmplx.Abs(x - y); d > (both+0x1p-48)*(1+slack) {
+		return true
+	}
+	exact, e := s.difference(i, j)
+	return math.Ldexp(cmplx.Abs(exact), e) > both*(1+slack)
+}
+
+// pairUp decides of each disc whether it is on the real axis, above or below,
+// and puts the mirror images of the upper ones in place of the lower ones. It
+// fails, having changed the goals or points, where a disc reaches the axis
+// without being centred on it.
+func (s *rootSolver) pairUp() bool {
+	var upper, lower, axis []int
+	sure := true
+	for i := range s.roots {
+		a := &s.roots[i]
+		y := imag(s.views[i].x)
+		radius := math.Exp2(a.log+slack) * cmplx.Abs(s.views[i].x)
+		switch {
+		case a.y.Sign() == 0:
+			axis = append(axis, i)
+		case math.Abs(y)*(1-slack) > radius && y > 0:
+			upper = append(upper, i)
+		case math.Abs(y)*(1-slack) > radius:
+			lower = append(lower, i)
+		case a.link >= 0:
+			sure = false // a pair of images about the axis: tell them from it
+			s.wantMore(i)
+		default:
+			sure = false
+			a.link = i
+			a.y.SetInt64(0)
+			a.normalise()
+			a.log, a.tries = math.Inf(1), 0
+			s.look(i)
+		}
+	}
+	if !sure {
+		return false
+	}
+	// Disjoint discs off the axis hold one root each, and roots come in
+	// conjugate pairs: there are as many above as below.
+	for _, i := range axis {
+		s.roots[i].link = i
+	}
+	for m, i := range upper {
+		j := lower[m]
+		s.roots[i].link, s.roots[j].link = j, i
+	}
+	for _, i := range upper {
+		s.look(i)
+	}
+	s.essential = append(append([]int{}, axis...), upper...)
+	return true
+}

@@ -1,0 +1,252 @@
+package exact
+
+import (
+	"math"
+	"math/big"
+	"slices"
+
+	"portlight/dialect/number"
+)
+
+// essentials returns how many roots of the unit's polynomial are real or in the
+// upper half plane.
+func (u *rootUnit) essentials() int {
+	if u.solver.poly.Degree() == 1 {
+		return 1
+	}
+	return len(u.solver.essential)
+}
+
+// enclosed is a root of a unit's polynomial.
+type enclosed struct {
+	ball     number.ComplexBall
+	real     bool
+	rational *big.Rat
+}
+
+// essential returns one of them in a ball at the precision reached.
+func (u *rootUnit) essential(index int, prec uint) enclosed {
+	p := u.solver.poly
+	if p.Degree() == 1 {
+		r := p.Coeff(0)
+		r.Neg(r.Quo(r, p.Coeff(1)))
+		return enclosed{number.RealBall(number.BallFromRat(r, prec+8)), true, r}
+	}
+	i := u.solver.essential[index]
+	a := &u.solver.roots[i]
+	radius := u.solver.radius(i)
+	unit := a.k - 64*a.words + 1
+	re := number.BallFromFloat(dyadic(a.x, unit), prec+8).WithRadius(radius)
+	if a.link == i {
+		e := enclosed{number.RealBall(re), true, nil}
+		if r := u.solver.rationalIn(re); r != nil {
+			e.rational = r
+			e.ball = number.RealBall(number.BallFromRat(r, prec+8))
+		}
+		return e
+	}
+	im := number.BallFromFloat(dyadic(a.y, unit), prec+8).WithRadius(radius)
+	return enclosed{number.ComplexBall{Re: re, Im: im}, false, nil}
+}
+
+// dyadic returns n·2^e.
+func dyadic(n *big.Int, e int) *big.Float {
+	f := new(big.Float).SetInt(n)
+	return f.SetMantExp(f, e)
+}
+
+// radius returns the bound of the distance of root i from its centre.
+func (s *rootSolver) radius(i int) *big.Float {
+	a := &s.roots[i]
+	whole := math.Floor(a.log)
+	f := big.NewFloat(math.Exp2(a.log-whole+2*slack) * cmplxAbs(s.views[i].x))
+	return f.SetMantExp(f, int(whole)+a.k)
+}
+
+func cmplxAbs(x complex128) float64 { return math.Hypot(real(x), imag(x)) }
+
+// rationalIn returns a root of p that is a rational number with short numerator
+// and denominator, if the ball of one root holds such a number: the simplest
+// fraction in it is tried.
+func (s *rootSolver) rationalIn(b number.Ball) *big.Rat {
+	lower, _ := b.Lower().Rat(nil)
+	upper, _ := b.Upper().Rat(nil)
+	if lower == nil || upper == nil || lower.Sign()*upper.Sign() <= 0 {
+		return nil
+	}
+	r := simplestBetween(lower, upper)
+	if int64(r.Num().BitLen()+r.Denom().BitLen()) > b.RelativeBits()-12 {
+		return nil
+	}
+	if s.poly.EvalSign(r) != 0 {
+		return nil
+	}
+	return r
+}
+
+// simplestBetween returns the fraction of the least denominator from a to b, two
+// numbers of one sign, by their common continued fraction.
+func simplestBetween(a, b *big.Rat) *big.Rat {
+	if a.Sign() < 0 {
+		r := simplestBetween(new(big.Rat).Neg(b), new(big.Rat).Neg(a))
+		return r.Neg(r)
+	}
+	floor := new(big.Int).Quo(a.Num(), a.Denom())
+	whole := new(big.Rat).SetInt(floor)
+	if whole.Cmp(a) == 0 {
+		return whole
+	}
+	next := new(big.Rat).SetInt(new(big.Int).Add(floor, bigOne))
+	if next.Cmp(b) <= 0 {
+		return next
+	}
+	// a and b have the whole part in common: turn the rests over.
+	ra, rb := new(big.Rat).Sub(a, whole), new(big.Rat).Sub(b, whole)
+	r := simplestBetween(rb.Inv(rb), ra.Inv(ra))
+	return r.Add(whole, r.Inv(r))
+}
+
+// branches returns the roots of the polynomial that an essential root of a unit
+// stands for: itself and its conjugate, or with squared the square roots of
+// these, lower half plane first.
+func (u *rootUnit) branches(index int, prec uint) []Root {
+	e := u.essential(index, prec+8)
+	if u.squared {
+		return u.squareRoots(e)
+	}
+	if e.real {
+		return []Root{{Re: e.ball.Re, Im: e.ball.Im, Real: true, Rational: e.rational}}
+	}
+	low := e.ball.Conj()
+	return []Root{{Re: low.Re, Im: low.Im}, {Re: e.ball.Re, Im: e.ball.Im}}
+}
+
+// squareRoots returns ±√y, and ±√ȳ for complex y.
+func (u *rootUnit) squareRoots(e enclosed) []Root {
+	zero := number.BallFromInt(0, e.ball.Prec())
+	if e.real {
+		sign, _ := e.ball.Re.Sign()
+		root := e.ball.Re.Abs().Sqrt()
+		if sign < 0 {
+			return []Root{{Re: zero, Im: root.Neg(), Imaginary: true}, {Re: zero, Im: root, Imaginary: true}}
+		}
+		var rational, negative *big.Rat
+		if e.rational != nil {
+			if rational = exactSquareRoot(e.rational); rational != nil {
+				negative = new(big.Rat).Neg(rational)
+			}
+		}
+		return []Root{{Re: root.Neg(), Im: zero, Real: true, Rational: negative}, {Re: root, Im: zero, Real: true, Rational: rational}}
+	}
+	z := complexSquareRoot(e.ball)
+	a, b := z.Re, z.Im
+	return []Root{{Re: a.Neg(), Im: b.Neg()}, {Re: a.Neg(), Im: b}, {Re: a, Im: b.Neg()}, {Re: a, Im: b}}
+}
+
+func exactSquareRoot(r *big.Rat) *big.Rat {
+	n, d := new(big.Int).Sqrt(r.Num()), new(big.Int).Sqrt(r.Denom())
+	root := new(big.Rat).SetFrac(n, d)
+	if new(big.Rat).Mul(root, root).Cmp(r) != 0 {
+		return nil
+	}
+	return root
+}
+
+// complexSquareRoot returns the square root in the first quadrant of a number y
+// with positive imaginary part: √((|y|+|Re y|)/2) is the larger part, and
+// Im y/2 over it the other, free of cancellation.
+func complexSquareRoot(y number.ComplexBall) number.ComplexBall {
+	larger := y.Abs().Add(y.Re.Abs()).MulPow2(-1).Sqrt()
+	smaller := y.Im.MulPow2(-1).Quo(larger)
+	if y.Re.Mid().Sign() < 0 {
+		return number.ComplexBall{Re: smaller, Im: larger}
+	}
+	return number.ComplexBall{Re: larger, Im: smaller}
+}
+
+// arrange fixes the order of the roots at the precision of the first
+// certification: by real part, those that the balls do not tell apart by the
+// magnitude of the imaginary part, the lower one of a pair first.
+func (s *RootSet) arrange() {
+	type placed struct {
+		places []rootPlace
+		re, im number.Ball
+	}
+	var all []placed
+	for ui, u := range s.units {
+		for index := range u.essentials() {
+			roots := u.branches(index, basePrecision)
+			for b := 0; b < len(roots); {
+				size := 1
+				if !roots[b].Real {
+					size = 2
+				}
+				g := placed{re: roots[b].Re, im: roots[b].Im.Abs()}
+				for range size {
+					g.places = append(g.places, rootPlace{ui, index, b})
+					b++
+				}
+				all = append(all, g)
+			}
+		}
+	}
+	slices.SortStableFunc(all, func(a, b placed) int { return a.re.Mid().Cmp(b.re.Mid()) })
+	for i := 0; i < len(all); {
+		j := i + 1
+		for j < len(all) && all[j-1].re.Overlaps(all[j].re) {
+			j++
+		}
+		slices.SortStableFunc(all[i:j], func(a, b placed) int { return a.im.Mid().Cmp(b.im.Mid()) })
+		i = j
+	}
+	for _, g := range all {
+		s.order = append(s.order, g.places...)
+	}
+}
+
+// collect returns the roots in order at the precision reached.
+func (s *RootSet) collect(prec uint) []Root {
+	branches := make([][][]Root, len(s.units))
+	for i, u := range s.units {
+		for index := range u.essentials() {
+			branches[i] = append(branches[i], u.branches(index, prec))
+		}
+	}
+	var out []Root
+	origin := s.zeros > 0
+	place := func() {
+		out = append(out, Root{
+			Re: number.BallFromInt(0, prec), Im: number.BallFromInt(0, prec), Multiplicity: s.zeros,
+			Real: true, Imaginary: true, Rational: new(big.Rat), Radius: new(big.Float),
+		})
+		origin = false
+	}
+	for _, p := range s.order {
+		r := branches[p.unit][p.index][p.branch]
+		r.Multiplicity = s.units[p.unit].multiplicity
+		r.Radius = distance(r)
+		if origin && !r.Imaginary && r.Re.Mid().Sign() > 0 || origin && r.Imaginary {
+			place()
+		}
+		out = append(out, r)
+	}
+	if origin {
+		place()
+	}
+	return out
+}
+
+// distance bounds the distance of the points of a rectangle from its centre.
+func distance(r Root) *big.Float {
+	a, b := r.Re.Rad(), r.Im.Rad()
+	switch {
+	case a.Sign() == 0:
+		return b
+	case b.Sign() == 0:
+		return a
+	}
+	sum := new(big.Float).SetPrec(64).SetMode(big.ToPositiveInf).Add(new(big.Float).SetPrec(128).Mul(a, a), new(big.Float).SetPrec(128).Mul(b, b))
+	// √ rounds to nearest: one unit more is above.
+	root := new(big.Float).SetPrec(53).Sqrt(sum)
+	return root.Mul(root, big.NewFloat(1+0x1p-50))
+}

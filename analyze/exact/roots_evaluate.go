@@ -1,0 +1,447 @@
+package exact
+
+import (
+	"math"
+	"math/big"
+	"math/bits"
+)
+
+// evaluator computes p(z) and z·p'(z) for complex z in fixed point of any
+// length, with a proved bound of the error, for an integer polynomial p of
+// degree n with p(0) ≠ 0.
+//
+// # The scheme
+//
+// Let z = x·2^k with |x| in [1/2, √2) and φ the fractional, b the integral part
+// of log2|x|. Horner's rule b_i = a_i + z·b_(i+1) is run on scaled values
+// B_i = b_i·2^(κ_i−M), κ_i = i(k+b) + ⌊iφ⌋, so that
+//
+//	B_i = c_i + x·2^(−s_i)·B_(i+1),  c_i = a_i·2^(κ_i−M),  s_i = b or b+1,
+//
+// and M is the least integer that makes every |c_i| < 1. κ_i is within 1 of
+// i·log2|z|, so the c_i follow the sizes of the terms a_i·z^i; the scheme loses
+// no more than ordinary floating point with an unlimited exponent would. The
+// derivative comes from D_i = B_i + x·2^(−s_i)·D_(i+1), and z·p'(z)·2^−M is
+// x·2^(−s_0)·D_1; p(z)·2^−M is B_0.
+//
+// # The error
+//
+// Values are two's-complement integers in units of 2^-F, F = 64W − H. The
+// product of the factors |x|·2^(−s) over any stretch of indices is at most
+// 2.01: it is 2^(m·log2|x| − (⌊(i+m)φ⌋ − ⌊iφ⌋) − m·b) ≤ 2^(1 + m·2^-50), φ
+// being a float64 within 2^-50 of the truth. z is exact. One step cuts c_i
+// (below 1 unit, real part only) and the product (below 1 unit in each part):
+// |error| < √5 units. Hence
+//
+//	|B_0 − p(z)·2^−M|      ≤ 2.01·√5·(n+1) < 5(n+1) units
+//	|D_1·x… − z·p'(z)·2^−M| ≤ 2.01·(n+1)·(5(n+1) + √2) < 15(n+1)² units
+//
+// The values stay below 2.01·(n+1) for B and (2.01·(n+1))² for D, which H
+// covers with a sign bit.
+type evaluator struct {
+	n        int
+	size     [][]uint64 // magnitudes of the coefficients, low word first
+	negative []bool
+	bits     []int
+	headroom int // H
+	mantissa []float64
+}
+
+func newEvaluator(p Poly) *evaluator {
+	c, _ := p.Ints()
+	n := len(c) - 1
+	v := &evaluator{n: n, size: make([][]uint64, n+1), negative: make([]bool, n+1), bits: make([]int, n+1), mantissa: make([]float64, n+1)}
+	for i, a := range c {
+		v.negative[i] = a.Sign() < 0
+		v.bits[i] = a.BitLen()
+		v.size[i] = wordsOf(a)
+		v.mantissa[i] = topFraction(a)
+	}
+	v.headroom = 2 + 2*bits.Len(uint(3*(n+1)))
+	return v
+}
+
+// wordsOf returns |a| in 64-bit words, low word first.
+func wordsOf(a *big.Int) []uint64 {
+	raw := a.Bits()
+	if bits.UintSize == 64 {
+		words := make([]uint64, len(raw))
+		for i, w := range raw {
+			words[i] = uint64(w)
+		}
+		return words
+	}
+	words := make([]uint64, (len(raw)+1)/2)
+	for i, w := range raw {
+		words[i/2] |= uint64(w) << (32 * uint(i%2))
+	}
+	return words
+}
+
+// topFraction returns a/2^bitlen(a), in ±[1/2, 1), or 0.
+func topFraction(a *big.Int) float64 {
+	n := a.BitLen()
+	if n == 0 {
+		return 0
+	}
+	if n > 64 {
+		a = new(big.Int).Quo(a, new(big.Int).Lsh(bigOne, uint(n-64)))
+		n = 64
+	}
+	f := new(big.Float).SetInt(a)
+	f.SetMantExp(f, -n)
+	v, _ := f.Float64()
+	return v
+}
+
+// fixedPoint is z = (±u ± j·v)·2^(k−64Z+1), u and v of Z words; the larger of
+// them has its second-highest bit as leading bit.
+type fixedPoint struct {
+	u, v       []uint64
+	uneg, vneg bool
+	k          int
+	log        float64 // log2|x|, in [−1, ½)
+}
+
+// evaluation is the outcome: the logarithms are base 2 and relative to 2^M.
+type evaluation struct {
+	ratio          complex128 // z·p'(z)/p(z); meaningless where p is 0
+	logP, logD     float64    // of the computed |p| and |z p'|, −Inf for 0
+	logEP, logED   float64    // of the error bounds
+	words          int
+	pr, pi, dr, di []uint64 // B_0 and z·p' as computed (shared scratch)
+	fraction       int      // F
+}
+
+// scratch is the working space of one evaluation.
+type scratch struct {
+	re, im, dr, di, t1, t2, t3, t4 []uint64
+}
+
+func (s *scratch) resize(w, z int) {
+	grow := func(x []uint64, n int) []uint64 {
+		if cap(x) < n {
+			return make([]uint64, n)
+		}
+		x = x[:n]
+		clear(x)
+		return x
+	}
+	s.re, s.im = grow(s.re, w), grow(s.im, w)
+	s.dr, s.di = grow(s.dr, w), grow(s.di, w)
+	s.t1, s.t2 = grow(s.t1, w+z), grow(s.t2, w+z)
+	s.t3, s.t4 = grow(s.t3, w+z), grow(s.t4, w+z)
+}
+
+// evaluate runs the scheme with W = w words, w ≥ 2.
+//
+// By p(z̄) = conj p(z) and p(−s) having the coefficients ±a_i it is enough to
+// work in the first quadrant.
+func (e *evaluator) evaluate(z *fixedPoint, w int, s *scratch) evaluation {
+	s.resize(w, len(z.u))
+	base := int(math.Floor(z.log))
+	step := uint64(math.Ldexp(z.log-float64(base), 64)) // φ·2^64 < 2^64 as φ ≤ 1−2^-53
+	if z.log-float64(base) >= 1 {
+		step = math.MaxUint64
+	}
+	phase := uint64(e.n) * step               // the fraction of nφ
+	whole, _ := bits.Mul64(uint64(e.n), step) // ⌊nφ⌋
+	top := e.top(z.k+base, step)              // M
+	kappa := e.n*(z.k+base) + int(whole)
+	fraction := 64*w - e.headroom
+	real := isZeroWords(z.v)
+
+	e.addCoefficient(s.re, e.n, kappa-top+fraction, z.uneg && e.n&1 == 1)
+	before := 0 // s_(i+1)
+	for i := e.n - 1; i >= 0; i-- {
+		next, borrow := bits.Sub64(phase, step, 0)
+		phase = next
+		shift := base + int(borrow) // s_i
+		kappa -= z.k + shift
+		if i < e.n-1 {
+			rotate(s.dr, s.di, z, before, real, s)
+		}
+		addWords(s.dr, s.re)
+		if !real {
+			addWords(s.di, s.im)
+		}
+		rotate(s.re, s.im, z, shift, real, s)
+		e.addCoefficient(s.re, i, kappa-top+fraction, z.uneg && i&1 == 1)
+		before = shift
+	}
+	rotate(s.dr, s.di, z, before, real, s)
+	return e.conclude(z, w, fraction, s)
+}
+
+// top returns M: the largest bit length of a_i·2^κ_i.
+func (e *evaluator) top(whole int, step uint64) int {
+	m := math.MinInt
+	var phase, carry uint64
+	kappa := 0
+	for i := range e.n + 1 {
+		if b := e.bits[i]; b > 0 && b+kappa > m {
+			m = b + kappa
+		}
+		phase, carry = bits.Add64(phase, step, 0)
+		kappa += whole + int(carry)
+	}
+	return m
+}
+
+func (e *evaluator) conclude(z *fixedPoint, w, fraction int, s *scratch) evaluation {
+	n := float64(e.n + 1)
+	pr, pi, pe := complexWords(s.re, s.im)
+	dr, di, de := complexWords(s.dr, s.di)
+	out := evaluation{words: w, fraction: fraction, pr: s.re, pi: s.im, dr: s.dr, di: s.di}
+	out.logP = logHypot(pr, pi) + float64(pe-fraction)
+	out.logD = logHypot(dr, di) + float64(de-fraction)
+	out.logEP = math.Log2(5*n) - float64(fraction)
+	out.logED = math.Log2(15*n*n) - float64(fraction)
+	if pr != 0 || pi != 0 {
+		r := complex(dr, di) / complex(pr, pi)
+		scale := min(max(de-pe, -1000), 1000)
+		out.ratio = complex(math.Ldexp(real(r), scale), math.Ldexp(imag(r), scale))
+		if z.vneg != z.uneg { // back from the first quadrant
+			out.ratio = complex(real(out.ratio), -imag(out.ratio))
+		}
+	}
+	return out
+}
+
+func logHypot(a, b float64) float64 {
+	if a == 0 && b == 0 {
+		return math.Inf(-1)
+	}
+	return math.Log2(math.Hypot(a, b))
+}
+
+// rotate replaces re + j·im by its product with (u + j·v)·2^(1−64Z−shift),
+// rounded down.
+func rotate(re, im []uint64, z *fixedPoint, shift int, real bool, s *scratch) {
+	switch {
+	case len(z.u) > 1:
+		rotateLong(re, im, z, shift, real, s)
+	case real:
+		rotateReal(re, z.u[0], uint(1-shift))
+	case len(re) == 2:
+		rotateTwo((*[2]uint64)(re), (*[2]uint64)(im), z.u[0], z.v[0], uint(1-shift))
+	default:
+		rotateShort(re, im, z.u[0], z.v[0], uint(1-shift))
+	}
+}
+
+// rotateReal is rotate for one word and a real factor; left = 1 − shift.
+func rotateReal(re []uint64, u uint64, left uint) {
+	var carry, before uint64
+	last := len(re) - 1
+	sign := uint64(int64(re[last]) >> 63)
+	for i, a := range re {
+		h, l := bits.Mul64(a, u)
+		var c uint64
+		l, c = bits.Add64(l, carry, 0)
+		carry = h + c
+		if i > 0 {
+			re[i-1] = l<<left | before>>(64-left)
+		}
+		before = l
+	}
+	re[last] = (carry-u&sign)<<left | before>>(64-left)
+}
+
+// rotateShort is rotate for one word. The four products run side by side; a
+// negative operand is taken modulo 2^64W and mended at the top.
+func rotateShort(re, im []uint64, u, v uint64, left uint) {
+	last := len(re) - 1
+	im = im[:len(re)]
+	signRe, signIm := uint64(int64(re[last])>>63), uint64(int64(im[last])>>63)
+	var c1, c2, c3, c4, borrow, carry, beforeRe, beforeIm, c uint64
+	for i := range re {
+		a, b := re[i], im[i]
+		h1, l1 := bits.Mul64(a, u)
+		h2, l2 := bits.Mul64(b, v)
+		h3, l3 := bits.Mul64(a, v)
+		h4, l4 := bits.Mul64(b, u)
+		l1, c = bits.Add64(l1, c1, 0)
+		c1 = h1 + c
+		l2, c = bits.Add64(l2, c2, 0)
+		c2 = h2 + c
+		l3, c = bits.Add64(l3, c3, 0)
+		c3 = h3 + c
+		l4, c = bits.Add64(l4, c4, 0)
+		c4 = h4 + c
+		l1, borrow = bits.Sub64(l1, l2, borrow)
+		l3, carry = bits.Add64(l3, l4, carry)
+		if i > 0 {
+			re[i-1] = l1<<left | beforeRe>>(64-left)
+			im[i-1] = l3<<left | beforeIm>>(64-left)
+		}
+		beforeRe, beforeIm = l1, l3
+	}
+	topRe := c1 - u&signRe - (c2 - v&signIm) - borrow
+	topIm := c3 - v&signRe + c4 - u&signIm + carry
+	re[last] = topRe<<left | beforeRe>>(64-left)
+	im[last] = topIm<<left | beforeIm>>(64-left)
+}
+
+// rotateTwo is rotateShort for W = 2, written out.
+func rotateTwo(re, im *[2]uint64, u, v uint64, left uint) {
+	a0, a1, b0, b1 := re[0], re[1], im[0], im[1]
+	signRe, signIm := uint64(int64(a1)>>63), uint64(int64(b1)>>63)
+	var c uint64
+	p1, p0 := bits.Mul64(a0, u)
+	p2, t := bits.Mul64(a1, u)
+	p1, c = bits.Add64(p1, t, 0)
+	p2 += c - u&signRe
+	q1, q0 := bits.Mul64(b0, v)
+	q2, t := bits.Mul64(b1, v)
+	q1, c = bits.Add64(q1, t, 0)
+	q2 += c - v&signIm
+	p0, c = bits.Sub64(p0, q0, 0)
+	p1, c = bits.Sub64(p1, q1, c)
+	p2, _ = bits.Sub64(p2, q2, c)
+	r1, r0 := bits.Mul64(a0, v)
+	r2, t := bits.Mul64(a1, v)
+	r1, c = bits.Add64(r1, t, 0)
+	r2 += c - v&signRe
+	s1, s0 := bits.Mul64(b0, u)
+	s2, t := bits.Mul64(b1, u)
+	s1, c = bits.Add64(s1, t, 0)
+	s2 += c - u&signIm
+	r0, c = bits.Add64(r0, s0, 0)
+	r1, c = bits.Add64(r1, s1, c)
+	r2, _ = bits.Add64(r2, s2, c)
+	re[0] = p1<<left | p0>>(64-left)
+	re[1] = p2<<left | p1>>(64-left)
+	im[0] = r1<<left | r0>>(64-left)
+	im[1] = r2<<left | r1>>(64-left)
+}
+
+// rotateLong is rotate for several words.
+func rotateLong(re, im []uint64, z *fixedPoint, shift int, real bool, s *scratch) {
+	left := uint(1 - shift)
+	n := len(z.u)
+	mulSigned(s.t1, re, z.u)
+	if real {
+		shiftInto(re, s.t1, n-1, left)
+		return
+	}
+	mulSigned(s.t2, im, z.v)
+	mulSigned(s.t3, re, z.v)
+	mulSigned(s.t4, im, z.u)
+	subWords(s.t1, s.t2)
+	addWords(s.t3, s.t4)
+	shiftInto(re, s.t1, n-1, left)
+	shiftInto(im, s.t3, n-1, left)
+}
+
+// shiftInto sets dst to the words of t from skip on, shifted left by left bits
+// with what comes up from the word before.
+func shiftInto(dst, t []uint64, skip int, left uint) {
+	for i := range dst {
+		dst[i] = t[skip+i+1]<<left | t[skip+i]>>(64-left)
+	}
+}
+
+// mulSigned sets t to the product of the two's-complement a and the unsigned u.
+func mulSigned(t, a, u []uint64) {
+	clear(t)
+	w := len(a)
+	for j, m := range u {
+		if m == 0 {
+			continue
+		}
+		var carry uint64
+		row := t[j : j+w+1]
+		for i, x := range a {
+			h, l := bits.Mul64(x, m)
+			var c uint64
+			l, c = bits.Add64(l, carry, 0)
+			h += c
+			row[i], c = bits.Add64(row[i], l, 0)
+			carry = h + c
+		}
+		row[w] = carry
+	}
+	if int64(a[w-1]) < 0 {
+		subWords(t[w:], u)
+	}
+}
+
+func addWords(x, y []uint64) {
+	var c uint64
+	y = y[:len(x)]
+	for i := range x {
+		x[i], c = bits.Add64(x[i], y[i], c)
+	}
+}
+
+func subWords(x, y []uint64) {
+	var c uint64
+	y = y[:len(x)]
+	for i := range x {
+		x[i], c = bits.Sub64(x[i], y[i], c)
+	}
+}
+
+// addCoefficient adds ±a_i·2^shift, cut to an integer, to x.
+func (e *evaluator) addCoefficient(x []uint64, i, shift int, flip bool) {
+	words := e.size[i]
+	if len(words) == 0 {
+		return
+	}
+	// Word j of the shifted number holds bits 64j−shift … of a_i.
+	var c uint64
+	first := -shift >> 6 // floor
+	low := uint(-shift) & 63
+	subtract := e.negative[i] != flip
+	at := func(j int) uint64 {
+		if j < 0 || j >= len(words) {
+			return 0
+		}
+		return words[j]
+	}
+	current := at(first)
+	for j := range x {
+		next := at(first + j + 1)
+		word := current>>low | next<<(64-low)
+		current = next
+		if subtract {
+			x[j], c = bits.Sub64(x[j], word, c)
+		} else {
+			x[j], c = bits.Add64(x[j], word, c)
+		}
+	}
+}
+
+func isZeroWords(x []uint64) bool {
+	for _, w := range x {
+		if w != 0 {
+			return false
+		}
+	}
+	return true
+}
+
+// complexWords returns floats a, b and an exponent e with re = a·2^e and
+// im = b·2^e up to 2^-52 of the larger.
+func complexWords(re, im []uint64) (a, b float64, e int) {
+	i := len(re) - 1
+	// The leading word that says something: not all sign bits in both parts.
+	for i > 0 && plainSign(re[i], re[i-1]) && plainSign(im[i], im[i-1]) {
+		i--
+	}
+	if i == 0 {
+		return float64(int64(re[0])), float64(int64(im[0])), 0
+	}
+	a = math.Ldexp(float64(int64(re[i])), 64) + float64(re[i-1])
+	b = math.Ldexp(float64(int64(im[i])), 64) + float64(im[i-1])
+	if i > 1 {
+		// The leading word may hold as little as its sign bit.
+		a += math.Ldexp(float64(re[i-2]), -64)
+		b += math.Ldexp(float64(im[i-2]), -64)
+	}
+	return a, b, 64 * (i - 1)
+}
+
+// plainSign tells whether the word high only repeats the sign bit of low.
+func plainSign(high, low uint64) bool { return high == uint64(int64(low)>>63) }
