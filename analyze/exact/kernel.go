@@ -15,20 +15,17 @@ import (
 // The null vectors are computed modulo a prime at one point; that the
 // pencil is singular at all is not proved here but by Determinant.
 func (p *Pencil) Kernel(ctx context.Context) (rows, cols []int) {
-	if ctx.Err() != nil {
-		return nil, nil
-	}
 	m := takeModuli(1)[0]
-	return p.kernelMod(m, m.fromUint(0x9e3779b97f4a7c15), 0, 0)
+	return p.kernelMod(ctx, m, m.fromUint(0x9e3779b97f4a7c15), 0, 0)
 }
 
 // kernelAt is Kernel at the point re + j·im.
-func (p *Pencil) kernelAt(re, im *big.Rat) (rows, cols []int) {
+func (p *Pencil) kernelAt(ctx context.Context, re, im *big.Rat) (rows, cols []int) {
 	for _, m := range takeModuli(64) {
 		x, okX := m.fromRat(re)
 		y, okY := m.fromRat(im)
 		if okX && okY {
-			return p.kernelMod(m, x, y, m.sqrtMinusOne())
+			return p.kernelMod(ctx, m, x, y, m.sqrtMinusOne())
 		}
 	}
 	return nil, nil
@@ -50,7 +47,7 @@ func (m *modulus) fromRat(r *big.Rat) (uint64, bool) {
 
 // kernelMod returns the smallest supports of left and right null vectors of
 // the pencil at s = x + j·y with j the given square root of −1.
-func (p *Pencil) kernelMod(m *modulus, x, y, j uint64) (rows, cols []int) {
+func (p *Pencil) kernelMod(ctx context.Context, m *modulus, x, y, j uint64) (rows, cols []int) {
 	s := m.add(x, m.mul(y, j))
 	n := p.Size()
 	a, t := make([][]uint64, n), make([][]uint64, n)
@@ -63,18 +60,26 @@ func (p *Pencil) kernelMod(m *modulus, x, y, j uint64) (rows, cols []int) {
 		v := m.add(g, m.mul(c, s))
 		a[e.Row][e.Col], t[e.Col][e.Row] = v, v
 	}
-	return m.smallestCircuit(t), m.smallestCircuit(a)
+	rows, cols = m.smallestCircuit(ctx, t), m.smallestCircuit(ctx, a)
+	if ctx.Err() != nil {
+		return nil, nil
+	}
+	return rows, cols
 }
 
 // smallestCircuit returns the smallest support among the basis null vectors
 // of a that the reduced echelon form gives, nil if a is regular. Each such
 // support is minimal under inclusion: it has one column outside a basis of
-// the column space, and the combination of that basis is unique.
-func (m *modulus) smallestCircuit(a [][]uint64) []int {
+// the column space, and the combination of that basis is unique. It returns
+// nil when the context ends.
+func (m *modulus) smallestCircuit(ctx context.Context, a [][]uint64) []int {
 	n := len(a)
 	pivotRow := make([]int, n)
 	row := 0
 	for c := range n {
+		if ctx.Err() != nil {
+			return nil
+		}
 		pivotRow[c] = -1
 		i := row
 		for i < n && a[i][c] == 0 {

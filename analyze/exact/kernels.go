@@ -174,6 +174,15 @@ func negInto(dst, a []uint64, p uint64) {
 	}
 }
 
+// addInto sets dst = dst + a.
+func addInto(dst, a []uint64, p uint64) {
+	a = a[:len(dst)]
+	for i := range dst {
+		t, borrow := bits.Sub64(dst[i]+a[i], p, 0)
+		dst[i] = t + p&-borrow
+	}
+}
+
 // inverseLanes is the number of independent product chains in inverseInto,
 // which hide the latency of the multiplications.
 const inverseLanes = 4

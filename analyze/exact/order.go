@@ -26,6 +26,8 @@ type pivotStep struct {
 	lower, upper []int32 // entries of its column and row that are left
 	scaleLower   bool    // the inverse pivot goes into lower, else into upper
 	block        int
+	col          int   // the column of the pivot
+	upperCols    []int // the columns of upper
 }
 
 // cell is an entry in the active matrix.
@@ -152,7 +154,7 @@ func (z *eliminator) choose(rows []int, start, end int) (at, col int) {
 
 // pivot eliminates with the entry at (i, j).
 func (z *eliminator) pivot(i, j, block int) {
-	step := pivotStep{block: block}
+	step := pivotStep{block: block, col: j}
 	upper, lower := z.row[i][:0:0], z.col[j][:0:0]
 	for _, c := range z.row[i] {
 		if c.index == j {
@@ -160,6 +162,7 @@ func (z *eliminator) pivot(i, j, block int) {
 		} else {
 			upper = append(upper, c)
 			step.upper = append(step.upper, c.entry)
+			step.upperCols = append(step.upperCols, c.index)
 			z.col[c.index] = removeCell(z.col[c.index], i)
 		}
 	}

@@ -148,6 +148,15 @@ func TestSolveAt(t *testing.T) {
 		if err != nil {
 			t.Fatal(err)
 		}
+		if u, v, err := plainSolveAt(ctx, p, re, im, b); err != nil {
+			t.Fatal(err)
+		} else {
+			for i := range u {
+				if u[i].Cmp(x[i]) != 0 || v[i].Cmp(y[i]) != 0 {
+					t.Fatalf("component %d: %v + j %v, want %v + j %v", i, x[i], y[i], u[i], v[i])
+				}
+			}
+		}
 		// The residual is zero.
 		r := make([]*big.Rat, 2*n)
 		for i := range r {

@@ -28,7 +28,13 @@ func (p *Pencil) Prepare(ctx context.Context) (*Prepared, error) {
 	if err := ctx.Err(); err != nil {
 		return nil, err
 	}
-	f := &Prepared{pencil: p, scaled: p.scaled()}
+	f := p.structure(p.scaled())
+	return f, ctx.Err()
+}
+
+// structure splits the scaled form of p into pieces.
+func (p *Pencil) structure(scaled *intPencil) *Prepared {
+	f := &Prepared{pencil: p, scaled: scaled}
 	pattern := make([][]int, p.Size())
 	for i, r := range f.scaled.rows {
 		for _, e := range r {
@@ -40,7 +46,7 @@ func (p *Pencil) Prepare(ctx context.Context) (*Prepared, error) {
 	if f.form != nil {
 		f.dets = make([]*Poly, len(f.form.end))
 	}
-	return f, ctx.Err()
+	return f
 }
 
 // Blocks returns the number of pieces that the pencil falls into: diagonal

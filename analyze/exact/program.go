@@ -20,6 +20,7 @@ const (
 	opInverse               // dst = 1/a
 	opMul                   // dst = a·b
 	opNeg                   // dst = −a
+	opAdd                   // dst = dst + a
 )
 
 // op is one operation; a and b are slots or, for opDot, the range of its
@@ -209,6 +210,8 @@ func (v *machine) run(ctx context.Context, m *modulus, x []uint64) (bool, error)
 			}
 		case opNeg:
 			negInto(dst, v.slot(o.a, n), m.p)
+		case opAdd:
+			addInto(dst, v.slot(o.a, n), m.p)
 		}
 	}
 	return true, nil
@@ -298,5 +301,75 @@ func (v *machine) accumulate(n int, pairs []product, p uint64) {
 	}
 	for _, q := range pairs {
 		accumulate1(hi, lo, v.slot(q.l, n), v.slot(q.u, n), p)
+	}
+}
+
+// compileSolution returns a program for a system with one border column whose
+// outputs are the determinant of all blocks together and the components of
+// det·x, by back substitution.
+func (y *system) compileSolution(z *elimination) *program {
+	c := &compiler{y: y, z: z, p: &program{}}
+	c.p.slots = len(z.entries)
+	c.p.point = c.newSlot()
+	inverse := c.newSlot()
+	var pivots []int32
+	negative := false
+	for _, odd := range z.negative {
+		negative = negative != odd
+	}
+	for k := range z.pivots {
+		step := &z.pivots[k]
+		pivots = append(pivots, step.pivot)
+		for _, list := range [][]int32{{step.pivot}, step.upper, step.lower} {
+			for _, e := range list {
+				c.dot(e)
+			}
+		}
+		// The inverse always goes into the row: x is then the border less the
+		// products with later components.
+		if len(step.upper) > 0 {
+			c.emit(op{kind: opInverse, dst: inverse, a: step.pivot})
+			for _, e := range step.upper {
+				c.emit(op{kind: opMul, dst: e, a: e, b: inverse})
+			}
+		}
+	}
+	det := c.newSlot()
+	c.product(det, pivots)
+	if negative {
+		c.emit(op{kind: opNeg, dst: det, a: det})
+	}
+	c.p.outputs = append(c.p.outputs, det)
+	c.backSubstitute(det)
+	return c.p
+}
+
+// backSubstitute emits the components of x from the last pivot to the first
+// and multiplies them by the determinant. Components that no right-hand side
+// reaches are zero.
+func (c *compiler) backSubstitute(det int32) {
+	x := make([]int32, c.y.n) // slots by column
+	for k := len(c.z.pivots) - 1; k >= 0; k-- {
+		step := &c.z.pivots[k]
+		x[step.col] = c.newSlot()
+		o := op{kind: opDot, dst: x[step.col], source: -1, a: int32(len(c.p.pairs))}
+		border := int32(-1)
+		for i, e := range step.upper {
+			if col := step.upperCols[i]; col < c.y.n {
+				c.p.pairs = append(c.p.pairs, product{e, x[col]})
+			} else {
+				border = e
+			}
+		}
+		o.b = int32(len(c.p.pairs))
+		c.emit(o)
+		if border >= 0 {
+			c.emit(op{kind: opAdd, dst: x[step.col], a: border})
+		}
+	}
+	for _, slot := range x {
+		t := c.newSlot()
+		c.emit(op{kind: opMul, dst: t, a: slot, b: det})
+		c.p.outputs = append(c.p.outputs, t)
 	}
 }

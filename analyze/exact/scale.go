@@ -125,8 +125,12 @@ type scaleEntry struct {
 	tenfold
 }
 
-// scaled returns the integer form of p with small numbers.
-func (p *Pencil) scaled() *intPencil {
+// scaled returns the integer form of p with small numbers, in a unit of time
+// that is chosen for it.
+func (p *Pencil) scaled() *intPencil { return p.toIntegers(true) }
+
+// toIntegers is scaled with or without another unit of time.
+func (p *Pencil) toIntegers(chooseTime bool) *intPencil {
 	n := p.Size()
 	count := 0
 	for _, r := range p.rows {
@@ -147,7 +151,10 @@ func (p *Pencil) scaled() *intPencil {
 	for i := range list {
 		list[i].log = list[i].tenfold.log()
 	}
-	q := &intPencil{exponent: timeScale(list, n)}
+	q := &intPencil{}
+	if chooseTime {
+		q.exponent = timeScale(list, n)
+	}
 	for i := range list {
 		if list[i].reactive {
 			list[i].two += q.exponent

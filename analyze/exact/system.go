@@ -192,3 +192,24 @@ func (y *system) reactiveRank(start, end int) int {
 	}
 	return rank
 }
+
+// solutionBound returns, for a system with one border column, the logarithm
+// of a bound on |det| and on the components of det·x on |s| = 1, by
+// Hadamard's inequality and Cramer's rule: in the matrix with one column
+// replaced by the border, every row is part of the bordered row.
+func (y *system) solutionBound() float64 {
+	w := y.equilibrate()
+	sum, least := 0.0, math.Inf(1)
+	for i := range y.n {
+		norm := 0.0
+		for k, e := range y.rows[i] {
+			norm += math.Exp2(2 * (w.log[i][k] + w.row[i] + w.col[e.col]))
+		}
+		sum += 0.5*math.Log2(norm) - w.row[i] - w.col[i] + boundSlack
+	}
+	// A replaced column k has the multiplier of the border instead.
+	for k := range y.n {
+		least = min(least, w.col[y.n]-w.col[k])
+	}
+	return max(sum, sum-least)
+}
