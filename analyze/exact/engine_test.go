@@ -2,6 +2,8 @@ package exact
 
 import (
 	"context"
+	"errors"
+	"math/big"
 	"testing"
 
 	"pgregory.net/rapid"
@@ -83,5 +85,167 @@ func TestFrontierAgreesWithModular(t *testing.T) {
 	})
 	if compared == 0 {
 		t.Error("nothing was compared")
+	}
+}
+
+// Responses are the numerators over the determinant in lowest terms.
+func TestResponses(t *testing.T) {
+	ctx := context.Background()
+	rapid.Check(t, func(t *rapid.T) {
+		p := drawPencil(t, 8, 30)
+		n := p.Size()
+		rhs := []Vector{drawVector(t, n, "rhs"), drawVector(t, n, "rhs")}
+		out := []Vector{drawVector(t, n, "out"), drawVector(t, n, "out")}
+		f, err := p.Prepare(ctx)
+		if err != nil {
+			t.Fatal(err)
+		}
+		h, err := f.Responses(ctx, rhs, out)
+		fresh, _ := p.Prepare(ctx)
+		d := fresh.Determinant()
+		num, numErr := fresh.Numerators(ctx, rhs, out)
+		if numErr != nil {
+			t.Fatal(numErr)
+		}
+		if d.IsZero() {
+			// Only the pieces asked about need to be regular.
+			return
+		}
+		if err != nil {
+			t.Fatal(err)
+		}
+		for i := range out {
+			for j := range rhs {
+				want, _ := NewRatio(num[i][j], d)
+				if !h[i][j].Equal(want) {
+					t.Fatalf("response %d %d: %v, want %v", i, j, h[i][j], want)
+				}
+			}
+		}
+		// The order of questions does not matter.
+		if !f.Determinant().Equal(d) {
+			t.Fatal("determinant after the responses")
+		}
+	})
+}
+
+// A pencil that falls into pieces is solved piece by piece, and a question
+// meets only the pieces between source and output.
+func TestPiecesAreSolvedApart(t *testing.T) {
+	ctx := context.Background()
+	const count = 40
+	p := NewPencil(3 * count)
+	one := big.NewRat(1, 1)
+	for k := range count {
+		// Three unknowns in a loop; each piece reads the one before.
+		a := 3 * k
+		for i := range 3 {
+			p.Add(a+i, a+i, decimal(k+i, 0), decimal(k+2*i, -6))
+			p.Add(a+i, a+(i+1)%3, one, nil)
+		}
+		if k > 0 && k != count/2 {
+			p.Add(a, a-1, decimal(k, 1), nil)
+		}
+	}
+	// One piece is singular, at the end of the first chain.
+	broken := 3 * (count/2 - 1)
+	for i := range 3 {
+		for j := range 3 {
+			e := p.entry(broken+i, broken+j)
+			e.G.SetInt64(1)
+			e.C.SetInt64(0)
+		}
+	}
+	f, err := p.Prepare(ctx)
+	if err != nil {
+		t.Fatal(err)
+	}
+	if f.Blocks() != count {
+		t.Fatalf("%d pieces, want %d", f.Blocks(), count)
+	}
+	// The second chain is not touched by the broken piece.
+	start := 3 * (count / 2)
+	h, err := f.Responses(ctx, []Vector{Unit(start)}, []Vector{Unit(start), Unit(start + 5), Unit(2)})
+	if err != nil {
+		t.Fatal(err)
+	}
+	if h[0][0].Den.Degree() != 3 || h[1][0].Den.Degree() != 6 || !h[2][0].IsZero() {
+		t.Errorf("degrees %d, %d; want 3, 6", h[0][0].Den.Degree(), h[1][0].Den.Degree())
+	}
+	for b, d := range f.dets {
+		if known := d != nil; known != (b == f.form.blockOfRow[start] || b == f.form.blockOfRow[start+3]) {
+			t.Errorf("determinant of piece %d known: %v", b, known)
+		}
+	}
+	var singular *SingularError
+	if _, err := f.Responses(ctx, []Vector{Unit(broken)}, []Vector{Unit(broken)}); !errors.As(err, &singular) {
+		t.Errorf("response of the singular piece: %v", err)
+	}
+	if !f.Determinant().IsZero() {
+		t.Error("the determinant is not zero")
+	}
+}
+
+// Values of 290 bits, as stand-ins for irrational numbers have, and values
+// spread over 600 decades.
+func TestLongValues(t *testing.T) {
+	ctx := context.Background()
+	rapid.Check(t, func(t *rapid.T) {
+		n := rapid.IntRange(1, 6).Draw(t, "n")
+		p := NewPencil(n)
+		for i := range n {
+			for j := range n {
+				if i != j && rapid.IntRange(0, 2).Draw(t, "entry") == 0 {
+					continue
+				}
+				v := drawRat(t, 290, "g")
+				v.Mul(v, powerOfTen(rapid.IntRange(-300, 300).Draw(t, "decade")))
+				w := drawRat(t, 290, "c")
+				w.Mul(w, powerOfTen(rapid.IntRange(-300, 300).Draw(t, "decade")))
+				p.Add(i, j, v, w)
+			}
+		}
+		f, err := p.Prepare(ctx)
+		if err != nil {
+			t.Fatal(err)
+		}
+		d := f.Determinant()
+		s := drawRat(t, 30, "s")
+		if got, want := d.Eval(s), rationalDeterminant(p, s); got.Cmp(want) != 0 {
+			t.Fatalf("determinant at %v: %v, want %v", s, got, want)
+		}
+	})
+}
+
+// The bounds that decide the number of points and primes hold for the true
+// coefficients, and are tight enough to be worth their name.
+func TestBoundsHold(t *testing.T) {
+	ctx := context.Background()
+	for _, n := range benchmarkNetworks {
+		if n.size > 50 {
+			continue
+		}
+		p, rhs, input, _ := n.build(n.size)
+		f, err := p.Prepare(ctx)
+		if err != nil {
+			t.Fatal(err)
+		}
+		rowAt, colAt := f.positions([]int{0})
+		y := f.system([]int{0}, []border{f.rhsBorder(rhs, rowAt)}, []border{f.outBorder(input, colAt)})
+		dets, nums, err := y.solveModular(ctx, []bool{true})
+		if err != nil {
+			t.Fatal(err)
+		}
+		detBits, numBits := y.coefficientBounds()
+		detDegree, numDegree := y.degreeBounds()
+		check := func(what string, q Poly, bits float64, degree int) {
+			got := float64(maxBits(q.c))
+			if got-1 > bits || q.Degree() > degree {
+				t.Errorf("%v: %s has %v bits and degree %d, bounds %v and %d", n, what, got, q.Degree(), bits, degree)
+			}
+			t.Logf("%v: %s of %v bits, bound %.0f; degree %d, bound %d", n, what, got, bits, q.Degree(), degree)
+		}
+		check("determinant", dets[0], detBits[0], detDegree[0])
+		check("numerator", nums[0], numBits[0], numDegree)
 	}
 }
