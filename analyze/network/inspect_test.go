@@ -215,6 +215,14 @@ func TestDiagnose(t *testing.T) {
 				Numerator: numbers(t, "5"), Of: []Probe{{Quantity: ElementFlow, Element: b.index["V"]}},
 			}}})
 		}, nil},
+		{"the current of an open switch sensed, well posed", func(b *builder) {
+			b.two(VoltageSource, "V", "a 0", "")
+			b.two(Open, "S", "a b", "")
+			b.two(Resistor, "R", "b 0", "1")
+			b.put(Element{Name: "F", Kind: DependentCurrent, From: b.node("b"), Controls: []Control{{
+				Numerator: numbers(t, "5"), Of: []Probe{{Quantity: ElementFlow, Element: b.index["S"]}},
+			}}})
+		}, nil},
 		{"a loop whose current is sensed elsewhere", func(b *builder) {
 			b.two(VoltageSource, "V", "a 0", "")
 			b.two(Short, "S", "a 0", "")

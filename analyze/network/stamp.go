@@ -20,7 +20,8 @@ func (a *assembler) element(i int) {
 		a.immittance(i, e)
 	case VoltageSource, Short:
 		a.prescribed(i, e)
-	case CurrentSource:
+	case CurrentSource, Open:
+		// i = u, or i = 0 through an open switch, where i is sensed.
 		if a.sensed[i] {
 			c := a.currentOf(i)
 			a.flow(e.From, e.To, c)
@@ -153,7 +154,6 @@ func (a *assembler) probed(probes []Probe) exact.Vector {
 		switch {
 		case p.Quantity == NodePair:
 			q = a.across(p.Plus, p.Minus)
-		case a.network.Elements[p.Element].Kind == Open:
 		case p.Quantity == TerminalCurrent:
 			q = exact.Unit(a.terminal(p.Element, p.Winding))
 		default:
