@@ -330,6 +330,9 @@ func magnitudeOf(x *big.Float) (lower, upper magnitude) {
 }
 
 func magnitudeOfAny(x *big.Float) (lower, upper magnitude) {
+	if x.Sign() == 0 {
+		return magnitude{}, magnitude{}
+	}
 	var mantissa big.Float
 	e := x.MantExp(&mantissa)
 	mantissa.SetMantExp(&mantissa, 64)
