@@ -21,6 +21,7 @@ type File struct {
 	Comments   []*Comment  // all of them, in order of the text
 	Doc        *Doc        // the ## block at the top, nil when there is none
 	Findings   []Finding   // what parsing found, in order of the text
+	Unreadable bool        // not notation at all (binary, UTF-16); nothing in it is read
 	Lines      *Lines      // line index of Text
 }
 

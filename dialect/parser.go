@@ -9,8 +9,9 @@ import (
 // damaged or hostile text from costing more than a moment.
 const (
 	maxStatement = 64 << 10 // bytes in one statement
-	maxBrackets   = 200      // nested brackets and powers
+	maxBrackets  = 200      // nested brackets and powers
 	maxFindings  = 100      // syntax findings in one file
+	maxInvalid   = 32       // bytes that are not UTF-8, if they are a tenth of the text
 	maxBodies    = 20       // nested subnetwork bodies
 	tabWidth     = 4        // columns of a tab, for indentation
 )
@@ -72,6 +73,8 @@ type parser struct {
 	unit    string // the unit that the place expects, "" if unknown
 	inValue bool   // a tolerance would end the expression
 
+	slabs slabs
+
 	record *recorder // notes what would fit at the end; nil when parsing
 }
 
@@ -79,7 +82,7 @@ type parser struct {
 func (p *parser) readable() bool {
 	p.invalid = countInvalid(p.text)
 	nul := strings.IndexByte(p.text, 0)
-	if nul < 0 && p.invalid*10 <= len(p.text) {
+	if nul < 0 && (p.invalid < maxInvalid || p.invalid*10 <= len(p.text)) {
 		return true
 	}
 	message := "this is not text, so nothing in it is read"
@@ -90,6 +93,7 @@ func (p *parser) readable() bool {
 	p.file.Statements = []Statement{&BrokenStatement{Head: *p.head}}
 	p.fail(Span{0, min(len(p.text), p.file.Lines.Span(0).End)}, message)
 	p.invalid = 0
+	p.file.Unreadable = true
 	return false
 }
 

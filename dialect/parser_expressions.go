@@ -89,7 +89,9 @@ func (p *parser) binary(t token, op byte, x, y Expr) Expr {
 	if t.kind == tMinus {
 		op = '-'
 	}
-	return &BinaryExpr{Span: Span{x.Extent().Start, y.Extent().End}, Op: op, Mark: t.span(), X: x, Y: y}
+	b := fresh(&p.slabs.binaries)
+	*b = BinaryExpr{Span: Span{x.Extent().Start, y.Extent().End}, Op: op, Mark: t.span(), X: x, Y: y}
+	return b
 }
 
 // unary puts a sign before an operand.
@@ -230,9 +232,6 @@ func (p *parser) noOperand(t token) Expr {
 		p.fail(t.span(), fmt.Sprintf("an expression is expected here, not %s", p.describe()))
 	}
 	h := p.hole(WantExpression, nil)
-	if p.unit != "" {
-		h.Words = []string{p.unit}
-	}
 	if t.kind == tForeign || t.kind == tBad {
 		p.take()
 		h.Span = t.span()
@@ -256,7 +255,8 @@ func (p *parser) bracketed(read func()) {
 // paren reads a bracketed expression.
 func (p *parser) paren() Expr {
 	open := p.take()
-	x := &ParenExpr{Span: open.span(), Open: open.span(), Close: Span{open.end, open.end}}
+	x := fresh(&p.slabs.parens)
+	*x = ParenExpr{Span: open.span(), Open: open.span(), Close: Span{open.end, open.end}}
 	p.bracketed(func() {
 		commas := p.commas
 		p.commas = 0
@@ -340,8 +340,9 @@ func (p *parser) subscript() Expr {
 	if !isQuantityLetter(letter.Text) {
 		p.badLetter(letter)
 	}
-	x := &SubscriptExpr{Letter: letter, Open: p.take().span()}
-	x.Subscripts = append(x.Subscripts, p.subscriptName(letter.Text))
+	x := fresh(&p.slabs.subscripts)
+	x.Letter, x.Open = letter, p.take().span()
+	x.Subscripts = one(&p.slabs.nameRoom, p.subscriptName(letter.Text))
 	if p.is(tComma) {
 		x.Comma = p.take().span()
 		x.Subscripts = append(x.Subscripts, p.subscriptName(letter.Text))
@@ -377,11 +378,17 @@ func (p *parser) subscriptName(letter string) *NameExpr {
 		h.Name = letter
 		return oneWord(Word{Span: h.Span})
 	}
-	if t.kind == tWord {
+	if t.kind == tWord && !p.signTail() {
 		return p.qualified()
 	}
-	n := oneWord(p.node())
-	return n
+	return oneWord(p.node())
+}
+
+// signTail says that a sign sticks to the current word and ends the
+// subscript: "A+".
+func (p *parser) signTail() bool {
+	sign, after := p.peekAt(1).kind, p.peekAt(2).kind
+	return (sign == tPlus || sign == tMinus) && p.touches(1) && (after == tClose || after == tComma)
 }
 
 // oneWord makes a name of a single word.
@@ -394,7 +401,10 @@ func oneWord(w Word) *NameExpr {
 
 // qualified reads: node { "." node }, from a word on.
 func (p *parser) qualified() *NameExpr {
-	n := oneWord(p.word(p.take()))
+	n := fresh(&p.slabs.names)
+	w := p.word(p.take())
+	n.Span, n.first[0] = w.Span, w
+	n.Words = n.first[:]
 	for p.touches(0) {
 		t := p.peek()
 		switch {
@@ -464,10 +474,11 @@ func (p *parser) closeAhead() bool {
 // call reads the arguments of a call.
 func (p *parser) call(callee Expr) Expr {
 	open := p.take()
-	x := &CallExpr{Callee: callee, Open: open.span(), Close: Span{open.end, open.end}}
+	x := fresh(&p.slabs.calls)
+	*x = CallExpr{Callee: callee, Open: open.span(), Close: Span{open.end, open.end}}
 	p.bracketed(func() {
 		p.commas++
-		x.Args = append(x.Args, p.expr())
+		x.Args = one(&p.slabs.exprRoom, p.expr())
 		for p.is(tComma) || p.failed && p.commaAhead() {
 			if p.failed {
 				p.skipTo(tComma)

@@ -13,7 +13,8 @@ func (p *parser) number() Expr {
 	if t.kind == tDigits {
 		split = scanMantissa(text, 0)
 	}
-	n := &NumberExpr{Span: t.span(), Number: Word{Span{t.start, t.start + split}, text[:split]}}
+	n := fresh(&p.slabs.numbers)
+	*n = NumberExpr{Span: t.span(), Number: Word{Span{t.start, t.start + split}, text[:split]}}
 	if t.kind == tDigits {
 		return p.lettered(n, text[split:])
 	}
@@ -211,14 +212,15 @@ func (p *parser) unitFrom(n *NumberExpr, symbol Word) Expr {
 	if !f.Known {
 		return p.badUnit(n, symbol)
 	}
-	n.Unit = &UnitExpr{Span: symbol.Span}
+	n.Unit = fresh(&p.slabs.units)
+	n.Unit.Span = symbol.Span
 	return p.factors(n, f)
 }
 
 // factors reads the rest of a unit: powers, and symbols chained by * and /.
 func (p *parser) factors(n *NumberExpr, f UnitFactor) Expr {
-	p.unitPower(&f)
-	n.Unit.Factors = append(n.Unit.Factors, f)
+	n.Unit.Factors = one(&p.slabs.factorRoom, f)
+	p.unitPower(&n.Unit.Factors[0])
 	for (p.is(tStar) || p.is(tSlash)) && p.touches(0) && p.touches(1) && p.symbolAt(1) {
 		divide := p.take().kind == tSlash
 		f := knownFactor(p.word(p.take()))

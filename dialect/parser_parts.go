@@ -280,16 +280,21 @@ func (p *parser) percentAt(n int) bool {
 
 // tolerance reads ±X, +-X, or one or two signed percentages.
 func (p *parser) tolerance() *ToleranceClause {
-	c := &ToleranceClause{Span: p.peek().span()}
+	c := fresh(&p.slabs.tolerances)
+	c.Span = p.peek().span()
 	both := p.is(tPlusMinus)
-	c.Bound = append(c.Bound, p.bound())
+	c.Bound = one(&p.slabs.boundRoom, p.bound())
 	if !both && (p.is(tPlus) || p.is(tMinus)) && p.percentAt(0) {
 		c.Bound = append(c.Bound, p.bound())
 	}
 	c.Span.End = max(p.last(), c.Span.End)
-	if p.toleranceAhead() {
-		t := p.peek()
+	t := p.peek()
+	switch {
+	case p.toleranceAhead():
 		p.fail(t.span(), "a value has one tolerance: ±5 %, or +20 % -10 %")
+		p.skipTo(tComma, tBars, tClose)
+	case t.kind == tPlus || t.kind == tMinus || t.kind == tStar || t.kind == tSlash || t.kind == tCaret:
+		p.fail(c.Span, "a signed percentage outside brackets is a tolerance and ends the value; to calculate with it, put brackets around it")
 		p.skipTo(tComma, tBars, tClose)
 	}
 	return c
@@ -332,7 +337,7 @@ func (p *parser) options(s *PartStatement) {
 		}
 		o := p.option(s)
 		o.Comma = comma
-		s.Options = append(s.Options, o)
+		s.Options = add(&p.slabs.optionRoom, s.Options, o)
 	}
 }
 
@@ -370,7 +375,8 @@ func unusedOptions(s *PartStatement) []string {
 // option reads one option after its comma.
 func (p *parser) option(s *PartStatement) *PartOption {
 	t := p.peek()
-	o := &PartOption{Span: t.span()}
+	o := fresh(&p.slabs.options)
+	o.Span = t.span()
 	if t.kind != tPlus && t.kind != tMinus && (t.kind != tWord || !isOptionWord(p.read(t))) {
 		p.badOption(s, o)
 		return o
@@ -388,7 +394,7 @@ func (p *parser) option(s *PartStatement) *PartOption {
 		p.unit = unit
 	case "+", "-", "output":
 		o.At = p.keyword("at", atWord)
-		o.Nodes = []Word{p.node()}
+		o.Nodes = one(&p.slabs.wordRoom, p.node())
 	case "primary", "secondary":
 		o.At = p.keyword("at", atWord)
 		o.Nodes = []Word{p.node(), p.node()}

@@ -10,6 +10,8 @@ func (p *parser) pathAhead() bool {
 		return true
 	case second.kind == tMinus && third.kind == tOpen && first.kind != tString:
 		return true // in - [R1] - out
+	case second.kind == tOpen && first.kind == tWord && first.end < second.start && !isStatementWord(p.read(first)):
+		return true // in [R1]- out
 	case first.kind == tWord && (isStatementWord(p.read(first)) || beginsKind(p.read(first))):
 		return false
 	}
@@ -23,9 +25,10 @@ func (p *parser) pathAhead() bool {
 
 // path reads: NODE -[BOX]- NODE -[BOX]- NODE …
 func (p *parser) path(head Head) Statement {
-	s := &PathStatement{Head: head}
+	s := fresh(&p.slabs.paths)
+	s.Head = head
 	p.begin(&s.Head)
-	s.Nodes = append(s.Nodes, p.node())
+	s.Nodes = p.twoWords(p.node())
 	if p.failed && !p.skipToBox() {
 		return s
 	}
@@ -35,7 +38,7 @@ func (p *parser) path(head Head) Statement {
 			break
 		}
 		chain, more := p.chain(open)
-		s.Chains = append(s.Chains, chain)
+		s.Chains = add(&p.slabs.chainRoom, s.Chains, chain)
 		if !more {
 			s.Nodes = append(s.Nodes, p.holeWord(WantNode))
 			break
@@ -55,6 +58,17 @@ var (
 	markClose = []string{"]"}
 	markBars  = []string{"||", "]"}
 )
+
+// twoWords makes a list with one word and room for another.
+func (p *parser) twoWords(w Word) []Word {
+	if len(p.slabs.wordRoom) < 2 {
+		p.slabs.wordRoom = make([]Word, 2*slabSize)
+	}
+	list := p.slabs.wordRoom[:1:2]
+	p.slabs.wordRoom = p.slabs.wordRoom[2:]
+	list[0] = w
+	return list
+}
 
 // skipToBox drops what cannot be a node, up to the first box.
 func (p *parser) skipToBox() bool {
@@ -93,10 +107,11 @@ func (p *parser) openBox() (Span, bool) {
 // chain reads boxes in series up to the "-" before the next node. It says
 // whether a node follows.
 func (p *parser) chain(open Span) (*Chain, bool) {
-	c := &Chain{Span: open}
+	c := fresh(&p.slabs.chains)
+	c.Span = open
 	for {
 		g := p.group(open)
-		c.Groups = append(c.Groups, g)
+		c.Groups = add(&p.slabs.groupRoom, c.Groups, g)
 		c.Span.End = g.Span.End
 		if p.is(tMinus) && p.peekAt(1).kind != tOpen && p.peekAt(1).kind != tOpenBox {
 			break
@@ -115,7 +130,7 @@ func (p *parser) dash(c *Chain) bool {
 	if p.is(tMinus) {
 		c.Dash = p.take().span()
 		c.Span.End = c.Dash.End
-		if p.is(tMinus) {
+		if p.is(tMinus) && (p.touches(0) || !p.touches(1)) {
 			extra := p.peek().span()
 			p.fail(extra, "one `-` closes a box: ]-", p.only("remove it", extra, ""))
 			p.failed = false
@@ -145,9 +160,10 @@ func (p *parser) dash(c *Chain) bool {
 
 // group reads one box with its parallel parts, after its "-[".
 func (p *parser) group(open Span) *Group {
-	g := &Group{Span: open, Open: open}
+	g := fresh(&p.slabs.groups)
+	g.Span, g.Open = open, open
 	for {
-		g.Boxes = append(g.Boxes, p.box())
+		g.Boxes = add(&p.slabs.boxRoom, g.Boxes, p.box())
 		if !p.is(tBars) && !p.is(tClose) && !p.is(tEnd) {
 			p.boxJunk()
 		}
@@ -247,8 +263,11 @@ func (p *parser) box() Box {
 		if after == tWord || after == tEquals {
 			return p.badKind()
 		}
-		b := &NameBox{Name: p.word(p.take())}
-		p.touching(b.Name)
+		b := fresh(&p.slabs.boxes)
+		b.Name = p.word(p.take())
+		if p.closeAhead() { // otherwise the "]" is missing
+			p.touching(b.Name)
+		}
 		return b
 	}
 	if t.kind == tDigits || t.kind == tNumber {
@@ -287,7 +306,8 @@ func (p *parser) inline(h *Head, read func()) {
 // inlinePart reads a part statement in a box.
 func (p *parser) inlinePart(kind Kind, words int) Box {
 	t := p.peek()
-	s := &PartStatement{Kind: kind}
+	s := fresh(&p.slabs.parts)
+	s.Kind = kind
 	s.Head = Head{Span: t.span(), Inline: true, Keyword: Word{Span{t.start, p.peekAt(words - 1).end}, kind.String()}}
 	p.at += words
 	p.inline(&s.Head, func() { p.part(s) })

@@ -221,8 +221,13 @@ func (p *parser) qualifiers() []*Qualifier {
 			p.want(WantQualifier, nil)
 			return list
 		}
-		q := &Qualifier{Span: t.span(), Keyword: p.word(t)}
-		switch q.Keyword.Text {
+		word := p.read(t)
+		if !startsQualifier(word) {
+			return list
+		}
+		q := fresh(&p.slabs.qualifiers)
+		q.Span, q.Keyword = t.span(), p.word(t)
+		switch word {
 		case "at", "before":
 			p.take()
 			q.Value = p.expr()
@@ -243,15 +248,22 @@ func (p *parser) qualifiers() []*Qualifier {
 		case "without":
 			p.take()
 			p.without(q)
-		default:
-			return list
 		}
 		q.Span.End = max(p.last(), q.Span.End)
-		list = append(list, q)
+		list = add(&p.slabs.qualifierRoom, list, q)
 	}
 }
 
 var toWord = []string{"to"}
+
+// startsQualifier says that a word begins a qualifier.
+func startsQualifier(s string) bool {
+	switch s {
+	case "at", "before", "from", "to", "with", "without":
+		return true
+	}
+	return false
+}
 
 // without reads NAME {"," NAME}.
 func (p *parser) without(q *Qualifier) {

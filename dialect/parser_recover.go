@@ -145,12 +145,10 @@ func (p *parser) only(title string, span Span, text string) Repair {
 
 // hole notes that something is missing at the current token.
 func (p *parser) hole(want Want, words []string) *Hole {
-	at := p.peek().start
-	if p.is(tEnd) {
-		at = p.last()
+	h := p.newHole(want, words)
+	if p.record != nil && p.is(tEnd) {
+		p.record.add(h)
 	}
-	h := &Hole{Span: Span{at, at}, Want: want, Kind: p.kind, Words: words}
-	p.want(want, words)
 	p.head.Holes = append(p.head.Holes, h)
 	p.head.Broken = true
 	return h
@@ -249,6 +247,8 @@ func (p *parser) leftover() {
 		p.fail(t.span(), fmt.Sprintf("%s closes nothing", p.describe()), p.only("remove it", t.span(), ""))
 	case t.kind == tBraceClose:
 		p.fail(t.span(), "`}` stands alone on its line")
+	case t.kind == tPlusMinus:
+		p.fail(t.span(), "a tolerance stands only after the value of a part")
 	case t.kind == tBrace:
 		p.fail(t.span(), "`{` belongs to a subnetwork's first line: subnetwork NAME (TERMINAL, …) {")
 	case t.kind == tComma:

@@ -30,7 +30,8 @@ func (p *parser) statement(head Head, line int) Statement {
 	if kind, words := p.kindAhead(); kind != NoKind {
 		head.Keyword = Word{Span{t.start, p.peekAt(words - 1).end}, kind.String()}
 		p.at += words
-		s := &PartStatement{Head: head, Kind: kind}
+		s := fresh(&p.slabs.parts)
+		s.Head, s.Kind = head, kind
 		p.head = &s.Head
 		p.part(s)
 		p.finish()

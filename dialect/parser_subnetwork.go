@@ -16,6 +16,9 @@ func (p *parser) subnetwork(head Head, line int) Statement {
 		}
 	}
 	p.finish()
+	if p.record != nil {
+		return s
+	}
 	if !open && !p.bodyFollows(line) {
 		s.BodyStart, s.BodyStop = s.Head.Span.End, s.Head.Span.End
 		s.BraceClose = Span{s.Head.Span.End, s.Head.Span.End}
@@ -174,7 +177,7 @@ func (p *parser) body(s *SubnetworkStatement, line int) {
 		p.failed = false
 		p.fail(s.BraceOpen, "this `{` is never closed; a `}` on a line of its own ends the subnetwork",
 			p.only("insert `}`", Span{end, end}, "\n"+strings.Repeat(" ", p.indent(line))+"}"))
-		p.hole(WantMark, []string{"}"})
+		s.Holes = append(s.Holes, &Hole{Span: Span{end, end}, Want: WantMark, Words: []string{"}"}})
 		return
 	}
 	p.closeBrace(s)
