@@ -2,6 +2,7 @@ package exact
 
 import (
 	"math"
+	"math/big"
 	"math/cmplx"
 )
 
@@ -17,7 +18,7 @@ func (s *rootSolver) match() {
 		}
 		x, k := s.views[i].x, s.views[i].k
 		mirror := cmplx.Conj(x)
-		nearest, twin, twinDistance := math.Inf(1), -1, math.Inf(1)
+		nearest, twin, twinDistance, second := math.Inf(1), -1, math.Inf(1), math.Inf(1)
 		for j := range s.views {
 			if j == i {
 				continue
@@ -28,8 +29,10 @@ func (s *rootSolver) match() {
 				continue
 			}
 			y := s.views[j].x * complex(math.Ldexp(1, shift), 0)
-			if d := cmplx.Abs(mirror - y); d < twinDistance && s.roots[j].link < 0 {
-				twin, twinDistance = j, d
+			if d := cmplx.Abs(mirror - y); d < twinDistance {
+				twin, twinDistance, second = j, d, twinDistance
+			} else {
+				second = math.Min(second, d)
 			}
 			nearest = math.Min(nearest, cmplx.Abs(x-y))
 		}
@@ -40,11 +43,11 @@ func (s *rootSolver) match() {
 			a.normalise()
 			a.log, a.tries = math.Inf(1), 0
 			s.look(i)
-		case twin >= 0 && twinDistance < nearest/10 && imag(x) != 0:
-			first, second := min(i, twin), max(i, twin)
-			s.roots[first].link, s.roots[second].link = second, first
-			s.roots[first].tries, s.roots[second].tries = 0, 0
-			s.look(first)
+		case twin >= 0 && s.roots[twin].link < 0 && twinDistance < math.Min(nearest, second)/10 && imag(x) != 0:
+			leader, follower := min(i, twin), max(i, twin)
+			s.roots[leader].link, s.roots[follower].link = follower, leader
+			s.roots[leader].tries, s.roots[follower].tries = 0, 0
+			s.look(leader)
 		}
 	}
 }
@@ -63,12 +66,33 @@ func (s *rootSolver) isolated() bool {
 				continue
 			}
 			isolated = false
-			for _, m := range []int{i, j} {
-				s.wantMore(m)
+			s.wantMore(i)
+			s.wantMore(j)
+			if s.roots[j].crowded++; s.roots[j].crowded%crowdedRounds == 0 {
+				s.displace(j)
 			}
 		}
 	}
 	return isolated
+}
+
+// crowdedRounds is the number of times that the goal of overlapping discs is
+// raised before it is thought that two points went for one root.
+const crowdedRounds = 4
+
+// displace moves a point that may have gone for the root of another one away:
+// the repulsion sends it to a root that has none.
+func (s *rootSolver) displace(i int) {
+	a := &s.roots[i]
+	if a.link >= 0 {
+		s.roots[a.link].link = -1
+		a.link = -1
+	}
+	a.y.Add(a.y, new(big.Int).Rsh(a.x, 2))
+	a.x.Add(a.x, new(big.Int).Rsh(a.x, 1))
+	a.normalise()
+	a.log, a.step, a.tries = math.Inf(1), 1, 0
+	s.look(i)
 }
 
 // wantMore sets the goal of a point 30 bits beyond what it has reached.

@@ -41,15 +41,16 @@ const slack = 0x1p-20
 // approximation is z = (x + j·y)·2^(k−64Z+1); the longer of x and y has 64Z−1
 // bits.
 type approximation struct {
-	x, y  *big.Int
-	words int // Z
-	k     int
-	work  int     // W of the evaluations
-	log   float64 // the root is within 2^log·|z|; +Inf where nothing is known
-	goal  float64 // wanted: log ≤ −goal
-	step  float64 // size of the last correction, relative
-	tries int     // corrections since the last change of plan
-	link  int     // index of the mirror image that is kept in step, own index for a real point, −1 for none
+	x, y    *big.Int
+	words   int // Z
+	k       int
+	work    int     // W of the evaluations
+	log     float64 // the root is within 2^log·|z|; +Inf where nothing is known
+	goal    float64 // wanted: log ≤ −goal
+	step    float64 // size of the last correction, relative
+	tries   int     // corrections since the last change of plan
+	crowded int     // rounds in which the disc was not disjoint
+	link    int     // index of the mirror image that is kept in step, own index for a real point, −1 for none
 }
 
 func newRootSolver(p Poly) *rootSolver { return &rootSolver{poly: p} }
@@ -200,7 +201,7 @@ const mostSweeps = 4000
 
 // iterate moves every point until its bound meets its goal.
 func (s *rootSolver) iterate(ctx context.Context) error {
-	for sweep := range mostSweeps {
+	for range mostSweeps {
 		if !s.certified {
 			s.match()
 		}
@@ -218,16 +219,12 @@ func (s *rootSolver) iterate(ctx context.Context) error {
 			}
 			s.look(i)
 		}
-		if waiting == 0 && !s.matchLeft(sweep) {
+		if waiting == 0 {
 			return nil
 		}
 	}
 	return errUnsettled
 }
-
-// matchLeft tells whether points are left that match would change. Only asked
-// when all goals are met; certification looks after the rest.
-func (s *rootSolver) matchLeft(int) bool { return false }
 
 // improve evaluates p at a point and corrects it by the step of Aberth and
 // Ehrlich unless the bound there meets the goal. A correction is only made from

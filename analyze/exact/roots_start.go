@@ -153,29 +153,40 @@ func repulsion(z []start, i int) complex128 {
 
 // roughRoots moves the starting points by the iteration of Aberth and Ehrlich
 // (O. Aberth, Math. Comp. 27 (1973) 339–344) in complex128 until each is as
-// good as that arithmetic shows, which may be good or poor.
+// good as that arithmetic shows, which may be good or poor. The polynomial is
+// evaluated by a three-term recurrence where one is found, as its roots are far
+// better conditioned there than with the coefficients.
 func (e *evaluator) roughRoots() []start {
 	z := e.startingPoints()
-	c := make([]float64, e.n+1)
-	settled := make([]bool, e.n)
-	for sweep := 0; sweep < 60; sweep++ {
+	evaluate := e.coefficientEvaluation()
+	if r := e.threeTerm(); r != nil {
+		evaluate = r.evaluate
+	}
+	last := make([]float64, e.n) // size of the last step, 0 when settled
+	for i := range last {
+		last[i] = 8
+	}
+	for range 60 {
 		moving := 0
 		for i := range z {
-			if settled[i] {
+			if last[i] == 0 {
 				continue
 			}
-			ratio, noise := e.roughEvaluation(z[i], c)
+			ratio, noise := evaluate(z[i])
 			if noise {
-				settled[i] = true
+				last[i] = 0
 				continue
 			}
 			moving++
 			step := 1 / (ratio - repulsion(z, i))
-			if size := cmplx.Abs(step); !(size < 8) {
+			size := cmplx.Abs(step)
+			switch {
+			case !(size < 8):
 				step = complex(0.3, 0.4) // a way out of a stationary point
-			} else if size < 0x1p-40 {
-				settled[i] = true
+			case size < 0x1p-40, size < 0x1p-8 && size > last[i]/2:
+				size = 0
 			}
+			last[i] = size
 			z[i].x -= z[i].x * step
 			z[i] = z[i].normal()
 		}
@@ -184,4 +195,9 @@ func (e *evaluator) roughRoots() []start {
 		}
 	}
 	return z
+}
+
+func (e *evaluator) coefficientEvaluation() func(start) (complex128, bool) {
+	c := make([]float64, e.n+1)
+	return func(z start) (complex128, bool) { return e.roughEvaluation(z, c) }
 }
