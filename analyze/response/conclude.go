@@ -88,7 +88,7 @@ func greatestOf(places []place) Extreme {
 
 // coarse is what the search itself knows of a cluster.
 func (s *search) coarse(c cluster) place {
-	lo, hi := new(big.Float).SetFloat64(s.best), new(big.Float).SetFloat64(c.hi)
+	lo, hi := new(big.Float).SetFloat64(s.best), new(big.Float).SetFloat64(c.hi())
 	p := place{value: number.Hull(lo, hi, refinePrecision), attained: true, hasAt: true}
 	p.at = number.Hull(new(big.Float).SetFloat64(c.a), new(big.Float).SetFloat64(c.b), refinePrecision)
 	p.at = p.at.Add(number.BallFromRat(c.stage.origin, refinePrecision))
@@ -102,10 +102,10 @@ func (s *search) refine(ctx context.Context, c cluster) (place, bool, error) {
 	if math.IsInf(c.b, 1) {
 		return s.refineTail(ctx, c)
 	}
-	switch {
-	case c.rising:
+	switch slope := c.slope(); {
+	case slope.lo > 0:
 		return s.end(ctx, c, true)
-	case c.falling:
+	case slope.hi < 0:
 		return s.end(ctx, c, false)
 	}
 	sums, ok := s.resolve(c)
@@ -116,9 +116,8 @@ func (s *search) refine(ctx context.Context, c cluster) (place, bool, error) {
 	if len(d1.terms) == 0 { // constant
 		return s.end(ctx, c, false)
 	}
-	d2 := d1.derivative()
-	box := ballBetween(c.a, c.b)
-	if sign, decided := d2.at(box).Sign(); !decided || sign >= 0 {
+	bend := c.bendTau()
+	if !(bend.hi < 0) {
 		return s.coarse(c), true, nil
 	}
 	// The derivative falls: it has one zero, or none and the maximum is an end.
@@ -132,7 +131,7 @@ func (s *search) refine(ctx context.Context, c cluster) (place, bool, error) {
 	} else if sign, decided := d1.at(c.stage.lengthBall()).Sign(); decided && sign >= 0 {
 		return s.end(ctx, c, true)
 	}
-	tau := newton(d1, d2, box)
+	tau := newton(d1, bend, ballBetween(c.a, c.b))
 	mid := number.BallFromFloat(tau.Mid(), refinePrecision)
 	// f(τ) = f(mid) + f′(ξ)(τ−mid) with ξ in the ball of τ.
 	reach := d1.at(tau).Abs().Mul(number.BallFromFloat(tau.Rad(), refinePrecision))
@@ -157,13 +156,14 @@ func (st *stage) lengthBall() number.Ball {
 	return number.BallFromRat(new(big.Rat).Sub(st.end, st.origin), refinePrecision)
 }
 
-// newton encloses the zero of f in box, where df, its derivative, has no zero:
-// the interval Newton step N = m − f(m)/df(box) keeps every zero, and steps are
-// taken while they gain.
-func newton(f, df *sum, box number.Ball) number.Ball {
+// newton encloses the zero of f in box, where slope bounds its derivative, away
+// from zero: the interval Newton step N = m − f(m)/slope keeps every zero, and
+// steps are taken while they gain.
+func newton(f *sum, slope interval, box number.Ball) number.Ball {
+	df := ballBetween(slope.lo, slope.hi)
 	for range 40 {
 		mid := number.BallFromFloat(box.Mid(), refinePrecision)
-		next := mid.Sub(f.at(mid).Quo(df.at(box)))
+		next := mid.Sub(f.at(mid).Quo(df))
 		if !next.IsFinite() {
 			return box
 		}
@@ -250,23 +250,13 @@ func (c *Curve) valueNext(sums []*sum, tau number.Ball) (number.Ball, []*sum) {
 // resolve finds the one sum that the curve is within a cluster, when the signs
 // and orders that abs, least and greatest depend on do not change there.
 func (s *search) resolve(c cluster) (*sum, bool) {
-	leaves := make([]enclosure, len(c.stage.sums))
-	if math.IsInf(c.b, 1) {
-		for i, x := range c.stage.floats {
-			leaves[i] = x.crude(c.a, c.b)
+	var signs []int
+	for _, b := range c.boxes {
+		more, ok := s.boxBranch(b)
+		if !ok || signs != nil && !sameSigns(signs, more) {
+			return nil, false
 		}
-	} else {
-		box := ballBetween(c.a, c.b)
-		for i, x := range c.stage.sums {
-			v := x.at(box)
-			lo, _ := v.Lower().Float64()
-			hi, _ := v.Upper().Float64()
-			leaves[i] = enclosure{lo: math.Nextafter(lo, math.Inf(-1)), hi: math.Nextafter(hi, math.Inf(1))}
-		}
-	}
-	signs, _, rest, ok := s.curve.branch(leaves, 1)
-	if !ok || len(rest) != 0 {
-		return nil, false
+		signs = more
 	}
 	return combineSums(c.stage.sums, signs), true
 }
@@ -305,7 +295,7 @@ func (c *Curve) branch(leaves []enclosure, sign int) (signs []int, value enclosu
 	}
 	switch {
 	case c.op == opAdd:
-		sum := enclosure{lo: value.lo + other.lo, hi: value.hi + other.hi}.outward()
+		sum := enclosure{interval: value.add(other.interval)}
 		return append(signs, more...), sum, rest, true
 	case value.hi < other.lo && c.op == opLeast || value.lo > other.hi && c.op == opGreatest:
 		return append(signs, make([]int, len(more))...), value, rest, true
@@ -325,7 +315,7 @@ func (s *search) refineTail(ctx context.Context, c cluster) (place, bool, error)
 			p, ok, err := s.end(ctx, cluster{stage: c.stage, index: c.index, a: c.a, b: c.b}, false)
 			return p, ok, err
 		}
-		for t := c.a; t < 1e6*math.Max(c.a, 1/math.Max(c.stage.slowest(), 1e-250)); t = 2*t + 1/math.Max(c.stage.slowest(), 1e-250) {
+		for t := c.a; t < 1e6*math.Max(c.a, c.stage.unitTime()); t = 2*t + c.stage.unitTime() {
 			sign := d.dominance(number.BallFromFloat64(t, refinePrecision))
 			switch {
 			case sign == 0:
@@ -338,7 +328,7 @@ func (s *search) refineTail(ctx context.Context, c cluster) (place, bool, error)
 			return s.end(ctx, c, false)
 		}
 	}
-	p := s.coarse(cluster{stage: c.stage, index: c.index, a: c.a, b: c.a, hi: c.hi})
+	p := s.coarse(cluster{stage: c.stage, index: c.index, a: c.a, b: c.a, boxes: c.boxes})
 	p.hasAt, p.attained = false, false
 	return p, true, nil
 }

@@ -77,7 +77,7 @@ func (e *edgeSearch) quietFrom(ctx context.Context, st *stage) (float64, error) 
 		}
 	}
 	touching := limit != nil && limit.Exact != nil && limit.Exact.Sign() == 0
-	unitTime := 1 / math.Max(st.slowest(), 1e-250)
+	unitTime := st.unitTime()
 	for t, k := 0.0, 0; k < 200; k++ {
 		hi := st.crude(e.curve, t, math.Inf(1)).hi
 		if !math.IsNaN(e.ceiling) {
@@ -87,7 +87,7 @@ func (e *edgeSearch) quietFrom(ctx context.Context, st *stage) (float64, error) 
 			return t, nil
 		}
 		if touching || limit == nil {
-			sums, ok := e.resolve(cluster{stage: st, a: t, b: math.Inf(1)})
+			sums, ok := e.resolveTail(st, t)
 			if ok && t > 0 {
 				switch sign := sums.dominance(number.BallFromFloat64(t, refinePrecision)); {
 				case sign < 0:
@@ -107,7 +107,7 @@ func (e *edgeSearch) quietFrom(ctx context.Context, st *stage) (float64, error) 
 // firstForward goes forward in growing steps until the curve is above zero or
 // can be no more.
 func (e *edgeSearch) firstForward(ctx context.Context, st *stage, i int) (number.Ball, bool, error) {
-	from, step := 0.0, 1/math.Max(st.slowest(), 1e-250)
+	from, step := 0.0, st.unitTime()
 	for range 200 {
 		if hi := st.crude(e.curve, from, math.Inf(1)).hi; hi <= 0 {
 			return number.Ball{}, false, nil
@@ -115,7 +115,7 @@ func (e *edgeSearch) firstForward(ctx context.Context, st *stage, i int) (number
 		if t, ok, err := e.within(ctx, st, i, from, from+step); ok || err != nil {
 			return t, ok, err
 		}
-		if sums, ok := e.resolve(cluster{stage: st, a: from + step, b: math.Inf(1)}); ok &&
+		if sums, ok := e.resolveTail(st, from+step); ok &&
 			sums.dominance(number.BallFromFloat64(from+step, refinePrecision)) < 0 {
 			return number.Ball{}, false, nil
 		}
@@ -123,6 +123,11 @@ func (e *edgeSearch) firstForward(ctx context.Context, st *stage, i int) (number
 		step *= 2
 	}
 	return number.Ball{}, false, undecided("it comes too near the level for t → ∞")
+}
+
+// resolveTail is the one sum that the curve is from τ = t on.
+func (e *edgeSearch) resolveTail(st *stage, t float64) (*sum, bool) {
+	return e.resolve(cluster{stage: st, boxes: []*box{{stage: st, a: t, b: math.Inf(1)}}})
 }
 
 // within looks for the edge in [a, b] of a stage, from the side it must be met
@@ -144,7 +149,7 @@ func (e *edgeSearch) within(ctx context.Context, st *stage, i int, a, b float64)
 		case x.on.hi <= 0:
 		case x.on.lo > 0:
 			return e.atEnd(x), true, nil
-		case x.models != nil && x.v-x.u <= narrowest, x.b == x.a:
+		case x.models != nil && x.exhausted(), x.b == x.a:
 			t, ok, err := e.pass(x)
 			if ok || err != nil {
 				return t, ok, err
@@ -215,27 +220,27 @@ func (e *edgeSearch) pass(x *box) (number.Ball, bool, error) {
 		return undecided("it touches the level at t ≈ %s s without crossing it for sure",
 			new(big.Float).SetFloat64(t+x.a).Text('g', 6))
 	}
-	sums, ok := e.resolve(cluster{stage: x.stage, index: x.index, a: x.a, b: x.b})
+	c := cluster{x.stage, x.index, x.a, x.b, []*box{x}}
+	sums, ok := e.resolve(c)
 	if !ok {
 		return number.Ball{}, false, near()
 	}
-	d := sums.derivative()
-	box := ballBetween(x.a, x.b)
-	slope, decided := d.at(box).Sign()
-	if !decided || slope == 0 {
+	slope := c.slopeTau()
+	if slope.lo <= 0 && slope.hi >= 0 {
 		return number.Ball{}, false, near()
 	}
+	box := ballBetween(x.a, x.b)
 	left, okLeft := sums.at(number.BallFromFloat64(x.a, refinePrecision)).Sign()
 	right, okRight := sums.at(number.BallFromFloat64(math.Min(x.b, x.stage.length), refinePrecision)).Sign()
 	origin := number.BallFromRat(x.stage.origin, refinePrecision)
 	switch {
 	case !okLeft || !okRight:
 		// The zero is at an end of the box to within the working precision.
-		return origin.Add(newton(sums, d, box)), true, nil
+		return origin.Add(newton(sums, slope, box)), true, nil
 	case left <= 0 && right <= 0:
 		return number.Ball{}, false, nil
-	case left > 0 && right > 0:
+	case left > 0 && right > 0, e.first && left > 0, !e.first && right > 0:
 		return e.atEnd(x), true, nil
 	}
-	return origin.Add(newton(sums, d, box)), true, nil
+	return origin.Add(newton(sums, slope, box)), true, nil
 }

@@ -243,24 +243,79 @@ func (c *Curve) stages(ctx context.Context, r Range, prec uint) ([]*stage, error
 	return out, nil
 }
 
-// prepare finds the sums of the leaves and their float64 form.
+// prepare finds the sums of the leaves and their float64 form. Where terms cancel
+// the precision is raised until the values have stageBits bits.
 func (st *stage) prepare(ctx context.Context, leaves []form, prec uint) error {
-	st.sums, st.floats, st.scale = nil, nil, 0
-	for _, l := range leaves {
-		x, err := l.sumFrom(ctx, st.origin, prec)
-		if err != nil {
-			return err
+	for {
+		st.sums, st.floats = nil, nil
+		for _, l := range leaves {
+			x, err := l.sumFrom(ctx, st.origin, prec)
+			if err != nil {
+				return err
+			}
+			f, err := x.toFloat()
+			if err != nil {
+				return err
+			}
+			st.sums, st.floats = append(st.sums, x), append(st.floats, f)
 		}
-		f, err := x.toFloat()
-		if err != nil {
-			return err
+		var bits int64
+		if st.scale, bits = st.largest(); bits >= stageBits || prec >= stageLimit {
+			return nil
 		}
-		st.sums, st.floats = append(st.sums, x), append(st.floats, f)
-		for i := range f.terms {
-			st.scale = math.Max(st.scale, f.terms[i].bound(0, math.Min(st.length, 1/math.Max(f.rate, 1e-250))))
-		}
+		prec *= 2
 	}
-	return nil
+}
+
+const (
+	stageBits  = 120
+	stageLimit = 4096
+)
+
+// largest is about the largest size of the leaves, seen at a few instants: the
+// measure of what is negligible. Where terms cancel it is found with balls; bits
+// is how many bits of it are decided.
+func (st *stage) largest() (size float64, bits int64) {
+	bits = stageBits
+	for i, x := range st.floats {
+		value, bound := 0.0, 0.0
+		times := st.looks(x)
+		for _, t := range times {
+			v, b := x.at(t, 0)
+			value, bound = math.Max(value, math.Abs(v)), math.Max(bound, b)
+		}
+		if value < 1e6*bound {
+			value = 0
+			var best int64
+			for _, t := range times {
+				v := st.sums[i].at(number.BallFromFloat64(t, refinePrecision))
+				if m := math.Abs(v.MidFloat64()); m > value {
+					value, best = m, v.RelativeBits()
+				}
+			}
+			if value > 0 {
+				bits = min(bits, best)
+			}
+		}
+		size = math.Max(size, value)
+	}
+	return size, bits
+}
+
+// looks are instants from the fastest to the slowest time of a sum.
+func (st *stage) looks(x *floatSum) []float64 {
+	times := []float64{0}
+	fast := 1.0
+	if x.rate > 1e-250 {
+		fast = 1 / x.rate
+	}
+	for t := fast / 2; t < st.length && t < 1e9*fast && t <= 8*st.unitTime(); t *= 2 {
+		times = append(times, t)
+	}
+	if !math.IsInf(st.length, 1) && len(times) < 30 {
+		times = append(times, st.length/2, st.length)
+	}
+	return times
 }
 
 // hasImpulse looks for an impulse in the range, its ends included.

@@ -18,7 +18,7 @@ const (
 	// too fast for a panel becomes a bound.
 	panelFloor = 1e-17
 	// narrowest is the width in x at which a panel is cut no further.
-	narrowest = 1.0 / (1 << 24)
+	narrowest = 1.0 / (1 << 46)
 	// searchBudget is how many boxes a search may look at: seconds of work.
 	searchBudget = 4_000_000
 	// clusterBudget is how many places may compete for the maximum in the end.
@@ -51,6 +51,11 @@ type box struct {
 	m, h   float64
 	u, v   float64 // part of the panel the box is
 	on     enclosure
+}
+
+// exhausted tells whether cutting the panel further gains nothing.
+func (b *box) exhausted() bool {
+	return b.v-b.u <= narrowest || b.on.hi-b.on.lo <= 2*b.on.slack
 }
 
 // boxes is a heap, greatest upper bound first.
@@ -119,7 +124,7 @@ func (s *search) split(b *box) {
 	case math.IsInf(b.b, 1):
 		s.cutTail(b)
 	case b.models != nil:
-		if b.v-b.u <= narrowest {
+		if b.exhausted() {
 			s.stuck = append(s.stuck, b)
 			return
 		}
@@ -142,7 +147,7 @@ func (s *search) split(b *box) {
 
 // cutTail cuts a piece off a box without end.
 func (s *search) cutTail(b *box) {
-	cut := math.Max(2*b.a, 1/math.Max(b.stage.slowest(), 1e-250))
+	cut := math.Max(2*b.a, b.stage.unitTime())
 	if math.IsInf(cut, 1) || cut <= b.a {
 		s.stuck = append(s.stuck, b)
 		return
@@ -172,6 +177,15 @@ func (st *stage) slowest() float64 {
 		return fast
 	}
 	return slow
+}
+
+// unitTime is the time constant of the slowest term, 1 s when all are constants
+// and powers of time.
+func (st *stage) unitTime() float64 {
+	if slow := st.slowest(); slow > 1e-250 {
+		return 1 / slow
+	}
+	return 1
 }
 
 // transientBound bounds what all decaying terms add up to from τ on.
@@ -255,11 +269,56 @@ func (s *search) evaluate(models []model, u, v float64) enclosure {
 
 // cluster is a connected stretch of boxes that may hold the maximum.
 type cluster struct {
-	stage           *stage
-	index           int
-	a, b            float64
-	hi              float64
-	rising, falling bool
+	stage *stage
+	index int
+	a, b  float64
+	boxes []*box
+}
+
+// hi bounds the curve in the cluster from above.
+func (c *cluster) hi() float64 {
+	hi := math.Inf(-1)
+	for _, b := range c.boxes {
+		hi = math.Max(hi, b.on.hi)
+	}
+	return hi
+}
+
+// slope bounds the derivative with respect to x of the panels (its sign is that
+// of df/dτ).
+func (c *cluster) slope() interval {
+	s := c.boxes[0].on.slope
+	for _, b := range c.boxes[1:] {
+		s = s.hull(b.on.slope)
+	}
+	return s
+}
+
+// slopeTau and bendTau bound df/dτ and d²f/dτ².
+func (c *cluster) slopeTau() interval {
+	return c.scaled(func(b *box) interval { return b.on.slope }, 1)
+}
+func (c *cluster) bendTau() interval {
+	return c.scaled(func(b *box) interval { return b.on.bend }, 2)
+}
+
+func (c *cluster) scaled(of func(*box) interval, power int) interval {
+	var out interval
+	for i, b := range c.boxes {
+		if b.models == nil {
+			return everything
+		}
+		v := of(b)
+		for range power {
+			v = interval{v.lo / b.h, v.hi / b.h}.outward()
+		}
+		if i == 0 {
+			out = v
+		} else {
+			out = out.hull(v)
+		}
+	}
+	return out
 }
 
 // clusters joins the boxes that may hold the maximum, in order of time.
@@ -278,14 +337,13 @@ func (s *search) clusters() []cluster {
 	})
 	var out []cluster
 	for _, b := range list {
-		rising, falling := b.on.dlo > 0, b.on.dhi < 0
 		if n := len(out); n > 0 && out[n-1].index == b.index && b.a <= out[n-1].b {
 			c := &out[n-1]
-			c.b, c.hi = math.Max(c.b, b.b), math.Max(c.hi, b.on.hi)
-			c.rising, c.falling = c.rising && rising, c.falling && falling
+			c.b = math.Max(c.b, b.b)
+			c.boxes = append(c.boxes, b)
 			continue
 		}
-		out = append(out, cluster{b.stage, b.index, b.a, b.b, b.on.hi, rising, falling})
+		out = append(out, cluster{b.stage, b.index, b.a, b.b, []*box{b}})
 	}
 	return out
 }
@@ -374,14 +432,13 @@ func (s *search) fallsForEver(st *stage) bool {
 		return false
 	}
 	d := st.sums[0].derivative()
-	for t := 1 / math.Max(st.floats[0].rate, 1e-250); t < 1e250; t *= 4 {
+	t := st.unitTime()
+	for range 60 {
 		if d.dominance(number.BallFromFloat64(t, refinePrecision)) < 0 {
 			s.replaceTail(st, t)
 			return true
 		}
-		if t > 1e12/math.Max(st.slowest(), 1e-250) {
-			break
-		}
+		t *= 4
 	}
 	return false
 }

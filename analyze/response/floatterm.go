@@ -74,10 +74,9 @@ func (x *sum) toFloat() (*floatSum, error) {
 
 // usable tells whether everything is well inside float64's range.
 func (f *floatTerm) usable() bool {
-	inside := func(x float64) bool { return x == 0 || math.Abs(x) < 1e250 && math.Abs(x) > 1e-250 }
-	ok := inside(f.rate)
+	ok := f.rate < 1e250
 	for _, s := range f.size {
-		ok = ok && inside(s)
+		ok = ok && s < 1e250
 	}
 	return ok
 }
@@ -92,6 +91,9 @@ func twoFloats(b number.Ball) (hi, lo float64) {
 
 // upperFloat is an upper bound of the numbers of a non-negative ball.
 func upperFloat(b number.Ball) float64 {
+	if b.IsExact() && b.ContainsZero() {
+		return 0
+	}
 	f, _ := b.Upper().Float64()
 	return math.Nextafter(f, math.Inf(1))
 }

@@ -18,13 +18,15 @@ type fraction struct {
 	factors  []exact.Factor // square-free factors of den
 	natural  exact.Poly     // product of the denominators of the transfer, for classification
 	source   exact.Poly     // product of the denominators of the source transform
+	splits   []exact.Poly   // factors of source, one for each frequency
 }
 
 // newFraction prepares a transform. The roots of natural are the network's
-// frequencies that can show in it, those of source the source's.
-func newFraction(f exact.Ratio, natural, source exact.Poly) *fraction {
+// frequencies that can show in it, those of source the source's; splits are
+// factors of source that are better kept apart.
+func newFraction(f exact.Ratio, natural, source exact.Poly, splits ...exact.Poly) *fraction {
 	impulses, rest := f.ProperPart()
-	out := &fraction{ratio: f, impulses: impulses, num: rest.Num, den: rest.Den, natural: natural, source: source}
+	out := &fraction{ratio: f, impulses: impulses, num: rest.Num, den: rest.Den, natural: natural, source: source, splits: splits}
 	if rest.Num.IsZero() {
 		out.den = exact.PolyFromInt64s(1)
 	}

@@ -44,7 +44,7 @@ func (s *search) stretches(ctx context.Context, st *stage) ([]stretchOf, error) 
 		switch {
 		case ok:
 			parts = append(parts, part{x, signs})
-		case x.models != nil && x.v-x.u <= narrowest, x.a == x.b:
+		case x.models != nil && x.exhausted(), x.a == x.b:
 			parts = append(parts, part{x, nil})
 		default:
 			e := &edgeSearch{search: s, first: true}

@@ -2,7 +2,6 @@ package response
 
 import (
 	"context"
-	"math"
 	"math/big"
 
 	"portlight/dialect/number"
@@ -346,9 +345,7 @@ func (st *stage) steadyStage(period float64) (steady *stage, transient bool, err
 		}
 		transient = transient || len(y.terms) < len(x.terms)
 		steady.sums, steady.floats = append(steady.sums, y), append(steady.floats, f)
-		for i := range f.terms {
-			steady.scale = math.Max(steady.scale, f.terms[i].bound(0, 0))
-		}
 	}
+	steady.scale, _ = steady.largest()
 	return steady, transient, nil
 }

@@ -27,8 +27,8 @@ const (
 
 // model is the Taylor model of one form on a panel.
 type model struct {
-	a          [panelOrder + 1]float64
-	err, slope float64 // bounds on the rest of the value and of d/dx
+	a                [panelOrder + 1]float64
+	err, slope, bend float64 // bounds on the rest of the value, of d/dx and of d²/dx²
 }
 
 // model expands the sum on [m−h, m+h]. Terms that turn or decay too fast to be
@@ -43,12 +43,13 @@ func (x *floatSum) model(m, h, floor float64) (out model, ok bool) {
 			continue
 		}
 		if f.rate*h > panelPhase {
-			value, slope := f.bounds(m-h, m+h)
+			value, slope, bend := f.bounds(m-h, m+h)
 			if value > floor {
 				return out, false
 			}
 			out.err += value
 			out.slope += slope * h
+			out.bend += bend * h * h
 			continue
 		}
 		f.expand(m, h, &out)
@@ -56,16 +57,25 @@ func (x *floatSum) model(m, h, floor float64) (out model, ok bool) {
 	return out, true
 }
 
-// bounds are upper bounds of a term and of its derivative on [a, b].
-func (f *floatTerm) bounds(a, b float64) (value, slope float64) {
+// bounds are upper bounds of a term and of its first two derivatives on [a, b].
+func (f *floatTerm) bounds(a, b float64) (value, slope, bend float64) {
 	value = f.bound(a, b)
-	slope = f.rate * value
+	lower := floatTerm{sigmaUpper: f.sigmaUpper} // what the powers' derivatives leave
 	for m := 1; m < len(f.size); m++ {
-		g := floatTerm{size: make([]float64, m), sigmaUpper: f.sigmaUpper}
-		g.size[m-1] = f.size[m] * float64(m)
-		slope += g.bound(a, b)
+		lower.size = append(lower.size, f.size[m]*float64(m))
 	}
-	return value, slope * (1 + 8*unit)
+	if len(lower.size) > 0 {
+		slope = lower.bound(a, b)
+		var second floatTerm
+		second.sigmaUpper = f.sigmaUpper
+		for m := 1; m < len(lower.size); m++ {
+			second.size = append(second.size, lower.size[m]*float64(m))
+		}
+		bend = second.bound(a, b) + 2*f.rate*slope
+	}
+	slope += f.rate * value
+	bend += f.rate * f.rate * value
+	return value, slope * (1 + 8*unit), bend * (1 + 16*unit)
 }
 
 // expand adds the term's expansion: with q(x) = Σ c[k](m+h·x)^k = Σ q[i]·x^i and
@@ -112,16 +122,28 @@ func (f *floatTerm) expand(m, h float64, out *model) {
 		}
 	}
 	z := f.rate * h
-	tail, tailSlope := 0.0, 0.0
-	if z > 0 {
-		tail = expTail(z, panelOrder-n+1)
-		// d/dx of Σ_{k>K} z^k x^k/k! is z·Σ_{k>K−1}; of x^i times it, i times
-		// the tail more.
-		tailSlope = z*expTail(z, panelOrder-n) + float64(n)*tail
+	out.addRest(size, z, n)
+	// The rounding errors of coefficient k count k-fold in the derivative: of
+	// Σ z^k/k! that is z times the sum, of x^i times it i times more.
+	rounding := (panelUnits + 8*float64(n)) * unit * math.Exp(z) * size
+	weight := z + float64(n)
+	out.err += rounding + leastBound
+	out.slope += rounding*weight + leastBound
+	out.bend += rounding*weight*(weight+1) + leastBound
+}
+
+// addRest adds what is cut off after panelOrder of a term of the given size
+// bound and number of powers: the derivative of Σ_{k>K} z^k x^k/k! is z times
+// the sum from K on, and x^i in front of it adds i times the sum.
+func (p *model) addRest(size, z float64, n int) {
+	if z == 0 {
+		return
 	}
-	rounding := (panelUnits + 8*float64(n)) * unit * math.Exp(z)
-	out.err += size*(tail+rounding) + leastBound
-	out.slope += size*(tailSlope+rounding*(z+float64(n))) + leastBound
+	tail, before, second := expTail(z, panelOrder-n+1), expTail(z, panelOrder-n), expTail(z, panelOrder-n-1)
+	i := float64(n)
+	p.err += size * tail
+	p.slope += size * (z*before + i*tail) * (1 + 8*unit)
+	p.bend += size * (z*z*second + 2*i*z*before + i*i*tail) * (1 + 8*unit)
 }
 
 // expTail bounds Σ_{k>n} z^k/k! for 0 ≤ z ≤ panelPhase: the first term over
@@ -134,8 +156,32 @@ func expTail(z float64, n int) float64 {
 	return t / (1 - z/float64(n+2)) * (1 + 64*unit)
 }
 
-// enclosure is bounds of a value and of its derivative with respect to x.
-type enclosure struct{ lo, hi, dlo, dhi float64 }
+// interval is the numbers from lo to hi.
+type interval struct{ lo, hi float64 }
+
+func (v interval) neg() interval { return interval{-v.hi, -v.lo} }
+
+func (v interval) add(w interval) interval { return interval{v.lo + w.lo, v.hi + w.hi}.outward() }
+
+func (v interval) hull(w interval) interval {
+	return interval{math.Min(v.lo, w.lo), math.Max(v.hi, w.hi)}
+}
+
+// outward makes room for the rounding of the ends themselves.
+func (v interval) outward() interval {
+	return interval{math.Nextafter(v.lo, math.Inf(-1)), math.Nextafter(v.hi, math.Inf(1))}
+}
+
+var everything = interval{math.Inf(-1), math.Inf(1)}
+
+// enclosure is bounds of a value and of its first two derivatives with respect
+// to x. Slack is how much of the width of the value is error of the model:
+// cutting the panel does not make it smaller.
+type enclosure struct {
+	interval
+	slope, bend interval
+	slack       float64
+}
 
 // on encloses the model for x in [u, v] ⊂ [−1, 1]. With x = c + w·y the
 // coefficients of y are those of a Taylor shift; the rounding errors of the
@@ -159,36 +205,37 @@ func (p *model) on(u, v float64) enclosure {
 			}
 		}
 	}
-	spread, bend, scale := 0.0, 0.0, w
+	var spread, slope, bend float64
+	scale := w
 	for k := 1; k <= n; k++ {
 		m := math.Abs(b[k]) * scale
-		if k > 1 {
-			bend += float64(k) * m
-		}
 		spread += m
-		scale *= w
+		if k > 1 {
+			slope += float64(k) * m / w
+		}
+		if k > 2 {
+			bend += float64(k*(k-1)) * m / (w * w)
+		}
+		if scale *= w; scale == 0 {
+			break
+		}
 	}
+	// Coefficient k counts k-fold in the derivative, with its rounding errors.
+	first, second := p.weighted(n)
 	rest := p.err + 4*panelOrder*unit*sum
-	// The derivative's rounding: coefficient k counts k-fold.
-	restSlope := p.slope + 4*panelOrder*unit*p.slopeSum(n)
-	if w > 0 {
-		bend /= w
-	}
-	return enclosure{b[0] - spread - rest, b[0] + spread + rest, b[1] - bend - restSlope, b[1] + bend + restSlope}.outward()
+	slope += p.slope + 4*panelOrder*unit*first
+	bend += p.bend + 4*panelOrder*unit*second
+	around := func(mid, rad float64) interval { return interval{mid - rad, mid + rad}.outward() }
+	return enclosure{around(b[0], spread+rest), around(b[1], slope), around(2*b[2], bend), 2 * rest}
 }
 
-func (p *model) slopeSum(n int) float64 {
-	s := 0.0
+// weighted is Σ k·|a[k]| and Σ k(k−1)·|a[k]|.
+func (p *model) weighted(n int) (first, second float64) {
 	for k := 1; k <= n; k++ {
-		s += float64(k) * math.Abs(p.a[k])
+		first += float64(k) * math.Abs(p.a[k])
+		second += float64(k*(k-1)) * math.Abs(p.a[k])
 	}
-	return s
-}
-
-// outward makes room for the rounding of the ends themselves.
-func (e enclosure) outward() enclosure {
-	inf := math.Inf(1)
-	return enclosure{math.Nextafter(e.lo, -inf), math.Nextafter(e.hi, inf), math.Nextafter(e.dlo, -inf), math.Nextafter(e.dhi, inf)}
+	return first, second
 }
 
 // enclose applies the curve's operations to the enclosures of its leaves, which
@@ -205,7 +252,7 @@ func (c *Curve) encloseNext(leaves []enclosure) (enclosure, []enclosure) {
 	x, rest := c.args[0].encloseNext(leaves)
 	switch c.op {
 	case opNegate:
-		return enclosure{-x.hi, -x.lo, -x.dhi, -x.dlo}, rest
+		return x.negated(), rest
 	case opAbs:
 		return x.abs(), rest
 	}
@@ -214,13 +261,14 @@ func (c *Curve) encloseNext(leaves []enclosure) (enclosure, []enclosure) {
 	case opLeast:
 		return x.least(y), rest
 	case opGreatest:
-		n := x.negated().least(y.negated())
-		return n.negated(), rest
+		return x.negated().least(y.negated()).negated(), rest
 	}
-	return enclosure{x.lo + y.lo, x.hi + y.hi, x.dlo + y.dlo, x.dhi + y.dhi}.outward(), rest
+	return enclosure{x.add(y.interval), x.slope.add(y.slope), x.bend.add(y.bend), x.slack + y.slack}, rest
 }
 
-func (e enclosure) negated() enclosure { return enclosure{-e.hi, -e.lo, -e.dhi, -e.dlo} }
+func (e enclosure) negated() enclosure {
+	return enclosure{e.neg(), e.slope.neg(), e.bend.neg(), e.slack}
+}
 
 func (e enclosure) abs() enclosure {
 	switch {
@@ -229,8 +277,7 @@ func (e enclosure) abs() enclosure {
 	case e.hi <= 0:
 		return e.negated()
 	}
-	d := math.Max(math.Abs(e.dlo), math.Abs(e.dhi))
-	return enclosure{0, math.Max(-e.lo, e.hi), -d, d}
+	return enclosure{interval{0, math.Max(-e.lo, e.hi)}, e.slope.hull(e.slope.neg()), everything, e.slack}
 }
 
 func (e enclosure) least(f enclosure) enclosure {
@@ -240,7 +287,7 @@ func (e enclosure) least(f enclosure) enclosure {
 	case f.hi < e.lo:
 		return f
 	}
-	return enclosure{math.Min(e.lo, f.lo), math.Min(e.hi, f.hi), math.Min(e.dlo, f.dlo), math.Max(e.dhi, f.dhi)}
+	return enclosure{interval{math.Min(e.lo, f.lo), math.Min(e.hi, f.hi)}, e.slope.hull(f.slope), everything, math.Max(e.slack, f.slack)}
 }
 
 // crude encloses every leaf on [a, b] by the sizes of its terms; b may be
@@ -256,7 +303,6 @@ func (st *stage) crude(c *Curve, a, b float64) enclosure {
 // crude bounds the sum on [a, b] by the sizes of its terms, real ones of degree
 // 0 by their monotone course.
 func (x *floatSum) crude(a, b float64) enclosure {
-	inf := math.Inf(1)
 	lo, hi := 0.0, 0.0
 	for i := range x.terms {
 		f := &x.terms[i]
@@ -278,9 +324,9 @@ func (x *floatSum) crude(a, b float64) enclosure {
 	}
 	pad := (math.Abs(lo) + math.Abs(hi)) * 4 * unit * float64(len(x.terms)+1)
 	if math.IsNaN(lo) || math.IsNaN(hi) {
-		return enclosure{-inf, inf, -inf, inf}
+		return enclosure{everything, everything, everything, 0}
 	}
-	return enclosure{lo - pad, hi + pad, -inf, inf}
+	return enclosure{interval{lo - pad, hi + pad}, everything, everything, 0}
 }
 
 // ballModel is the model of a sum whose terms cancel: the coefficients are
@@ -317,10 +363,7 @@ func (x *sum) ballModel(m, h float64) model {
 			scale = scale.Mul(half)
 		}
 		if !t.pole.zero {
-			zf := upperFloat(z.Abs())
-			tail := expTail(zf, panelOrder-n+1)
-			out.err += size * tail * (1 + 64*unit)
-			out.slope += size * (zf*expTail(zf, panelOrder-n) + float64(n)*tail) * (1 + 64*unit)
+			out.addRest(size*(1+64*unit), upperFloat(z.Abs()), n)
 		}
 	}
 	for k, b := range total {
@@ -328,6 +371,7 @@ func (x *sum) ballModel(m, h float64) model {
 		lost := upperFloat(b.Sub(number.BallFromFloat64(out.a[k], refinePrecision)).Abs())
 		out.err += lost
 		out.slope += float64(k) * lost
+		out.bend += float64(k*(k-1)) * lost
 	}
 	return out
 }

@@ -106,11 +106,12 @@ func sameInstant(a, b *big.Rat) bool {
 }
 
 func (f *fraction) scaled(r *big.Rat) *fraction {
-	return newFraction(f.ratio.ScaleBy(r), f.natural, f.source)
+	return newFraction(f.ratio.ScaleBy(r), f.natural, f.source, f.splits...)
 }
 
 func (f *fraction) plus(g *fraction) *fraction {
-	return newFraction(f.ratio.Add(g.ratio), lcm(f.natural, g.natural), lcm(f.source, g.source))
+	return newFraction(f.ratio.Add(g.ratio), lcm(f.natural, g.natural), lcm(f.source, g.source),
+		append(f.splits[:len(f.splits):len(f.splits)], g.splits...)...)
 }
 
 // lcm is the least common multiple of two nonzero polynomials.
@@ -333,7 +334,7 @@ func baseOf(list []component) base {
 		}
 	}
 	for _, c := range list {
-		for _, p := range []exact.Poly{c.fraction.source, c.forced} {
+		for _, p := range append(c.fraction.splits[:len(c.fraction.splits):len(c.fraction.splits)], c.fraction.source, c.forced) {
 			if p.Degree() > 0 {
 				b.insert(exact.GCD(c.fraction.den, p).Radical())
 			}

@@ -126,7 +126,7 @@ func (s *Solution) components(ctx context.Context, k int, r *row) ([]component, 
 			continue
 		}
 		for _, d := range src.wave.drives(fmt.Sprintf("source %d", j), st.start, st.end) {
-			f := newFraction(h.Mul(d.transform), denominator(h), denominator(d.transform))
+			f := newFraction(h.Mul(d.transform), denominator(h), denominator(d.transform), d.factors...)
 			out = append(out, component{from: d.from, until: st.end, cause: 1 + j, weight: d.weight, fraction: f})
 		}
 	}

@@ -80,6 +80,7 @@ type drive struct {
 	from      *big.Rat
 	weight    weight
 	transform exact.Ratio
+	factors   []exact.Poly // of its denominator, one for each frequency
 }
 
 // drives lists how the wave acts within [start, end) (nil: for ever). What has
@@ -98,10 +99,12 @@ func (w Wave) drives(name string, start, end *big.Rat) []drive {
 			return
 		}
 		sum := exact.PolyRatio(impulsePoly(impulses))
+		var factors []exact.Poly
 		for _, t := range terms {
 			sum = sum.Add(t.transform())
+			factors = append(factors, t.factor())
 		}
-		out = appendDrives(out, []drive{{from, unitWeight, sum}})
+		out = appendDrives(out, []drive{{from, unitWeight, sum, factors}})
 	}
 	add(new(big.Rat), w.Always, nil)
 	for _, piece := range w.Pieces {
@@ -121,6 +124,7 @@ next:
 			e := &list[i]
 			if e.from.Cmp(d.from) == 0 && e.weight.at == nil && d.weight.at == nil {
 				e.transform = e.transform.Add(d.transform)
+				e.factors = append(e.factors, d.factors...)
 				continue next
 			}
 		}
@@ -142,6 +146,12 @@ func (t WaveTerm) transform() exact.Ratio {
 	cos, sin, den := t.kernel(t.Power)
 	num := cos.Scale(t.Cosine.Rat()).Add(sin.Scale(t.Sine.Rat()))
 	return ratioOf(num, den)
+}
+
+// factor is s − a, or (s−a)² + ω²: the poles of the term.
+func (t WaveTerm) factor() exact.Poly {
+	_, _, den := t.kernel(0)
+	return den
 }
 
 // kernel gives the transforms of τ^m e^{aτ} cos ωτ and τ^m e^{aτ} sin ωτ over
@@ -175,9 +185,10 @@ func (t WaveTerm) aged(name string, start, age *big.Rat) []drive {
 		cos = cos.Add(ratioOf(c.Scale(f), den))
 		sin = sin.Add(ratioOf(s.Scale(f), den))
 	}
+	factors := []exact.Poly{t.factor()}
 	a, b, omega, rate := t.Cosine, t.Sine, t.Omega.Rat(), t.Rate.Rat()
 	if omega.Sign() == 0 && rate.Sign() == 0 {
-		return []drive{{start, unitWeight, cos.ScaleBy(a.Rat())}}
+		return []drive{{start, unitWeight, cos.ScaleBy(a.Rat()), factors}}
 	}
 	id := name + "@" + age.RatString() + "*" + rate.RatString() + "," + omega.RatString()
 	grown := func(phase func(c, s number.Ball, prec uint) number.Ball) func(context.Context, uint) (number.Ball, error) {
@@ -189,7 +200,7 @@ func (t WaveTerm) aged(name string, start, age *big.Rat) []drive {
 	}
 	if omega.Sign() == 0 {
 		w := weight{at: grown(func(_, _ number.Ball, prec uint) number.Ball { return number.BallFromInt(1, prec) }), id: id}
-		return []drive{{start, w, cos.ScaleBy(a.Rat())}}
+		return []drive{{start, w, cos.ScaleBy(a.Rat()), factors}}
 	}
 	key := id + "," + a.Rat().RatString() + "," + b.Rat().RatString()
 	wc := weight{id: key + "c", at: grown(func(c, s number.Ball, _ uint) number.Ball {
@@ -198,7 +209,7 @@ func (t WaveTerm) aged(name string, start, age *big.Rat) []drive {
 	ws := weight{id: key + "s", at: grown(func(c, s number.Ball, _ uint) number.Ball {
 		return c.MulRat(b.Rat()).Sub(s.MulRat(a.Rat()))
 	})}
-	return []drive{{start, wc, cos}, {start, ws, sin}}
+	return []drive{{start, wc, cos, factors}, {start, ws, sin, factors}}
 }
 
 func ratPow(r *big.Rat, n int) *big.Rat {
