@@ -2,7 +2,6 @@ package exact
 
 import (
 	"math"
-	"math/big"
 	"math/cmplx"
 )
 
@@ -83,15 +82,8 @@ const crowdedRounds = 4
 // displace moves a point that may have gone for the root of another one away:
 // the repulsion sends it to a root that has none.
 func (s *rootSolver) displace(i int) {
-	a := &s.roots[i]
-	if a.link >= 0 {
-		s.roots[a.link].link = -1
-		a.link = -1
-	}
-	a.y.Add(a.y, new(big.Int).Rsh(a.x, 2))
-	a.x.Add(a.x, new(big.Int).Rsh(a.x, 1))
-	a.normalise()
-	a.log, a.step, a.tries = math.Inf(1), 1, 0
+	s.place(i, s.value.rim.again(i, s.roots[i].crowded))
+	s.roots[i].tries = 0
 	s.look(i)
 }
 

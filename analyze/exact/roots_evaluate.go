@@ -45,6 +45,7 @@ type evaluator struct {
 	bits     []int
 	headroom int // H
 	mantissa []float64
+	rim      *rim
 }
 
 func newEvaluator(p Poly) *evaluator {
@@ -58,6 +59,7 @@ func newEvaluator(p Poly) *evaluator {
 		v.mantissa[i] = topFraction(a)
 	}
 	v.headroom = 2 + 2*bits.Len(uint(3*(n+1)))
+	v.rim = v.startingPoints()
 	return v
 }
 

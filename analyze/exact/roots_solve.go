@@ -279,13 +279,18 @@ func bound(ev *evaluation) float64 {
 func (s *rootSolver) correct(i int, step complex128) {
 	a := &s.roots[i]
 	size := cmplx.Abs(step)
-	if !(size < 4) {
-		step, size = complex(0.25, 0.35), 0.43 // away from a stationary point
-	}
 	if a.link == i {
 		step = complex(real(step), 0)
 	}
 	x, y := real(s.views[i].x), imag(s.views[i].x)
+	if size > 0.5 {
+		z := start{s.views[i].x * (1 - step), a.k}.normal()
+		if s.value.rim.outside(z) {
+			z = s.value.rim.again(i, a.tries)
+		}
+		s.place(i, z)
+		return
+	}
 	shift := 64*a.words - 1
 	a.x.Sub(a.x, scaleFloat(x*real(step)-y*imag(step), shift))
 	a.y.Sub(a.y, scaleFloat(x*imag(step)+y*real(step), shift))
@@ -296,6 +301,21 @@ func (s *rootSolver) correct(i int, step complex128) {
 	if a.tries > 40 && !s.certified {
 		s.rethink(i)
 	}
+}
+
+// place moves a point far, so that it begins anew.
+func (s *rootSolver) place(i int, z start) {
+	a := &s.roots[i]
+	if a.link >= 0 {
+		if a.link != i {
+			s.roots[a.link].link = -1
+		}
+		a.link = -1
+	}
+	a.x, a.y, a.k = scaleFloat(real(z.x), 64*a.words-1), scaleFloat(imag(z.x), 64*a.words-1), z.k
+	a.normalise()
+	a.log, a.step = math.Inf(1), 1
+	a.tries++
 }
 
 // rethink undoes a guess that did not work out: that a point is real, or one of

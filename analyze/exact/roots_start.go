@@ -3,6 +3,7 @@ package exact
 import (
 	"math"
 	"math/cmplx"
+	"slices"
 )
 
 // start is a first approximation z = x·2^k with |x| in [½, 2). Nothing is
@@ -12,12 +13,32 @@ type start struct {
 	k int
 }
 
+// rim holds the circles of the starting points: every root is in the annulus of
+// half the smallest and twice the largest radius.
+type rim struct {
+	points    []start
+	low, high float64 // log2 of the bounds
+}
+
+// outside tells whether a point has left the annulus, with a margin.
+func (r *rim) outside(z start) bool {
+	size := float64(z.k) + math.Log2(cmplx.Abs(z.x))
+	return !(size >= r.low-2 && size <= r.high+2)
+}
+
+// again returns a new place for a point that is lost: its first one, turned.
+func (r *rim) again(i, attempt int) start {
+	z := r.points[i]
+	z.x *= cmplx.Rect(1, 2.4*float64(attempt+1))
+	return z.normal()
+}
+
 // startingPoints spreads n points over circles whose radii are the slopes of
 // the Newton polygon of the coefficients: where the upper hull of the points
 // (i, log2|a_i|) has an edge from i to j, j−i roots have magnitudes near
 // (|a_i|/|a_j|)^(1/(j−i)) (D. A. Bini, Numer. Algorithms 13 (1996) 179–200).
 // The circles are turned against one another and against the real axis.
-func (e *evaluator) startingPoints() []start {
+func (e *evaluator) startingPoints() *rim {
 	height := func(i int) float64 { return float64(e.bits[i]) + math.Log2(math.Abs(e.mantissa[i])) }
 	var hull []int
 	for i := range e.n + 1 {
@@ -33,19 +54,20 @@ func (e *evaluator) startingPoints() []start {
 		}
 		hull = append(hull, i)
 	}
-	points := make([]start, 0, e.n)
+	all := &rim{points: make([]start, 0, e.n), low: math.Inf(1), high: math.Inf(-1)}
 	for h := 1; h < len(hull); h++ {
 		a, b := hull[h-1], hull[h]
 		count := b - a
 		log := (height(a) - height(b)) / float64(count)
+		all.low, all.high = min(all.low, log-1), max(all.high, log+1)
 		k := int(math.Floor(log))
 		radius := math.Exp2(log - float64(k))
 		for m := range count {
 			angle := 2*math.Pi*(float64(m)/float64(count)+float64(h)/float64(e.n)) + 0.7
-			points = append(points, start{cmplx.Rect(radius, angle), k})
+			all.points = append(all.points, start{cmplx.Rect(radius, angle), k}.normal())
 		}
 	}
-	return points
+	return all
 }
 
 // roughEvaluation runs the scheme of evaluate in complex128: it returns
@@ -157,7 +179,7 @@ func repulsion(z []start, i int) complex128 {
 // evaluated by a three-term recurrence where one is found, as its roots are far
 // better conditioned there than with the coefficients.
 func (e *evaluator) roughRoots() []start {
-	z := e.startingPoints()
+	z := slices.Clone(e.rim.points)
 	evaluate := e.coefficientEvaluation()
 	if r := e.threeTerm(); r != nil {
 		evaluate = r.evaluate
@@ -166,7 +188,7 @@ func (e *evaluator) roughRoots() []start {
 	for i := range last {
 		last[i] = 8
 	}
-	for range 60 {
+	for sweep := range 60 {
 		moving := 0
 		for i := range z {
 			if last[i] == 0 {
@@ -181,14 +203,15 @@ func (e *evaluator) roughRoots() []start {
 			step := 1 / (ratio - repulsion(z, i))
 			size := cmplx.Abs(step)
 			switch {
-			case !(size < 8):
-				step = complex(0.3, 0.4) // a way out of a stationary point
 			case size < 0x1p-40, size < 0x1p-8 && size > last[i]/2:
 				size = 0
 			}
 			last[i] = size
 			z[i].x -= z[i].x * step
 			z[i] = z[i].normal()
+			if e.rim.outside(z[i]) {
+				z[i], last[i] = e.rim.again(i, sweep), 8
+			}
 		}
 		if moving == 0 {
 			break
