@@ -2,6 +2,7 @@ package exact
 
 import (
 	"context"
+	"math/big"
 	"testing"
 )
 
@@ -28,5 +29,37 @@ func BenchmarkNumeratorAndDenominator(b *testing.B) {
 			b.ReportMetric(n.mark, "mark-ms")
 			b.ReportMetric(ms/n.mark, "of-mark")
 		})
+	}
+}
+
+// BenchmarkLimit isolates the frequencies where the gain from input to output
+// of a network crosses a limit: the roots in ω² of |N|² − k²·|D|², the work
+// of deciding a limit over a range.
+func BenchmarkLimit(b *testing.B) {
+	ctx := context.Background()
+	for _, n := range benchmarkNetworks {
+		p, rhs, input, output := n.build(n.size)
+		f, err := p.Prepare(ctx)
+		if err != nil {
+			b.Fatal(err)
+		}
+		h, err := f.Responses(ctx, []Vector{rhs}, []Vector{input, output})
+		if err != nil {
+			b.Fatal(err)
+		}
+		for k, name := range []string{"input", "output"} {
+			num, den := h[k][0].Num.MagnitudeSquared(), h[k][0].Den.MagnitudeSquared()
+			at, _ := PolyRatio(num).Quo(PolyRatio(den))
+			mid, _ := at.Eval(big.NewRat(1e8, 1))
+			limit := num.Sub(den.Scale(mid))
+			b.Run(n.String()+"/"+name, func(b *testing.B) {
+				roots := 0
+				for b.Loop() {
+					roots = len(IsolateRealRoots(limit, new(big.Rat), nil))
+				}
+				b.ReportMetric(float64(roots), "roots")
+				b.ReportMetric(float64(maxBits(limit.Primitive().c)), "bits")
+			})
+		}
 	}
 }
