@@ -7,7 +7,7 @@ import "context"
 // meaning of the results.
 func (y *system) solve(ctx context.Context, wantDet []bool) ([]Poly, []Poly, error) {
 	plans, cost := y.frontierPlans(wantDet)
-	if plans != nil && cost < y.leastModularCost() {
+	if plans != nil && (cost < modularSetup || cost < y.leastModularCost()) {
 		return y.solveFrontier(ctx, plans, wantDet)
 	}
 	plan, err := y.order(ctx)
@@ -50,17 +50,21 @@ func (y *system) frontierPlans(wantDet []bool) ([]*frontierPlan, float64) {
 	return plans, cost
 }
 
+// modularSetup is about the time in nanoseconds that ordering and compiling
+// take for the smallest systems.
+const modularSetup = 2e4
+
 // leastModularCost is a lower estimate, in nanoseconds, of the time the
 // modular method takes, from sizes alone.
 func (y *system) leastModularCost() float64 {
-	const perEntry, setup = 4.0, 2e4
+	const perEntry = 4.0
 	entries := 0
 	for _, r := range y.rows {
 		entries += len(r)
 	}
 	dets, _ := y.coefficientBounds()
 	degrees, _ := y.degreeBounds()
-	sum := setup
+	sum := modularSetup
 	for b, bits := range dets {
 		sum += perEntry * float64(entries) * float64(degrees[b]+1) * float64(primesFor(bits))
 	}

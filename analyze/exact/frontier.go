@@ -39,7 +39,6 @@ type frontierPlan struct {
 type frontierStamp struct {
 	g, c  *big.Int // as in intEntry
 	moves []frontierMove
-	freed []int32 // slots that become free afterwards
 	live  []int32 // slots in use afterwards
 	bits  float64 // bound on the logarithm of all their coefficients
 	terms int     // bound on the number of their coefficients
@@ -75,7 +74,8 @@ type frontierPlanner struct {
 	rows      frontierSide
 	cols      frontierSide
 	free      []int32
-	freedNow  []int32
+	moves     []frontierMove // memory of the stamps' lists
+	live      []int32
 	det       bool // det(M) is wanted
 	borderRow int  // −1 without border
 	borderCol int
@@ -102,8 +102,11 @@ func (y *system) planFrontier(out, rhs int, det bool) *frontierPlan {
 	}
 	list := z.stampOrder()
 	z.countEntries(list)
-	z.states = []frontierState{{slot: 0}}
+	z.states = append(make([]frontierState, 0, 16), frontierState{slot: 0})
 	z.plan.slots = 1
+	z.plan.stamps = make([]frontierStamp, 0, len(list))
+	z.moves = make([]frontierMove, 0, 2*len(list))
+	z.live = make([]int32, 0, 3*len(list))
 	for _, s := range list {
 		if !z.stamp(s.row, s.entry) {
 			return nil
@@ -124,39 +127,45 @@ type placedEntry struct {
 func (z *frontierPlanner) stampOrder() []placedEntry {
 	y := z.y
 	position := y.pairOrder()
-	buckets := make([][]placedEntry, y.n)
+	// Step by step, and within a step rows begun earlier first: they are
+	// finished sooner.
+	type placed struct {
+		placedEntry
+		step, rank int
+	}
+	var list []placed
 	for i, r := range y.rows {
-		if i >= y.n && i != z.borderRow {
+		rank := y.n
+		if i < y.n {
+			rank = position[i]
+		} else if i != z.borderRow {
 			continue
 		}
 		for k := range r {
 			e := &r[k]
-			if e.col >= y.n && e.col != z.borderCol {
-				continue
-			}
-			at := 0
+			step := 0
 			if i < y.n {
-				at = position[i]
+				step = rank
 			}
 			if e.col < y.n {
-				at = max(at, position[e.col])
+				step = max(step, position[e.col])
+			} else if e.col != z.borderCol {
+				continue
 			}
-			buckets[at] = append(buckets[at], placedEntry{i, e})
+			list = append(list, placed{placedEntry{i, e}, step, rank})
 		}
 	}
-	// Within a step, rows begun earlier first: they are finished sooner.
-	rank := func(i int) int {
-		if i >= y.n {
-			return y.n
+	slices.SortStableFunc(list, func(p, q placed) int {
+		if p.step != q.step {
+			return p.step - q.step
 		}
-		return position[i]
+		return p.rank - q.rank
+	})
+	out := make([]placedEntry, len(list))
+	for k := range list {
+		out[k] = list[k].placedEntry
 	}
-	var list []placedEntry
-	for _, b := range buckets {
-		slices.SortStableFunc(b, func(p, q placedEntry) int { return rank(p.row) - rank(q.row) })
-		list = append(list, b...)
-	}
-	return list
+	return out
 }
 
 // pairOrder returns the position of every pair of row i and column i in an
@@ -318,7 +327,7 @@ func (z *frontierPlanner) stamp(row int, e *intEntry) bool {
 	z.rows.left[row]--
 	z.cols.left[e.col]--
 	rowDone, colDone := z.rows.left[row] == 0, z.cols.left[e.col] == 0
-	old := len(z.states)
+	old, firstMove := len(z.states), len(z.moves)
 	for k := range old {
 		s := z.states[k]
 		if s.mask&(r|c) != 0 {
@@ -342,8 +351,9 @@ func (z *frontierPlanner) stamp(row int, e *intEntry) bool {
 			grown.slot = t.slot
 		}
 		move.dst = grown.slot
-		op.moves = append(op.moves, move)
+		z.moves = append(z.moves, move)
 	}
+	op.moves = z.moves[firstMove:len(z.moves):len(z.moves)]
 	z.close(row, rowDone, e.col, colDone, &op)
 	if len(z.states) > frontierMaxStates {
 		return false
@@ -389,10 +399,9 @@ func (z *frontierPlanner) close(row int, rowDone bool, col int, colDone bool, op
 		if !z.hopeless(s.mask, row, rowDone, col, colDone) {
 			return false
 		}
-		op.freed = append(op.freed, s.slot)
+		z.free = append(z.free, s.slot)
 		return true
 	})
-	z.free = append(z.free, op.freed...)
 	var clear uint64
 	if rowDone && row != z.borderRow {
 		clear |= 1 << z.rows.bit[row]
@@ -402,13 +411,15 @@ func (z *frontierPlanner) close(row int, rowDone bool, col int, colDone bool, op
 		clear |= 1 << (z.cols.bit[col] + colShift)
 		z.cols.leave(col)
 	}
+	first := len(z.live)
 	for k := range z.states {
 		s := &z.states[k]
 		s.mask &^= clear
-		op.live = append(op.live, s.slot)
+		z.live = append(z.live, s.slot)
 		op.bits = max(op.bits, s.bits)
 		op.terms = max(op.terms, s.degree+1)
 	}
+	op.live = z.live[first:len(z.live):len(z.live)]
 	z.charge(op)
 }
 

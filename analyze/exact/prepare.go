@@ -35,11 +35,18 @@ func (p *Pencil) Prepare(ctx context.Context) (*Prepared, error) {
 // structure splits the scaled form of p into pieces.
 func (p *Pencil) structure(scaled *intPencil) *Prepared {
 	f := &Prepared{pencil: p, scaled: scaled}
+	count := 0
+	for _, r := range scaled.rows {
+		count += len(r)
+	}
 	pattern := make([][]int, p.Size())
-	for i, r := range f.scaled.rows {
+	all := make([]int, 0, count)
+	for i, r := range scaled.rows {
+		start := len(all)
 		for _, e := range r {
-			pattern[i] = append(pattern[i], e.col)
+			all = append(all, e.col)
 		}
+		pattern[i] = all[start:len(all):len(all)]
 	}
 	f.form = blockTriangular(pattern)
 	f.singular = f.form == nil
@@ -304,7 +311,7 @@ func makeBorder(v Vector, scale []tenfold, position []int) border {
 // rhs and out select on them.
 func (f *Prepared) system(list []int, rhs, out []border) *system {
 	y := &system{rhs: len(rhs), outs: len(out)}
-	colAt := map[int]int{}
+	colAt := make([]int, f.pencil.Size()) // position plus one
 	var rows []int
 	for _, b := range list {
 		start := 0
@@ -312,19 +319,35 @@ func (f *Prepared) system(list []int, rhs, out []border) *system {
 			start = f.form.end[b-1]
 		}
 		for k := start; k < f.form.end[b]; k++ {
-			colAt[f.form.cols[k]] = len(rows)
 			rows = append(rows, f.form.rows[k])
+			colAt[f.form.cols[k]] = len(rows)
 		}
 		y.end = append(y.end, len(rows))
 	}
 	y.n = len(rows)
 	y.rows = make([][]intEntry, y.n+y.outs)
+	borders := make([]int, y.n) // border entries by row
+	count := 0
+	for _, b := range rhs {
+		for _, at := range b.at {
+			borders[at]++
+		}
+		count += len(b.at)
+	}
+	for _, r := range rows {
+		count += len(f.scaled.rows[r])
+	}
+	entries := make([]intEntry, 0, count)
 	for i, r := range rows {
+		start := len(entries)
 		for _, e := range f.scaled.rows[r] {
-			if at, ok := colAt[e.col]; ok {
-				y.rows[i] = append(y.rows[i], intEntry{at, e.g, e.c})
+			if at := colAt[e.col]; at > 0 {
+				entries = append(entries, intEntry{at - 1, e.g, e.c})
 			}
 		}
+		end := len(entries)
+		entries = entries[:end+borders[i]]
+		y.rows[i] = entries[start:end:len(entries)]
 	}
 	for j, b := range rhs {
 		for k, at := range b.at {

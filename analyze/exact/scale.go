@@ -306,12 +306,7 @@ func integerRows(list []scaleEntry, n int) [][]intEntry {
 		row, start := list[i].row, len(entries)
 		for ; i < len(list) && list[i].row == row; i++ {
 			e, v := &list[i], &ints[i]
-			if e.long != nil {
-				v.Set(e.long.Num())
-			} else {
-				v.SetInt64(e.num)
-			}
-			shiftTens(v, e.two, e.five)
+			e.setInt(v)
 			if k := len(entries); k == start || entries[k-1].col != e.col {
 				entries = append(entries, intEntry{col: e.col})
 			}
@@ -324,6 +319,29 @@ func integerRows(list []scaleEntry, n int) [][]intEntry {
 		rows[row] = slices.Clip(entries[start:])
 	}
 	return rows
+}
+
+// setInt sets v to a number that is an integer.
+func (t *tenfold) setInt(v *big.Int) {
+	if t.long != nil {
+		v.Set(t.long.Num())
+		shiftTens(v, t.two, t.five)
+		return
+	}
+	// 31 bits, times 5¹⁰ of 24 bits, times 2⁷.
+	x, two, five := t.num, t.two, t.five
+	if five <= 10 {
+		for ; five > 0; five-- {
+			x *= 5
+		}
+	}
+	if two <= 7 {
+		x, two = x<<two, 0
+	}
+	v.SetInt64(x)
+	if two > 0 || five > 0 {
+		shiftTens(v, two, five)
+	}
 }
 
 // overDenominator returns r·den, nil for zero; den is a multiple of r's
