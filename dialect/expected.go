@@ -255,7 +255,8 @@ func wordStart(s string) int {
 
 // recorder notes what would fit at the end of the text read so far.
 type recorder struct {
-	holes []*Hole
+	holes  []*Hole
+	closed bool // something that must come is missing: what follows it is no news
 }
 
 // add notes one thing that would fit.
@@ -289,7 +290,7 @@ next:
 
 // want notes what would fit here, if the text ends here and someone asks.
 func (p *parser) want(want Want, words []string) {
-	if p.record != nil && p.is(tEnd) {
+	if p.record != nil && !p.record.closed && p.is(tEnd) {
 		p.record.add(p.newHole(want, words))
 	}
 }

@@ -91,7 +91,7 @@ func (p *parser) readable() bool {
 	}
 	p.head = &Head{Span: Span{0, len(p.text)}, Broken: true}
 	p.file.Statements = []Statement{&BrokenStatement{Head: *p.head}}
-	p.fail(Span{0, min(len(p.text), p.file.Lines.Span(0).End)}, message)
+	p.fail(Span{0, firstRunes(p.text[:p.file.Lines.Span(0).End], 40)}, message)
 	p.invalid = 0
 	p.file.Unreadable = true
 	return false
@@ -204,6 +204,9 @@ func (p *parser) gather(first, stop int) {
 			case tClose, tParenClose:
 				open = max(open-1, 0)
 			}
+		}
+		if p.tokens[seen-1].kind == tBrace { // it ends its line, whatever is open
+			return
 		}
 		if open == 0 && p.tokens[seen-1].kind != tComma {
 			return

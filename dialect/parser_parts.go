@@ -294,7 +294,7 @@ func (p *parser) tolerance() *ToleranceClause {
 		p.fail(t.span(), "a value has one tolerance: ±5 %, or +20 % -10 %")
 		p.skipTo(tComma, tBars, tClose)
 	case t.kind == tPlus || t.kind == tMinus || t.kind == tStar || t.kind == tSlash || t.kind == tCaret:
-		p.fail(c.Span, "a signed percentage outside brackets is a tolerance and ends the value; to calculate with it, put brackets around it")
+		p.fail(c.Span, "this is a tolerance, which ends the value; to calculate with a signed percentage, put it in brackets")
 		p.skipTo(tComma, tBars, tClose)
 	}
 	return c

@@ -146,8 +146,9 @@ func (p *parser) only(title string, span Span, text string) Repair {
 // hole notes that something is missing at the current token.
 func (p *parser) hole(want Want, words []string) *Hole {
 	h := p.newHole(want, words)
-	if p.record != nil && p.is(tEnd) {
+	if p.record != nil && !p.record.closed && p.is(tEnd) {
 		p.record.add(h)
+		p.record.closed = true
 	}
 	p.head.Holes = append(p.head.Holes, h)
 	p.head.Broken = true

@@ -79,7 +79,7 @@ func (m *textMaker) expr() string {
 	for range rapid.IntRange(0, 3).Draw(m.T, "operators") {
 		switch m.pick("+", "*", "^") {
 		case "+":
-			x += m.gap() + m.pick("+", "-", "−", "+ -", "+-", "- +") + m.space() + m.operand()
+			x += m.gap() + m.plus() + m.space() + m.operand()
 		case "*":
 			x += m.space() + m.pick("*", "/", "*-", "/ +") + m.gap() + m.operand()
 		case "^":
@@ -87,6 +87,15 @@ func (m *textMaker) expr() string {
 		}
 	}
 	return x
+}
+
+// plus draws an addition or subtraction; in a part's value +- is a tolerance.
+func (m *textMaker) plus() string {
+	op := m.pick("+", "-", "−", "+ -", "+-", "- +")
+	if m.value && op == "+-" {
+		return "+ -"
+	}
+	return op
 }
 
 func (m *textMaker) operand() string {

@@ -101,7 +101,7 @@ var unitWords = map[string][]string{
 	"db": {"dB"}, "dbv": {"dBV"}, "dbu": {"dBu"}, "dbuv": {"dBµV"},
 	"mfd": {"µF"}, "mmf": {"pF", "mF"}, "mmfd": {"pF"}, "uuf": {"pF"}, "µµf": {"pF"}, "\u03bc\u03bcf": {"pF"},
 	"msec": {"ms"}, "usec": {"µs"}, "µsec": {"µs"}, "nsec": {"ns"},
-	"vs": {"V*s"}, "as": {"A*s"}, "ws": {"W*s"}, "va": {"V*A"}, "var": {"V*A"},
+	"vs": {"V*s"}, "ws": {"W*s"}, "va": {"V*A"}, "var": {"V*A"},
 	"rads": {"rad"}, "rps": {"rad/s"}, "henri": {"H"},
 	"megohm": {"MΩ"}, "megohms": {"MΩ"}, "kilohm": {"kΩ"}, "kilohms": {"kΩ"},
 }
