@@ -1,0 +1,546 @@
+package dialect
+
+// This file resolves names: every use of a name is recorded with the symbol it
+// refers to, and names that stand for nothing are reported, once per place of
+// the text. Evaluation later looks the same names up in silence.
+
+// maxDepth bounds the nesting of an expression that is looked into.
+const maxDepth = 5000
+
+func (c *checker) link(s *scope) {
+	if s.body == nil {
+		c.linkGround(s)
+	}
+	if s.body != nil {
+		for _, p := range s.body.Parameters {
+			c.linkExpr(s, p.Value, 0)
+		}
+	}
+	for _, st := range s.statements {
+		c.linkStatement(s, st)
+	}
+	for _, b := range s.bodies {
+		c.link(b)
+	}
+	c.checkWired(s)
+}
+
+func (c *checker) linkGround(s *scope) {
+	if s.groundSeen == nil || !s.groundSeen.Node.Present() {
+		return
+	}
+	s.ground = c.existingNode(s, s.groundSeen.Node, s.groundSeen, "no part is connected to the reference node %s")
+}
+
+// existingNode finds a node that only wiring makes; an unknown one is
+// reported and made, so that its other uses are not reported too.
+func (c *checker) existingNode(s *scope, name Word, st Statement, format string) *Symbol {
+	if !name.Present() {
+		return nil
+	}
+	if sym := s.nodes[name.Text]; sym != nil {
+		c.table.record(sym, s.unit.file, name.Span, false)
+		return sym
+	}
+	f := c.report(s.unit.file, name.Span, "unknown-name", format, name.Text)
+	c.offerNames(f, s, name, func(sym *Symbol) bool { return sym.Sort == NodeSymbol })
+	return c.add(s, NodeSymbol, name, st)
+}
+
+// offerNames adds the repair that a misspelt name suggests.
+func (c *checker) offerNames(f *reported, s *scope, name Word, fits func(*Symbol) bool) {
+	if f.f == nil || c.suggested > 200 {
+		return
+	}
+	c.suggested++
+	if best, ok := Nearest(name.Text, s.candidates(fits)); ok {
+		f.f.Message += "; did you mean " + best + "?"
+		f.repair(s.unit.file, name.Span, best, "write "+best)
+	}
+}
+
+func (c *checker) linkStatement(s *scope, st Statement) {
+	if st.Headline().Misplaced {
+		return
+	}
+	switch st := st.(type) {
+	case *LetStatement:
+		c.linkExpr(s, st.Value, 0)
+	case *FunctionStatement:
+		c.linkExpr(s, st.Value, 0)
+	case *PartStatement:
+		c.linkPart(s, st)
+	case *PathStatement:
+		c.linkPath(s, st)
+	case *PortStatement:
+		if s.body == nil {
+			c.existingNode(s, st.Plus, st, "no part is connected to %s")
+			c.existingNode(s, st.Minus, st, "no part is connected to %s")
+		}
+	case *UsePartStatement:
+		c.linkUse(s, st)
+	case *TellStatement:
+		c.linkAsked(s, st.What)
+		c.linkQualifiers(s, st.Qualifiers)
+	case *RequireStatement:
+		c.linkExpr(s, st.Left, 0)
+		c.linkExpr(s, st.Right, 0)
+		c.linkQualifiers(s, st.Qualifiers)
+	}
+}
+
+func (c *checker) linkPart(s *scope, st *PartStatement) {
+	switch v := st.Value.(type) {
+	case Expr:
+		c.linkExpr(s, v, 0)
+	case *EventsValue:
+		for _, e := range v.Events {
+			c.linkExpr(s, e.Time, 0)
+		}
+	case *RatioValue:
+		for _, e := range v.Terms {
+			c.linkExpr(s, e, 0)
+		}
+	}
+	for _, o := range st.Options {
+		if o.Keyword.Text == "between" {
+			for _, n := range o.Nodes {
+				c.linkWord(s, n, "inductor", func(sym *Symbol) bool { return sym.Sort == PartSymbol && sym.Kind == Inductor })
+			}
+		}
+		if o.Value != nil {
+			c.linkExpr(s, o.Value, 0)
+		}
+	}
+}
+
+// linkWord resolves a name that must be of a certain sort.
+func (c *checker) linkWord(s *scope, name Word, what string, fits func(*Symbol) bool) *Symbol {
+	if !name.Present() {
+		return nil
+	}
+	sym := s.visible(name.Text)
+	if sym == nil {
+		sym = s.nodes[name.Text]
+	}
+	if sym == nil {
+		f := c.report(s.unit.file, name.Span, "unknown-name", "there is no %s named %s", what, name.Text)
+		c.offerNames(f, s, name, fits)
+		return nil
+	}
+	c.table.record(sym, s.unit.file, name.Span, false)
+	if !fits(sym) {
+		f := c.report(s.unit.file, name.Span, "wrong-sort", "%s is a %s; an %s", name.Text, sym.describe(), what)
+		if f.f != nil {
+			f.f.Message = name.Text + " is " + article(sym.describe()) + ", where " + article(what) + " is needed"
+		}
+		f.relate(sym.File, sym.Span, "%s, the %s", sym.Name, sym.describe())
+		return nil
+	}
+	return sym
+}
+
+// article sets "a" or "an" before a word.
+func article(word string) string {
+	if word != "" {
+		switch word[0] {
+		case 'a', 'e', 'i', 'o':
+			return "an " + word
+		}
+	}
+	return "a " + word
+}
+
+func (c *checker) linkPath(s *scope, st *PathStatement) {
+	for i, chain := range st.Chains {
+		for _, g := range chain.Groups {
+			for _, b := range g.Boxes {
+				sym := c.linkBox(s, b)
+				if sym != nil && len(chain.Groups) == 1 && i+1 < len(st.Nodes) {
+					c.checkSelfLoop(s, sym, b, st.Nodes[i], st.Nodes[i+1])
+				}
+			}
+		}
+	}
+}
+
+// linkBox resolves what stands in a box and notes that it is wired there.
+func (c *checker) linkBox(s *scope, b Box) *Symbol {
+	var sym *Symbol
+	var name Word
+	switch b := b.(type) {
+	case *NameBox:
+		name = b.Name
+		sym = c.linkWord(s, name, "part", func(sym *Symbol) bool { return sym.Sort == PartSymbol || sym.Sort == UseSymbol })
+	case *PartStatement:
+		name, sym = b.Name, s.inline(b)
+		c.linkPart(s, b)
+	case *UsePartStatement:
+		name, sym = b.Name, s.inline(b)
+		c.linkUse(s, b)
+	}
+	if sym == nil {
+		return nil
+	}
+	switch sym.Kind {
+	case OpAmp, Transformer, Coupling:
+		c.reportNotTwoTerminal(s, sym, b.Extent())
+		return nil
+	}
+	c.linkTwice(s, sym, name.Span)
+	sym.boxes = append(sym.boxes, wiring{span: b.Extent(), present: true})
+	return sym
+}
+
+func (c *checker) reportNotTwoTerminal(s *scope, sym *Symbol, span Span) {
+	how := map[Kind]string{
+		OpAmp:       "wire it with \", + at …, - at …, output at …\"",
+		Transformer: "wire it with \", primary at … …, secondary at … …\"",
+		Coupling:    "it joins two inductors with \", between … …\" and stands in no path",
+	}[sym.Kind]
+	f := c.report(s.unit.file, span, "not-two-terminal", "%s is %s and cannot stand in a box: %s",
+		sym.Name, article(sym.Kind.String()), how)
+	f.relate(sym.File, sym.Span, "%s is defined here", sym.Name)
+}
+
+// linkTwice reports a part that is wired a second time.
+func (c *checker) linkTwice(s *scope, sym *Symbol, span Span) {
+	earlier := sym.options
+	if len(sym.boxes) > 0 {
+		earlier = sym.boxes[0]
+	}
+	if !earlier.present {
+		return
+	}
+	f := c.report(s.unit.file, span, "wired-twice", "%s is wired already: a part stands in one place of the network", sym.Name)
+	f.relate(s.unit.file, earlier.span, "%s is wired here", sym.Name)
+}
+
+// inline finds the symbol of a part or use statement.
+func (s *scope) inline(st Statement) *Symbol {
+	name := ""
+	switch st := st.(type) {
+	case *PartStatement:
+		name = st.Name.Text
+	case *UsePartStatement:
+		name = st.Name.Text
+	}
+	if sym := s.names[name]; sym != nil && sym.Statement == st {
+		return sym
+	}
+	for _, sym := range s.symbols { // a name that was taken
+		if sym.Statement == st && sym.Sort != NodeSymbol {
+			return sym
+		}
+	}
+	return nil
+}
+
+func (c *checker) linkUse(s *scope, st *UsePartStatement) {
+	use := s.inline(st)
+	sub := c.linkWord(s, st.Subnetwork, "subnetwork", func(sym *Symbol) bool { return sym.Sort == SubnetworkSymbol })
+	if use != nil {
+		use.Of = sub
+	}
+	for _, a := range st.Arguments {
+		c.linkExpr(s, a.Value, 0)
+		if sub != nil {
+			c.linkInside(s, sub.body.names, a.Name, sub, "parameter", ParameterSymbol)
+		}
+	}
+	if sub == nil {
+		return
+	}
+	seen := map[string]Span{}
+	for _, t := range st.Terminals {
+		c.linkInside(s, sub.body.nodes, t.Terminal, sub, "terminal", NodeSymbol)
+		if first, twice := seen[t.Terminal.Text]; twice && t.Terminal.Present() {
+			f := c.report(s.unit.file, t.Terminal.Span, "wired-twice", "terminal %s is connected already", t.Terminal.Text)
+			f.relate(s.unit.file, first, "%s is connected here", t.Terminal.Text)
+		}
+		seen[t.Terminal.Text] = t.Span
+	}
+}
+
+// linkInside resolves a parameter or terminal of a subnetwork.
+func (c *checker) linkInside(s *scope, names map[string]*Symbol, name Word, sub *Symbol, what string, sort SymbolSort) {
+	if !name.Present() {
+		return
+	}
+	sym := names[name.Text]
+	if sym != nil && sym.Sort == sort && (sort != NodeSymbol || sym.Terminal) {
+		c.table.record(sym, s.unit.file, name.Span, false)
+		return
+	}
+	f := c.report(s.unit.file, name.Span, "unknown-name", "%s has no %s %s", sub.Name, what, name.Text)
+	f.relate(sub.File, sub.Span, "%s is defined here", sub.Name)
+	if f.f == nil {
+		return
+	}
+	list := sub.Parameters
+	if sort == NodeSymbol {
+		list = sub.Terminals
+	}
+	var candidates []string
+	for _, p := range list {
+		candidates = append(candidates, p.Name)
+	}
+	if best, ok := Nearest(name.Text, candidates); ok {
+		f.f.Message += "; did you mean " + best + "?"
+		f.repair(s.unit.file, name.Span, best, "write "+best)
+	}
+}
+
+func (c *checker) linkAsked(s *scope, what Asked) {
+	switch q := what.(type) {
+	case Expr:
+		c.linkExpr(s, q, 0)
+	case *RootsQuestion:
+		c.linkExpr(s, q.X, 0)
+	case *MatrixQuestion:
+		isPort := func(sym *Symbol) bool { return sym.Sort == PortSymbol }
+		c.linkWord(s, q.First, "port", isPort)
+		c.linkWord(s, q.Second, "port", isPort)
+		c.linkExpr(s, q.Reference, 0)
+	}
+}
+
+func (c *checker) linkQualifiers(s *scope, list []*Qualifier) {
+	for _, q := range list {
+		c.linkExpr(s, q.Value, 0)
+		c.linkExpr(s, q.To, 0)
+		for _, n := range q.Names {
+			c.linkName(s, n, nil)
+		}
+	}
+}
+
+// linkExpr resolves the names of an expression; e may be nil.
+func (c *checker) linkExpr(s *scope, e Expr, depth int) {
+	if depth > maxDepth {
+		return
+	}
+	switch e := e.(type) {
+	case *NameExpr:
+		c.linkName(s, e, nil)
+	case *SubscriptExpr:
+		c.linkSubscripts(s, e)
+	case *CallExpr:
+		if name, ok := e.Callee.(*NameExpr); ok {
+			if _, builtin := callTable[name.Text()]; !builtin || s.visible(name.Text()) != nil && callsUser(s, name) {
+				c.linkName(s, name, nil)
+			}
+		} else {
+			c.linkExpr(s, e.Callee, depth+1)
+		}
+		for _, a := range e.Args {
+			c.linkExpr(s, a, depth+1)
+		}
+	case *UnaryExpr:
+		c.linkExpr(s, e.X, depth+1)
+	case *BinaryExpr:
+		c.linkExpr(s, e.X, depth+1)
+		c.linkExpr(s, e.Y, depth+1)
+	case *ParenExpr:
+		c.linkExpr(s, e.X, depth+1)
+	case *ConvertExpr:
+		c.linkExpr(s, e.X, depth+1)
+	}
+}
+
+// callsUser says that a call of a name which is also a word of the notation
+// means the file's own function.
+func callsUser(s *scope, name *NameExpr) bool {
+	sym := s.visible(name.Text())
+	return sym != nil && sym.Sort == FunctionSymbol
+}
+
+func (c *checker) linkSubscripts(s *scope, e *SubscriptExpr) {
+	port := e.Letter.Text == "thevenin" || e.Letter.Text == "norton"
+	for _, n := range e.Subscripts {
+		if port {
+			if len(n.Words) == 1 {
+				c.linkWord(s, n.Words[0], "port", func(sym *Symbol) bool { return sym.Sort == PortSymbol })
+			}
+			continue
+		}
+		c.linkName(s, n, &e.Letter)
+	}
+}
+
+// linkName resolves a name with its dots. letter is the quantity it is a
+// subscript of, nil for a name in an expression.
+func (c *checker) linkName(s *scope, n *NameExpr, letter *Word) {
+	if len(n.Words) == 0 {
+		return
+	}
+	first := n.Words[0]
+	if letter == nil && len(n.Words) == 1 && (first.Text == "s" || first.Text == "t" || first.Text == "pi") {
+		return
+	}
+	at := s
+	for i, w := range n.Words {
+		if !w.Present() {
+			return
+		}
+		sym := at.lookup(w.Text, letter != nil, i > 0)
+		if sym == nil {
+			c.reportUnknown(s, at, n, i, letter)
+			return
+		}
+		c.table.record(sym, s.unit.file, w.Span, false)
+		if port, ok := sym.Statement.(*PortStatement); ok && sym.Sort == PortSymbol && letter != nil {
+			if node := at.nodes[w.Text]; node != nil && port.Plus.Text == w.Text {
+				c.table.record(node, s.unit.file, w.Span, false)
+			}
+		}
+		if i+1 == len(n.Words) {
+			return
+		}
+		if at = c.linkInto(s, sym, n, i); at == nil {
+			return
+		}
+	}
+}
+
+// lookup finds a name: in subscripts nodes count too and files' constants do
+// not matter; inside a use only the body's own names count.
+func (s *scope) lookup(name string, subscript, inner bool) *Symbol {
+	if inner {
+		if sym := s.names[name]; sym != nil {
+			return sym
+		}
+		return s.nodes[name]
+	}
+	if sym := s.names[name]; sym != nil && subscript {
+		switch sym.Sort {
+		case PartSymbol, PortSymbol, UseSymbol:
+			return sym
+		}
+	}
+	if node := s.nodes[name]; subscript && node != nil {
+		return node
+	}
+	if sym := s.visible(name); sym != nil {
+		return sym
+	}
+	return s.nodes[name]
+}
+
+// linkInto steps into what a dot follows. It is nil where there is no further
+// scope: a part's terminal is resolved, anything else reported.
+func (c *checker) linkInto(s *scope, sym *Symbol, n *NameExpr, i int) *scope {
+	next := n.Words[i+1]
+	switch {
+	case sym.Sort == UseSymbol:
+		if sym.Of == nil {
+			c.linkUseOf(sym)
+		}
+		if sym.Of == nil {
+			return nil // told at the use
+		}
+		return sym.Of.body
+	case sym.Sort == PartSymbol && (sym.Kind == OpAmp || sym.Kind == Transformer) && i+2 == len(n.Words):
+		if !hasTerminal(sym, next.Text) {
+			terminals := "output"
+			if sym.Kind == Transformer {
+				terminals = "primary or secondary"
+			}
+			c.report(s.unit.file, next.Span, "unknown-name", "%s %s has no terminal %s: write %s.%s",
+				sym.Kind, sym.Name, next.Text, sym.Name, terminals)
+		}
+		return nil
+	}
+	c.report(s.unit.file, Span{n.Words[0].Span.Start, next.Span.End}, "wrong-sort",
+		"%s is %s and has nothing inside: a dot follows the name of a subnetwork's use, of an op amp or of a transformer",
+		sym.Name, article(sym.describe()))
+	return nil
+}
+
+// linkUseOf resolves the subnetwork of a use that stands later in the text,
+// without recording.
+func (c *checker) linkUseOf(sym *Symbol) {
+	st, ok := sym.Statement.(*UsePartStatement)
+	if !ok {
+		return
+	}
+	if sub := sym.scope.visible(st.Subnetwork.Text); sub != nil && sub.Sort == SubnetworkSymbol {
+		sym.Of = sub
+	}
+}
+
+func hasTerminal(sym *Symbol, name string) bool {
+	st, ok := sym.Statement.(*PartStatement)
+	if !ok {
+		return false
+	}
+	if sym.Kind == OpAmp {
+		return name == "output"
+	}
+	secondaries := 0
+	for _, o := range st.Options {
+		if o.Keyword.Text == "secondary" {
+			secondaries++
+			if name == windingName(secondaries) {
+				return true
+			}
+		}
+	}
+	return name == "primary"
+}
+
+func (c *checker) reportUnknown(s, at *scope, n *NameExpr, i int, letter *Word) {
+	w := n.Words[i]
+	if i > 0 {
+		use := n.Words[i-1].Text
+		f := c.report(s.unit.file, w.Span, "unknown-name", "there is nothing named %s inside %s (a %s)", w.Text, use, at.symbol.Name)
+		f.relate(at.symbol.File, at.symbol.Span, "%s is defined here", at.symbol.Name)
+		c.offerNamesIn(f, s, at, w)
+		return
+	}
+	what := "nothing named"
+	if letter != nil {
+		what = map[string]string{
+			"v": "no node, part or port named", "z": "no node, part or port named", "y": "no node, part or port named",
+			"i": "no part or port named", "p": "no part named",
+		}[letter.Text]
+		if what == "" {
+			what = "nothing named"
+		}
+	}
+	f := c.report(s.unit.file, w.Span, "unknown-name", "there is %s %s", what, w.Text)
+	if sym := s.unit.scope.lookup(w.Text, true, false); sym != nil && s.body != nil && f.f != nil {
+		f.f.Message += ": " + article(sym.describe()) + " of the file is not seen inside a subnetwork"
+		f.relate(sym.File, sym.Span, "the %s %s of the file", sym.describe(), sym.Name)
+		return
+	}
+	if _, word := callTable[w.Text]; word && letter == nil && f.f != nil {
+		f.f.Message += ": " + w.Text + " is a function and takes arguments in brackets"
+		return
+	}
+	c.offerNames(f, s, w, func(sym *Symbol) bool {
+		if letter == nil {
+			return sym.Sort != NodeSymbol && sym.Sort != SubnetworkSymbol && sym.Sort != PortSymbol
+		}
+		switch letter.Text {
+		case "i", "p":
+			return sym.Sort == PartSymbol || sym.Sort == UseSymbol || sym.Sort == PortSymbol && letter.Text == "i"
+		}
+		return sym.Sort == NodeSymbol || sym.Sort == PartSymbol || sym.Sort == UseSymbol || sym.Sort == PortSymbol
+	})
+}
+
+func (c *checker) offerNamesIn(f *reported, s, at *scope, w Word) {
+	if f.f == nil || c.suggested > 200 {
+		return
+	}
+	c.suggested++
+	var names []string
+	for _, sym := range at.symbols {
+		names = append(names, sym.Name)
+	}
+	if best, ok := Nearest(w.Text, names); ok {
+		f.f.Message += "; did you mean " + best + "?"
+		f.repair(s.unit.file, w.Span, best, "write "+best)
+	}
+}

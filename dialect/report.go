@@ -1,0 +1,153 @@
+package dialect
+
+import (
+	"fmt"
+	"sort"
+)
+
+// findingKey tells findings apart: the same code at the same place is told
+// once, however often a subnetwork is used.
+type findingKey struct {
+	file *File
+	span Span
+	code Code
+}
+
+// maxFindings bounds what one check tells; see also the parser's own bound.
+const maxReported = 1000
+
+// report adds a finding with its code's severity. The result can be given
+// related places and repairs; it is never nil.
+func (c *checker) report(file *File, span Span, code Code, format string, args ...any) *reported {
+	return c.reportAt(Origin{File: file, Span: span}, code, format, args...)
+}
+
+func (c *checker) reportAt(origin Origin, code Code, format string, args ...any) *reported {
+	e := explanationOf(code)
+	if e.Severity == Error && !c.harmless && !c.muted(origin) {
+		c.faults = true
+	}
+	key := findingKey{origin.File, origin.Span, code}
+	if c.seen[key] || len(c.findings) >= maxReported || c.muted(origin) {
+		return &reported{}
+	}
+	c.seen[key] = true
+	f := &Finding{Code: code, Severity: e.Severity, Message: fmt.Sprintf(format, args...), Origin: origin}
+	for i := len(origin.Use) - 1; i >= 0; i-- {
+		f.Related = append(f.Related, Related{Message: "in the subnetwork as used here", Origin: origin.Use[i]})
+	}
+	c.findings = append(c.findings, f)
+	return &reported{f}
+}
+
+// muted says that a finding lies in a statement of a used file that has no
+// effect here: only its lets, subnetworks and use statements do.
+func (c *checker) muted(origin Origin) bool {
+	u := c.byFile[origin.File]
+	if u == nil || u.main {
+		return false
+	}
+	i := sort.Search(len(u.file.Statements), func(i int) bool {
+		return u.file.Statements[i].Headline().Span.Start > origin.Span.Start
+	}) - 1
+	if i < 0 {
+		return true
+	}
+	switch u.file.Statements[i].(type) {
+	case *LetStatement, *SubnetworkStatement, *UseFileStatement:
+		return false
+	}
+	return true
+}
+
+// reported is a finding under construction; its methods do nothing when the
+// finding had been told before.
+type reported struct{ f *Finding }
+
+// relate adds a related place.
+func (r *reported) relate(file *File, span Span, format string, args ...any) *reported {
+	if r.f != nil {
+		r.f.Related = append(r.f.Related, Related{
+			Message: fmt.Sprintf(format, args...), Origin: Origin{File: file, Span: span},
+		})
+	}
+	return r
+}
+
+// repair adds a repair that replaces one span. The first one is preferred.
+func (r *reported) repair(file *File, span Span, text, title string) *reported {
+	return r.repairs(Repair{Title: title, Edits: []Edit{{File: file, Span: span, Text: text}}})
+}
+
+func (r *reported) repairs(repair Repair) *reported {
+	if r.f != nil {
+		repair.Preferred = len(r.f.Repairs) == 0
+		r.f.Repairs = append(r.f.Repairs, repair)
+	}
+	return r
+}
+
+// choose says that of several repairs none is the obvious one.
+func (r *reported) choose() *reported {
+	if r.f != nil {
+		for i := range r.f.Repairs {
+			r.f.Repairs[i].Preferred = false
+		}
+	}
+	return r
+}
+
+// remove adds a repair that takes out a statement with its line, or a span
+// within a line.
+func (r *reported) remove(file *File, span Span, title string) *reported {
+	return r.repair(file, wholeLine(file.Text, span), "", title)
+}
+
+// as changes the severity from the code's usual one.
+func (r *reported) as(s Severity) *reported {
+	if r.f != nil {
+		r.f.Severity = s
+	}
+	return r
+}
+
+// wholeLine widens a span that is alone on its lines to them and the line end.
+func wholeLine(text string, span Span) Span {
+	start, end := span.Start, span.End
+	for start > 0 && (text[start-1] == ' ' || text[start-1] == '\t') {
+		start--
+	}
+	for end < len(text) && (text[end] == ' ' || text[end] == '\t' || text[end] == '\r') {
+		end++
+	}
+	if (start > 0 && text[start-1] != '\n') || (end < len(text) && text[end] != '\n') {
+		return span
+	}
+	if end < len(text) {
+		end++
+	}
+	return Span{start, end}
+}
+
+// sortFindings puts findings in order: the main file first, then by place.
+func (c *checker) sortFindings() []Finding {
+	order := map[*File]int{}
+	for i, u := range c.units {
+		order[u.file] = i
+	}
+	all := make([]Finding, len(c.findings))
+	for i, f := range c.findings {
+		all[i] = *f
+	}
+	sort.SliceStable(all, func(i, j int) bool {
+		a, b := all[i].Origin, all[j].Origin
+		if a.File != b.File {
+			return order[a.File] < order[b.File]
+		}
+		if a.Span.Start != b.Span.Start {
+			return a.Span.Start < b.Span.Start
+		}
+		return a.Span.End < b.Span.End
+	})
+	return all
+}

@@ -1,0 +1,229 @@
+package dialect
+
+import (
+	"math/big"
+	"sort"
+	"strconv"
+	"strings"
+
+	"portlight/dialect/number"
+)
+
+// The preferred values of IEC 60063:2015. E48, E96 and E192 are the powers
+// 10^(i/N) rounded to three significant digits, with one entry of E192 that
+// the standard rounds the other way (920, where the formula gives 919). E24
+// is a table: eight of its entries depart from the formula for historical
+// reasons. E12, E6 and E3 take every second, fourth and eighth entry of it.
+
+// e24 are the values of E24, times ten.
+var e24 = [24]int{10, 11, 12, 13, 15, 16, 18, 20, 22, 24, 27, 30, 33, 36, 39, 43, 47, 51, 56, 62, 68, 75, 82, 91}
+
+// SeriesValues lists a series' values between 100 and 999: the three leading
+// digits. ok is false for a name that is none of E3, E6, … E192.
+func SeriesValues(series string) (values []int, ok bool) {
+	n, err := strconv.Atoi(strings.TrimPrefix(series, "E"))
+	if err != nil || !strings.HasPrefix(series, "E") {
+		return nil, false
+	}
+	switch n {
+	case 3, 6, 12, 24:
+		for i := 0; i < 24; i += 24 / n {
+			values = append(values, e24[i]*10)
+		}
+		return values, true
+	case 48, 96, 192:
+		for i := range n {
+			values = append(values, roundedRoot(i, n))
+		}
+		return values, true
+	}
+	return nil, false
+}
+
+// roundedRoot is 100·10^(i/n) rounded to an integer, decided exactly: the
+// integer v with (2v−1)^n ≤ (200)^n·10^i < (2v+1)^n.
+func roundedRoot(i, n int) int {
+	if n == 192 && i == 185 {
+		return 920
+	}
+	target := new(big.Int).Exp(big.NewInt(200), big.NewInt(int64(n)), nil)
+	target.Mul(target, new(big.Int).Exp(big.NewInt(10), big.NewInt(int64(i)), nil))
+	return 100 + sort.Search(900, func(k int) bool {
+		above := new(big.Int).Exp(big.NewInt(int64(2*(100+k)+1)), big.NewInt(int64(n)), nil)
+		return above.Cmp(target) > 0
+	})
+}
+
+// seriesCache holds every series once.
+var seriesCache = func() map[string][]int {
+	cache := map[string][]int{}
+	for _, name := range seriesNames {
+		cache[name], _ = SeriesValues(name)
+	}
+	return cache
+}()
+
+// preferredIn tells whether a value is in a series, and its neighbours there.
+func preferredIn(series string, x number.Exact) (below, above number.Exact, in bool) {
+	values := seriesCache[series]
+	r := x.Rat()
+	if len(values) == 0 || r.Sign() <= 0 {
+		return x, x, true
+	}
+	_, exponent := roundSignificant(r, 18)
+	for powerOfTen(exponent).Cmp(r) > 0 {
+		exponent--
+	}
+	scale := powerOfTen(exponent - 2)
+	scaled := new(big.Rat).Quo(r, scale) // 100 ≤ scaled < 1000
+	at := func(i int) *big.Rat {
+		switch {
+		case i < 0:
+			return new(big.Rat).Mul(big.NewRat(int64(values[len(values)-1]), 10), scale)
+		case i >= len(values):
+			return new(big.Rat).Mul(big.NewRat(1000, 1), scale)
+		}
+		return new(big.Rat).Mul(big.NewRat(int64(values[i]), 1), scale)
+	}
+	i := sort.Search(len(values), func(i int) bool { return big.NewRat(int64(values[i]), 1).Cmp(scaled) >= 0 })
+	if i < len(values) && big.NewRat(int64(values[i]), 1).Cmp(scaled) == 0 {
+		return x, x, true
+	}
+	return number.FromRat(at(i - 1)), number.FromRat(at(i)), false
+}
+
+// preference is a prefer statement.
+type preference struct {
+	series string
+	at     *PreferStatement
+}
+
+// preferences collects the prefer statements of the main file.
+func (b *builder) preferences(inst *instance) {
+	for _, st := range inst.scope.statements {
+		p, ok := st.(*PreferStatement)
+		if !ok || p.Misplaced || !p.KindName.Present() || !p.Series.Present() {
+			continue
+		}
+		if earlier := b.prefer[p.Kind]; earlier != nil {
+			f := b.report(inst, p.Span, "given-twice", "the preferred values of %ss are given already", p.Kind)
+			f.relate(inst.scope.unit.file, earlier.at.Span, "here")
+			continue
+		}
+		if _, known := seriesCache[p.Series.Text]; known {
+			b.prefer[p.Kind] = &preference{p.Series.Text, p}
+		}
+	}
+}
+
+// Preferred lists the series that a part's values come from: the one the file
+// prefers for the kind, or those that suit the tolerance; none when neither
+// is given.
+func (c *Checked) Preferred(kind Kind, tolerance *Tolerance, value number.Exact) []string {
+	return c.builder.seriesFor(kind, tolerance, value)
+}
+
+func (b *builder) seriesFor(kind Kind, t *Tolerance, value number.Exact) []string {
+	if p := b.prefer[kind]; p != nil {
+		return []string{p.series}
+	}
+	if t == nil || !strings.Contains(t.Text, "%") {
+		return nil
+	}
+	width, err := t.High.Sub(t.Low).Quo(value.Mul(number.FromInt(2)))
+	if err != nil {
+		return nil
+	}
+	// The tolerances that the series were made for; coarse tolerances are sold
+	// in E24 values too (common practice, no source).
+	w := width.Abs().Rat()
+	for _, step := range [...]struct {
+		series   string
+		per1000s int64
+	}{{"E192", 5}, {"E96", 10}, {"E48", 20}} {
+		if w.Cmp(big.NewRat(step.per1000s, 1000)) <= 0 {
+			return []string{step.series, "E24"}
+		}
+	}
+	return []string{"E24"}
+}
+
+// preferred reports a value outside its series.
+func (b *builder) preferred(inst *instance, sym *Symbol, p *Part, st *PartStatement) {
+	switch p.Kind {
+	case Resistor, Inductor, Capacitor:
+	default:
+		return
+	}
+	if sign, _ := p.Value.Sign(); sign <= 0 || !p.Value.IsExact() && b.prefer[p.Kind] == nil {
+		return
+	}
+	list := b.seriesFor(p.Kind, p.Tolerance, p.Value)
+	if len(list) == 0 || b.prefer[p.Kind] == nil && (b.windingResistance(inst, sym) || !literalValue(st.Value)) {
+		return
+	}
+	var below, above number.Exact
+	for i, series := range list {
+		lower, upper, in := preferredIn(series, p.Value)
+		if in {
+			return
+		}
+		if i == 0 {
+			below, above = lower, upper
+		}
+	}
+	unit := kindDimension(p.Kind)
+	f := b.report(inst, st.Value.Extent(), "not-preferred", "%s is not a value of %s: its neighbours are %s and %s",
+		valueText(inst.scope.unit.file, st.Value.Extent()), list[0], FormatQuantity(below, unit), FormatQuantity(above, unit))
+	if preference := b.prefer[p.Kind]; preference == nil {
+		f.as(Hint)
+	} else if f.f != nil {
+		f.relate(b.instances[0].scope.unit.file, preference.at.Span, "the preferred series")
+	}
+	neighbours := []number.Exact{below, above}
+	if p.Value.Sub(below).Rat().Cmp(above.Sub(p.Value).Rat()) > 0 {
+		neighbours[0], neighbours[1] = above, below
+	}
+	for _, n := range neighbours {
+		text := FormatQuantity(n, unit)
+		f.repair(inst.scope.unit.file, st.Value.Extent(), text, "use "+text)
+	}
+}
+
+// literalValue says that a value is a number as bought, not a formula.
+func literalValue(v Value) bool {
+	switch v.(type) {
+	case *NumberExpr, *CodeValue:
+		return true
+	}
+	return false
+}
+
+// windingResistance says that a resistor touches an inductor in a chain: it is
+// then the resistance of the winding and comes in no series.
+func (b *builder) windingResistance(inst *instance, sym *Symbol) bool {
+	p := &b.d.Parts[inst.slots[sym.index]]
+	if p.Kind != Resistor || p.From < 0 || p.To < 0 {
+		return false
+	}
+	for _, n := range [...]int{p.From, p.To} {
+		if b.d.Nodes[n].Joint && b.jointsWithInductor()[n] {
+			return true
+		}
+	}
+	return false
+}
+
+// jointsWithInductor marks the joints that an inductor touches.
+func (b *builder) jointsWithInductor() map[int]bool {
+	if b.coilJoints != nil {
+		return b.coilJoints
+	}
+	b.coilJoints = map[int]bool{}
+	for i := range b.d.Parts {
+		if p := &b.d.Parts[i]; p.Kind == Inductor {
+			b.coilJoints[p.From], b.coilJoints[p.To] = true, true
+		}
+	}
+	return b.coilJoints
+}
