@@ -270,6 +270,8 @@ func (st *stage) prepare(ctx context.Context, leaves []form, prec uint) error {
 const (
 	stageBits  = 120
 	stageLimit = 4096
+	// leastScale is the scale of what is zero.
+	leastScale = 1e-290
 )
 
 // largest is about the largest size of the leaves, seen at a few instants: the
@@ -299,7 +301,7 @@ func (st *stage) largest() (size float64, bits int64) {
 		}
 		size = math.Max(size, value)
 	}
-	return size, bits
+	return math.Max(size, leastScale), bits
 }
 
 // looks are instants from the fastest to the slowest time of a sum.

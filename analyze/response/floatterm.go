@@ -116,15 +116,29 @@ func (f *floatTerm) exponential(t, low float64) (re, im float64) {
 	x := f.omega * t
 	rest := math.FMA(f.omega, t, -x) + f.omegaLow*t + f.omega*low
 	sin, cos := math.Sincos(x)
-	sin, cos = sin+rest*cos, cos-rest*sin
+	if math.Abs(rest) < 1e-8 {
+		sin, cos = sin+rest*cos, cos-rest*sin
+	} else {
+		s, c := math.Sincos(rest)
+		sin, cos = sin*c+s*cos, cos*c-s*sin
+	}
 	return re * cos, re * sin
 }
 
-// exponentialUnits bounds the relative error of exponential in units of 2^-53:
-// three for the real exponential with its correction, three for sine and cosine
-// (relative to 1) and one for each product; twice that for good measure is the
-// smallest round figure, and a test against balls sees at most four.
-const exponentialUnits = 16
+// exponentialUnits bounds the relative error of exponential in units of 2^-53.
+// The library's exponential, sine and cosine are right to one unit in the last
+// place, two units of the value; each correction adds one rounding, the products
+// one more: 3 + 3 + 1, and one for terms of second order. A test compares with
+// balls.
+const exponentialUnits = 8
+
+// phaseUnits is what a long time adds to exponentialUnits: the low parts of the
+// products are themselves off by two units each, which matters from about 10^15
+// radians on.
+func (f *floatTerm) phaseUnits(tau float64) float64 {
+	x := f.rate * tau * unit
+	return 8 * x
+}
 
 // coefficient is Σ c[m]·τ^m.
 func (f *floatTerm) coefficient(tau float64) (re, im float64) {

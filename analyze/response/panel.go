@@ -125,7 +125,7 @@ func (f *floatTerm) expand(m, h float64, out *model) {
 	out.addRest(size, z, n)
 	// The rounding errors of coefficient k count k-fold in the derivative: of
 	// Σ z^k/k! that is z times the sum, of x^i times it i times more.
-	rounding := (panelUnits + 8*float64(n)) * unit * math.Exp(z) * size
+	rounding := (panelUnits + 8*float64(n) + f.phaseUnits(m)) * unit * math.Exp(z) * size
 	weight := z + float64(n)
 	out.err += rounding + leastBound
 	out.slope += rounding*weight + leastBound
