@@ -1,6 +1,7 @@
 package files
 
 import (
+	"errors"
 	"io/fs"
 	"os"
 	"path/filepath"
@@ -9,7 +10,7 @@ import (
 	"testing"
 	"time"
 
-	"errors"
+	"portlight/dialect"
 )
 
 func write(t *testing.T, name, text string) string {
@@ -35,7 +36,7 @@ func TestReadsDiskAndPrefersBuffers(t *testing.T) {
 	}
 	view := s.View()
 	buffer := s.Open(name, "ground deck\n")
-	if got, _ := s.Read(name); got != buffer {
+	if got, _ := s.Read(name); got != buffer.File() {
 		t.Error("the open buffer does not win over the disk")
 	}
 	if got, _ := view.Read(name); got != first {
@@ -83,34 +84,41 @@ func TestReadErrorsAreSentences(t *testing.T) {
 	}
 }
 
-func TestResolve(t *testing.T) {
-	for _, c := range []struct{ from, path, want string }{
-		{"/w/main.plight", "real.plight", "/w/real.plight"},
-		{"/w/main.plight", "../lib/real.plight", "/lib/real.plight"},
-		{"/w/main.plight", `lib\real.plight`, "/w/lib/real.plight"},
-		{"/w/main.plight", "/lib/real.plight", "/lib/real.plight"},
-		{"main.plight", "real.plight", "real.plight"},
-		{"untitled:Untitled-1", "real.plight", "real.plight"},
-	} {
-		if got := Resolve(filepath.FromSlash(c.from), c.path); got != filepath.FromSlash(c.want) {
-			t.Errorf("Resolve(%q, %q) = %q, want %q", c.from, c.path, got, c.want)
+func TestReaderTakesEitherSlash(t *testing.T) {
+	dir := t.TempDir()
+	name := write(t, filepath.Join(dir, "lib", "real.plight"), "let x = 1\n")
+	read := NewStore().View().Reader()
+	for _, path := range []string{"lib/real.plight", `lib\real.plight`} {
+		if f, err := read(dir + "/" + path); err != nil || f.Name != name {
+			t.Errorf("%s: %v", path, err)
 		}
 	}
+	if _, err := read("real.plight"); err == nil || !strings.Contains(err.Error(), "not saved in a folder") {
+		t.Errorf("a relative path: %v", err)
+	}
+}
+
+func mustRead(t *testing.T, view *View, name string) *dialect.File {
+	t.Helper()
+	f, err := view.Read(name)
+	if err != nil {
+		t.Fatal(err)
+	}
+	return f
 }
 
 func TestViewRemembersWhatWasAsked(t *testing.T) {
 	dir := t.TempDir()
-	main := write(t, filepath.Join(dir, "main.plight"), "")
+	main := write(t, filepath.Join(dir, "main.plight"), "use \"real.plight\"\n")
 	write(t, filepath.Join(dir, "real.plight"), "")
 	view := NewStore().View()
-	read := view.Reader(main)
-	if _, err := read("real.plight"); err != nil {
-		t.Error(err)
+	if c := dialect.Check(mustRead(t, view, main), view.Reader()); len(c.Files) != 2 {
+		t.Errorf("%d files were read", len(c.Files))
 	}
-	if _, err := read("missing.plight"); err == nil {
+	if _, err := view.Reader()(filepath.Join(dir, "missing.plight")); err == nil {
 		t.Error("no error for a missing file")
 	}
-	want := []string{filepath.Join(dir, "missing.plight"), filepath.Join(dir, "real.plight")}
+	want := []string{main, filepath.Join(dir, "missing.plight"), filepath.Join(dir, "real.plight")}
 	if got := view.Names(); !slices.Equal(got, want) {
 		t.Errorf("asked %v, want %v", got, want)
 	}

@@ -15,7 +15,6 @@ import (
 	"maps"
 	"os"
 	"path/filepath"
-	"strings"
 	"sync"
 	"time"
 
@@ -36,7 +35,7 @@ const racy = 2 * time.Second
 // Store keeps parsed files. It is safe for concurrent use.
 type Store struct {
 	mu      sync.Mutex
-	buffers map[string]*dialect.File // copied on write, so that views share it
+	buffers map[string]*Buffer // copied on write, so that views share it
 	disk    map[string]*onDisk
 }
 
@@ -49,35 +48,24 @@ type onDisk struct {
 
 // NewStore returns an empty store.
 func NewStore() *Store {
-	return &Store{buffers: map[string]*dialect.File{}, disk: map[string]*onDisk{}}
+	return &Store{buffers: map[string]*Buffer{}, disk: map[string]*onDisk{}}
 }
 
 // Open sets the text of an open buffer, which from then on wins over the
-// file on disk, and returns it parsed. A text that did not change is not
-// parsed again.
-func (s *Store) Open(name, text string) *dialect.File {
-	s.mu.Lock()
-	old := s.buffers[name]
-	if old == nil {
-		if d := s.disk[name]; d != nil {
-			old = d.file
-		}
-	}
-	s.mu.Unlock()
-	if old == nil || old.Text != text {
-		old = dialect.Parse(name, text)
-	}
-	s.OpenParsed(old)
-	return old
-}
-
-// OpenParsed is Open for a text that is parsed already, under its own name.
-func (s *Store) OpenParsed(file *dialect.File) {
+// file on disk.
+func (s *Store) Open(name, text string) *Buffer {
 	s.mu.Lock()
 	defer s.mu.Unlock()
+	b := &Buffer{name: name, text: text}
+	if old := s.buffers[name]; old != nil {
+		b.base = old.latest()
+	} else if d := s.disk[name]; d != nil {
+		b.base = d.file
+	}
 	buffers := maps.Clone(s.buffers)
-	buffers[file.Name] = file
+	buffers[name] = b
 	s.buffers = buffers
+	return b
 }
 
 // Close drops an open buffer; the file on disk counts again.
@@ -182,20 +170,3 @@ var (
 
 // IsNetwork says whether a name is that of a network file.
 func IsNetwork(name string) bool { return filepath.Ext(name) == Extension }
-
-// Resolve gives the name of the file that a use statement in the file called
-// from means: found beside it, unless the path is absolute. Both kinds of
-// slash separate folders, so that a file works on every system.
-func Resolve(from, path string) string {
-	path = filepath.FromSlash(strings.ReplaceAll(path, `\`, "/"))
-	if filepath.IsAbs(path) {
-		return filepath.Clean(path)
-	}
-	if !filepath.IsAbs(from) { // an untitled buffer has no folder
-		if dir := filepath.Dir(from); !strings.Contains(from, ":") {
-			return filepath.Join(dir, path)
-		}
-		return path
-	}
-	return filepath.Join(filepath.Dir(from), path)
-}

@@ -4,6 +4,7 @@ import (
 	"fmt"
 	"path/filepath"
 	"slices"
+	"strings"
 	"sync"
 
 	"portlight/dialect"
@@ -14,7 +15,7 @@ import (
 // So one check never sees two states of a file. Safe for concurrent use.
 type View struct {
 	store   *Store
-	buffers map[string]*dialect.File
+	buffers map[string]*Buffer
 
 	mu   sync.Mutex
 	read map[string]reading
@@ -35,7 +36,7 @@ func (v *View) Read(name string) (*dialect.File, error) {
 	var r reading
 	switch {
 	case v.buffers[name] != nil:
-		r.file = v.buffers[name]
+		r.file = v.buffers[name].File()
 	case !filepath.IsAbs(name):
 		r.err = fmt.Errorf("%s cannot be found from a text that is not saved in a folder", name)
 	default:
@@ -48,10 +49,19 @@ func (v *View) Read(name string) (*dialect.File, error) {
 	return r.file, r.err
 }
 
-// Reader hands files to dialect.Check: it reads a path as a use statement in
-// the file called from writes it, and absolute paths as they are.
-func (v *View) Reader(from string) func(path string) (*dialect.File, error) {
-	return func(path string) (*dialect.File, error) { return v.Read(Resolve(from, path)) }
+// Reader hands files to dialect.Check, which joins the path of a use
+// statement to the folder of the file that it stands in. Either slash
+// separates folders, on every system.
+func (v *View) Reader() dialect.Reader {
+	return func(path string) (*dialect.File, error) {
+		file, err := v.Read(path)
+		if err != nil && strings.Contains(path, `\`) {
+			if file, err := v.Read(strings.ReplaceAll(path, `\`, "/")); err == nil {
+				return file, nil
+			}
+		}
+		return file, err
+	}
 }
 
 // Names lists the files that were asked for so far, found or not, in order.

@@ -1,0 +1,91 @@
+package lsp
+
+import (
+	"context"
+
+	"go.lsp.dev/protocol"
+
+	"portlight/analyze"
+	"portlight/dialect"
+)
+
+// maxHover is how many characters a hover may have: the best-known client
+// cuts at 100 000, in the middle of a picture.
+const maxHover = 90_000
+
+// hover handles textDocument/hover: kind and name first, then the answer,
+// then the detail.
+func hover(ctx context.Context, r *request, p *protocol.HoverParams) (*protocol.Hover, error) {
+	at, err := r.place(p.TextDocumentPositionParams)
+	if err != nil {
+		return nil, err
+	}
+	ctx, done := at.unit.with(ctx)
+	defer done()
+	card, span, ok, err := at.analysis.Card(ctx, at.file, at.offset)
+	if err != nil {
+		return nil, err
+	}
+	m := &markup{markdown: r.client.markdownHover}
+	if ok {
+		r.card(m, card)
+	}
+	if found, where := at.finding(); found != "" {
+		m.prose(found)
+		if !ok {
+			span, ok = where, true
+		}
+	}
+	if !ok {
+		return nil, nil
+	}
+	return &protocol.Hover{Contents: m.content(), Range: ptr(r.mapper.reach(at.file.Lines, span))}, nil
+}
+
+// card writes a card.
+func (r *request) card(m *markup, card analyze.Card) {
+	m.title(card.Title)
+	lines := append([]string(nil), card.Answer...)
+	if len(card.Answer) > 0 && len(card.Detail) > 0 {
+		lines = append(lines, "")
+	}
+	m.block(append(lines, card.Detail...))
+	m.prose(card.Doc)
+	if card.Picture == nil {
+		return
+	}
+	if r.sendsPictures() && m.markdown {
+		if image := pictureLink(card.Picture); image != "" && len(image)+m.b.Len() < maxHover {
+			m.raw(image)
+			return
+		}
+	}
+	m.block(brailleText(card.Picture))
+}
+
+// sendsPictures says that hovers may hold images.
+func (r *request) sendsPictures() bool {
+	switch r.settings.pictures {
+	case "always":
+		return true
+	case "never":
+		return false
+	}
+	return r.client.pictures
+}
+
+// finding explains the finding at the place, if there is one.
+func (p *place) finding() (string, dialect.Span) {
+	found := p.checked.Findings
+	if all := p.unit.found.Load(); all != nil {
+		found = *all
+	}
+	for _, f := range found {
+		if f.Origin.File == p.file && f.Origin.Span.Start <= p.offset && p.offset <= f.Origin.Span.End {
+			if e, ok := dialect.Explain(f.Code); ok {
+				return string(f.Code) + ": " + e.Meaning, f.Origin.Span
+			}
+		}
+	}
+	return "", dialect.Span{}
+}

@@ -1,0 +1,61 @@
+package lsp
+
+import (
+	"strings"
+	"testing"
+
+	"go.lsp.dev/protocol"
+)
+
+func TestSettings(t *testing.T) {
+	off := defaultSettings()
+	off.answers = false
+	never := defaultSettings()
+	never.pictures = "never"
+	for _, c := range []struct {
+		raw     string
+		want    settings
+		problem string
+	}{
+		{"", defaultSettings(), ""}, {"null", defaultSettings(), ""}, {"{}", defaultSettings(), ""}, {"[]", defaultSettings(), ""},
+		{`{"inlay":{"answers":false}}`, off, ""},
+		{`{"inlay.answers":false}`, off, ""},
+		{`{"portlight":{"inlay":{"answers":false}},"other":{"x":1}}`, off, ""},
+		{`{"hover":{"pictures":"never"}}`, never, ""},
+		{`{"inlay":{"answerz":false}}`, defaultSettings(), "portlight.inlay.answerz is not a setting. Did you mean portlight.inlay.answers?"},
+		{`{"qqqqqqqqqq":1}`, defaultSettings(), "portlight.qqqqqqqqqq is not a setting."},
+		{`{"inlay":{"answers":"no"}}`, defaultSettings(), `portlight.inlay.answers must be true or false, not "no".`},
+		{`{"hover":{"pictures":"big"}}`, defaultSettings(), `portlight.hover.pictures must be one of auto, always, never, not "big".`},
+		{`{"command":"/opt/portlight"}`, defaultSettings(), ""},
+		{`3`, defaultSettings(), "must be an object"},
+	} {
+		got, problems := readSettings([]byte(c.raw))
+		if got != c.want {
+			t.Errorf("%s: read %+v, want %+v", c.raw, got, c.want)
+		}
+		if all := strings.Join(problems, " "); c.problem == "" && all != "" || !strings.Contains(all, c.problem) {
+			t.Errorf("%s: said %q, want %q", c.raw, all, c.problem)
+		}
+	}
+}
+
+// TestWrongSettingsReachTheUser sends settings in all three ways.
+func TestWrongSettingsReachTheUser(t *testing.T) {
+	e := rawEditor(t)
+	e.call(protocol.MethodInitialize, map[string]any{
+		"processId": nil, "rootUri": nil, "capabilities": struct{}{}, "initializationOptions": map[string]any{"lenz": true},
+	}, &e.result)
+	e.wait("the message", func() bool { return len(e.messages) == 1 && strings.Contains(e.messages[0], "portlight.lenz") })
+	e.notify(protocol.MethodWorkspaceDidChangeConfiguration, map[string]any{"settings": map[string]any{"portlight": map[string]any{"x": 1}}})
+	e.wait("the message", func() bool { return len(e.messages) == 2 && strings.Contains(e.messages[1], "portlight.x ") })
+	e.quit()
+
+	e = rawEditor(t)
+	e.answer[protocol.MethodWorkspaceConfiguration] = func(params rawMessage) any { return rawMessage(`[{"y":1}]`) }
+	e.call(protocol.MethodInitialize, map[string]any{
+		"processId": nil, "rootUri": nil, "capabilities": map[string]any{"workspace": map[string]any{"configuration": true}},
+	}, &e.result)
+	e.notify(protocol.MethodInitialized, struct{}{})
+	e.wait("the message", func() bool { return len(e.messages) == 1 && strings.Contains(e.messages[0], "portlight.y ") })
+	e.quit()
+}

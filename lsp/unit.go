@@ -1,0 +1,127 @@
+package lsp
+
+import (
+	"context"
+	"path/filepath"
+	"slices"
+	"strings"
+	"sync"
+	"sync/atomic"
+
+	"go.lsp.dev/uri"
+
+	"portlight/analyze"
+	"portlight/dialect"
+	"portlight/lsp/files"
+)
+
+// unit is one version of one document as a main file, with all that it uses:
+// checked and analysed when first asked for, each once. It never changes;
+// when the document or a file it uses does, a new unit takes its place and
+// this one's work is called off.
+type unit struct {
+	session *session
+	name    string
+	uri     uri.URI
+	version int32
+	buffer  *files.Buffer // nil for a file that is not open
+	view    *files.View
+
+	ctx    context.Context // ends when the unit is superseded
+	cancel context.CancelCauseFunc
+
+	once     sync.Once
+	settled  atomic.Bool // checking is over, so view.Names is complete
+	checked  *dialect.Checked
+	analysis *analyze.Analysis
+	problem  error                             // the file cannot be read
+	found    atomic.Pointer[[]dialect.Finding] // all findings, once they are known
+
+}
+
+// newUnit makes the unit of a document that is open, or of a file on disk
+// when buffer is nil.
+func newUnit(s *session, name string, buffer *files.Buffer) *unit {
+	u := &unit{session: s, name: name, uri: s.mapper.uri(name), buffer: buffer, view: s.store.View()}
+	u.ctx, u.cancel = context.WithCancelCause(s.life)
+	return u
+}
+
+// again is the same document, to be checked anew.
+func (u *unit) again() *unit {
+	next := newUnit(u.session, u.name, u.buffer)
+	next.uri, next.version = u.uri, u.version
+	return next
+}
+
+// end calls off all work on the unit.
+func (u *unit) end() { u.cancel(errModified) }
+
+// with binds a request's context to the unit too: it ends as well when the
+// unit is superseded.
+func (u *unit) with(ctx context.Context) (context.Context, func()) {
+	ctx, cancel := context.WithCancelCause(ctx)
+	stop := context.AfterFunc(u.ctx, func() { cancel(context.Cause(u.ctx)) })
+	return ctx, func() { stop(); cancel(nil) }
+}
+
+// file is the document parsed.
+func (u *unit) file() (*dialect.File, error) {
+	if u.buffer != nil {
+		return u.buffer.File(), nil
+	}
+	return u.view.Read(u.name)
+}
+
+// check checks the document. The result is nil only when it cannot be read.
+func (u *unit) check() (*dialect.Checked, *analyze.Analysis) {
+	u.once.Do(func() {
+		defer u.settled.Store(true)
+		file, err := u.file()
+		if err != nil {
+			u.problem = err
+			return
+		}
+		u.checked = dialect.Check(file, u.view.Reader())
+		u.analysis = analyze.New(u.checked)
+	})
+	return u.checked, u.analysis
+}
+
+// findings gives all findings of the unit, in whichever file they lie.
+func (u *unit) findings(ctx context.Context) ([]dialect.Finding, error) {
+	if found := u.found.Load(); found != nil {
+		return *found, nil
+	}
+	_, analysis := u.check()
+	var list []dialect.Finding
+	if analysis != nil {
+		var err error
+		if list, err = analysis.Findings(ctx); err != nil {
+			return nil, err
+		}
+	}
+	u.found.Store(&list)
+	return list, nil
+}
+
+// dependsOn says that the unit may be different because files changed. As
+// long as it is not known what it uses, it may be.
+func (u *unit) dependsOn(changed []string) bool {
+	if len(changed) == 0 {
+		return false
+	}
+	if !u.settled.Load() {
+		return true
+	}
+	if slices.Contains(changed, u.name) {
+		return true
+	}
+	return slices.ContainsFunc(u.view.Names(), func(name string) bool { return slices.Contains(changed, name) })
+}
+
+// uses says that the unit read a file, or is that file.
+func (u *unit) uses(name string) bool { return u.dependsOn([]string{name}) }
+
+// isPath says that a document's name is a path in the file system.
+func isPath(name string) bool { return filepath.IsAbs(name) && !strings.HasPrefix(name, "untitled:") }
