@@ -190,9 +190,11 @@ type Verdict struct {
 	HasWhere bool
 	InTime   bool
 	Where    number.Ball
-	// InTolerance is the decision with every value anywhere in its tolerance:
-	// Broken names a corner that breaks the limit in Corner.
-	InTolerance Decision
-	Corner      string
+	// InTolerance tells about values inside their tolerances: Broken names in
+	// Corner which ends of them break the limit, with the margin there; Holds
+	// means that no part has a tolerance; Undecided that no corner tried breaks it.
+	InTolerance               Decision
+	Corner                    string
+	CornerMargin, CornerWorst number.Ball
 	Why         string // for undecided and refused limits
 }

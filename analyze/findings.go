@@ -1,0 +1,307 @@
+package analyze
+
+import (
+	"context"
+	"fmt"
+	"sort"
+
+	"portlight/analyze/frequency"
+	"portlight/analyze/network"
+	"portlight/dialect"
+)
+
+// Findings gives all findings, those about limits, stability, ratings and
+// cautions too, in the order of the text, with accepted ones left out.
+func (a *Analysis) Findings(ctx context.Context) ([]dialect.Finding, error) {
+	return recall(ctx, &a.memo, "findings", func(ctx context.Context) ([]dialect.Finding, error) {
+		found, err := a.Structure(ctx)
+		if err != nil {
+			return nil, err
+		}
+		found = append([]dialect.Finding(nil), found...)
+		if !a.description.Faults && len(a.description.Parts) > 0 && !hasCode(found, "singular", "voltage-loop", "current-cutset", "no-feedback") {
+			for _, look := range a.inspectors() {
+				more, err := look(ctx)
+				if passOn(ctx, err) {
+					return nil, err
+				}
+				if err == nil {
+					found = append(found, more...)
+				}
+			}
+		}
+		return a.accepted(found), nil
+	})
+}
+
+// inspectors are the looks at a sound network, each giving findings. One
+// that cannot be taken (no steady state, say) gives none: what stops it is
+// reported by the first.
+func (a *Analysis) inspectors() []func(context.Context) ([]dialect.Finding, error) {
+	return []func(context.Context) ([]dialect.Finding, error){
+		a.soundness, a.stability, a.conflicts, a.limitFindings, a.hiddenModes, a.ratings, a.cautions,
+	}
+}
+
+// accepted drops what the file accepts and sorts by place, the main file first.
+func (a *Analysis) accepted(found []dialect.Finding) []dialect.Finding {
+	found = a.checked.Keep(found)
+	rank := map[*dialect.File]int{}
+	for i, f := range a.checked.Files {
+		rank[f] = i
+	}
+	sort.SliceStable(found, func(i, j int) bool {
+		x, y := found[i].Origin, found[j].Origin
+		if rank[x.File] != rank[y.File] {
+			return rank[x.File] < rank[y.File]
+		}
+		return x.Span.Start < y.Span.Start
+	})
+	return found
+}
+
+// hasCode tells whether an error with one of the codes is among the findings.
+func hasCode(found []dialect.Finding, codes ...dialect.Code) bool {
+	for _, f := range found {
+		for _, c := range codes {
+			if f.Code == c && f.Severity == dialect.Error {
+				return true
+			}
+		}
+	}
+	return false
+}
+
+// soundness reports what only the equations show: no unique solution, or no
+// steady state to start from.
+func (a *Analysis) soundness(ctx context.Context) ([]dialect.Finding, error) {
+	var found []dialect.Finding
+	for i, iv := range a.intervals(configuration{}) {
+		sys, problems := network.Assemble(iv.network)
+		if sys != nil {
+			det, err := sys.Determinant(ctx)
+			if err != nil {
+				return nil, err
+			}
+			if !det.IsZero() {
+				continue
+			}
+			if problems, err = sys.Diagnose(ctx); err != nil {
+				return nil, err
+			}
+		}
+		for _, p := range problems {
+			if f, ok := a.findingOf(p, a.whenText(i, iv)); ok {
+				found = append(found, f)
+			}
+		}
+		if len(found) > 0 {
+			return found, nil
+		}
+	}
+	more, err := a.startFindings(ctx)
+	return append(found, more...), err
+}
+
+// startFindings reports why there is no one steady state before t = 0.
+func (a *Analysis) startFindings(ctx context.Context) ([]dialect.Finding, error) {
+	if !a.description.Steady {
+		return nil, nil
+	}
+	_, err := a.initialState(ctx, configuration{})
+	if r, ok := asRefusal(err); ok {
+		f := dialect.Finding{Code: r.code, Severity: dialect.Error, Message: r.why, Origin: a.startPlace(r)}
+		return []dialect.Finding{f}, nil
+	}
+	return nil, err
+}
+
+// startPlace is the first part that a refusal names, or the start statement's file.
+func (a *Analysis) startPlace(r *refusal) dialect.Origin {
+	if r.problem != nil {
+		f := dialect.Finding{}
+		a.place(&f, *r.problem)
+		return f.Origin
+	}
+	return dialect.Origin{File: a.checked.Main}
+}
+
+// stability warns of natural frequencies in the right half-plane.
+func (a *Analysis) stability(ctx context.Context) ([]dialect.Finding, error) {
+	det, _, err := a.determinant(ctx, configuration{})
+	if err != nil || frequency.Decide(det) != frequency.Unstable {
+		return nil, err
+	}
+	roots, err := rootsOf(ctx, det)
+	if err != nil {
+		return nil, err
+	}
+	text := "a natural frequency of the network lies in the right half-plane, or more than one at a place on the imaginary axis: its response grows without end"
+	for _, r := range roots {
+		if sign, sure := r.Re.Sign(); sure && sign > 0 {
+			text = fmt.Sprintf("the network is unstable: a natural frequency at s = %s has a positive real part, so its response grows without end",
+				rootFigure(r))
+			break
+		}
+	}
+	return []dialect.Finding{{
+		Code: "unstable", Severity: dialect.Warning, Message: text, Origin: a.activePlace(),
+	}}, nil
+}
+
+// activePlace is the first part that can put energy in without a source.
+func (a *Analysis) activePlace() dialect.Origin {
+	for i := range a.description.Parts {
+		p := &a.description.Parts[i]
+		if p.Kind == dialect.OpAmp || p.Dependent != nil || p.Rational != nil {
+			return partOrigin(p)
+		}
+	}
+	return dialect.Origin{File: a.checked.Main}
+}
+
+// conflicts warns of impulses that follow when capacitor voltages around a
+// loop, or inductor currents at a cutset, do not agree at a moment.
+func (a *Analysis) conflicts(ctx context.Context) ([]dialect.Finding, error) {
+	var found []dialect.Finding
+	for i, iv := range a.intervals(configuration{}) {
+		for _, p := range iv.network.Inspect() {
+			if p.Kind != network.CapacitorLoop && p.Kind != network.InductorCutset {
+				continue
+			}
+			f, ok, err := a.conflict(ctx, p, iv, i)
+			if err != nil {
+				return found, err
+			}
+			if ok {
+				found = append(found, f)
+			}
+		}
+	}
+	return found, nil
+}
+
+// conflict looks for an impulse in the first memory of a loop or cutset.
+func (a *Analysis) conflict(ctx context.Context, p network.Problem, iv interval, k int) (dialect.Finding, bool, error) {
+	for _, e := range p.Elements {
+		kind := iv.network.Elements[e].Kind
+		letter := byte('i')
+		if kind == network.Inductor {
+			letter = 'v'
+		} else if kind != network.Capacitor {
+			continue
+		}
+		s, err := a.probeSignal(ctx, dialect.Probe{Letter: letter, Of: dialect.OfPart, Part: e}, configuration{})
+		if err != nil {
+			return dialect.Finding{}, false, err
+		}
+		weights, err := impulsesAt(ctx, s, iv.start.Rat())
+		if err != nil || len(weights) == 0 {
+			return dialect.Finding{}, false, err
+		}
+		f := dialect.Finding{Code: "initial-conflict", Severity: dialect.Warning}
+		what, unit := "voltages around the loop", "V·s"
+		if kind == network.Capacitor {
+			unit = "A·s"
+		} else {
+			what = "currents at the cutset"
+		}
+		f.Message = fmt.Sprintf("the %s of %s do not agree at t = %s%s: an impulse of %s through %s makes them",
+			what, list(a.partNames(p.Elements)), figure(ballOf(iv.start), "s"), comma(a.whenText(k, iv)),
+			figure(weights[0], unit), a.description.Parts[e].Name)
+		if kind == network.Inductor {
+			f.Message = fmt.Sprintf("the %s of %s do not agree at t = %s%s: an impulse of %s across %s makes them",
+				what, list(a.partNames(p.Elements)), figure(ballOf(iv.start), "s"), comma(a.whenText(k, iv)),
+				figure(weights[0], unit), a.description.Parts[e].Name)
+		}
+		a.place(&f, p)
+		return f, true, nil
+	}
+	return dialect.Finding{}, false, nil
+}
+
+func comma(s string) string {
+	if s == "" {
+		return ""
+	}
+	return ", " + s
+}
+
+// conflictFinding tells an initial conflict found without solving.
+func (a *Analysis) conflictFinding(p network.Problem) dialect.Finding {
+	f := dialect.Finding{Code: "initial-conflict", Severity: dialect.Warning}
+	f.Message = fmt.Sprintf("the initial values of %s do not agree: an impulse makes them at t = 0", list(a.partNames(p.Elements)))
+	a.place(&f, p)
+	return f
+}
+
+// limitFindings reports broken limits, and those broken within tolerances.
+func (a *Analysis) limitFindings(ctx context.Context) ([]dialect.Finding, error) {
+	verdicts, err := a.Verdicts(ctx)
+	if err != nil {
+		return nil, err
+	}
+	var found []dialect.Finding
+	for i := range verdicts {
+		v := &verdicts[i]
+		switch {
+		case v.Decision == Broken:
+			found = append(found, dialect.Finding{
+				Code: "limit-broken", Severity: dialect.Error, Origin: v.Limit.Origin,
+				Message: VerdictWords(*v),
+			})
+		case v.InTolerance == Broken:
+			found = append(found, dialect.Finding{
+				Code: "limit-broken-in-tolerance", Severity: dialect.Warning, Origin: v.Limit.Origin,
+				Message: fmt.Sprintf("%s; with %s it is broken", VerdictWords(*v), v.Corner),
+			})
+		case v.Decision == Undecided:
+			found = append(found, dialect.Finding{
+				Code: "limit-undecided", Severity: dialect.Information, Origin: v.Limit.Origin,
+				Message: VerdictWords(*v),
+			})
+		}
+	}
+	return found, nil
+}
+
+// hiddenModes reports natural frequencies that a function of the file does not show.
+func (a *Analysis) hiddenModes(ctx context.Context) ([]dialect.Finding, error) {
+	var found []dialect.Finding
+	for i := range a.description.Functions {
+		fn := &a.description.Functions[i]
+		f, err := a.namedFunction(ctx, i, configuration{})
+		if passOn(ctx, err) {
+			return nil, err
+		}
+		if err != nil {
+			if r, ok := asRefusal(err); ok {
+				found = append(found, dialect.Finding{Code: r.code, Severity: dialect.Error, Message: fn.Name + ": " + r.why,
+					Origin: dialect.Origin{File: fn.Origin.File, Span: fn.NameSpan, Use: fn.Origin.Use}})
+			}
+			continue
+		}
+		if f.det == nil {
+			continue
+		}
+		hidden, err := rootsOf(ctx, hiddenFactor(*f.det, f.constant.Den))
+		if err != nil {
+			return nil, err
+		}
+		if len(hidden) > 0 {
+			found = append(found, dialect.Finding{
+				Code: "hidden-mode", Severity: dialect.Information,
+				Origin:  dialect.Origin{File: fn.Origin.File, Span: fn.NameSpan, Use: fn.Origin.Use},
+				Message: fmt.Sprintf("%s does not show the natural frequenc%s %s of the network", fn.Name, plural(len(hidden)), list(rootFigures(hidden))),
+			})
+		}
+	}
+	return found, nil
+}
+
+func plural(n int) string {
+	if n == 1 {
+		return "y"
+	}
+	return "ies"
+}
