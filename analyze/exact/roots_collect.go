@@ -39,7 +39,7 @@ func (u *rootUnit) essential(index int, prec uint) enclosed {
 	re := number.BallFromFloat(dyadic(a.x, unit), prec+8).WithRadius(radius)
 	if a.link == i {
 		e := enclosed{number.RealBall(re), true, nil}
-		if r := u.solver.rationalIn(re); r != nil {
+		if r := u.solver.rationalIn(i, re); r != nil {
 			e.rational = r
 			e.ball = number.RealBall(number.BallFromRat(r, prec+8))
 		}
@@ -65,45 +65,71 @@ func (s *rootSolver) radius(i int) *big.Float {
 
 func cmplxAbs(x complex128) float64 { return math.Hypot(real(x), imag(x)) }
 
-// rationalIn returns a root of p that is a rational number with short numerator
-// and denominator, if the ball of one root holds such a number: the simplest
-// fraction in it is tried.
-func (s *rootSolver) rationalIn(b number.Ball) *big.Rat {
+// rationalIn returns root i if it is found to be a rational number with short
+// numerator and denominator: the simplest fraction in its ball is tried, if it
+// is shorter than one would meet there by chance.
+func (s *rootSolver) rationalIn(i int, b number.Ball) *big.Rat {
+	if r := s.rational[i]; r != nil {
+		return r
+	}
+	most := b.RelativeBits() - 12
+	if most <= s.searched[i] {
+		return nil
+	}
+	s.searched[i] = most
 	lower, _ := b.Lower().Rat(nil)
 	upper, _ := b.Upper().Rat(nil)
 	if lower == nil || upper == nil || lower.Sign()*upper.Sign() <= 0 {
 		return nil
 	}
-	r := simplestBetween(lower, upper)
-	if int64(r.Num().BitLen()+r.Denom().BitLen()) > b.RelativeBits()-12 {
+	negative := lower.Sign() < 0
+	if negative {
+		lower, upper = upper.Neg(upper), lower.Neg(lower)
+	}
+	r := simplestBetween(lower, upper, int(most))
+	if r == nil {
 		return nil
+	}
+	if negative {
+		r.Neg(r)
 	}
 	if s.poly.EvalSign(r) != 0 {
 		return nil
 	}
+	s.rational[i] = r
 	return r
 }
 
-// simplestBetween returns the fraction of the least denominator from a to b, two
-// numbers of one sign, by their common continued fraction.
-func simplestBetween(a, b *big.Rat) *big.Rat {
-	if a.Sign() < 0 {
-		r := simplestBetween(new(big.Rat).Neg(b), new(big.Rat).Neg(a))
-		return r.Neg(r)
+// simplestBetween returns the fraction of the least denominator from lower to
+// upper, 0 < lower ≤ upper, by the part that their continued fractions have in
+// common, or nil if numerator and denominator have more than most bits.
+func simplestBetween(lower, upper *big.Rat, most int) *big.Rat {
+	a, b := new(big.Int).Set(lower.Num()), new(big.Int).Set(lower.Denom())
+	c, d := new(big.Int).Set(upper.Num()), new(big.Int).Set(upper.Denom())
+	// Convergents p/q of the common part.
+	p, p1 := big.NewInt(1), new(big.Int)
+	q, q1 := new(big.Int), big.NewInt(1)
+	whole, rest, other, restOther := new(big.Int), new(big.Int), new(big.Int), new(big.Int)
+	for p.BitLen()+q.BitLen() <= most {
+		whole.QuoRem(a, b, rest)
+		other.QuoRem(c, d, restOther)
+		last := rest.Sign() == 0 || whole.Cmp(other) != 0
+		if rest.Sign() != 0 && last {
+			whole.Add(whole, bigOne) // the least integer from a/b to c/d
+		}
+		p, p1 = p1.Add(p1, new(big.Int).Mul(whole, p)), p
+		q, q1 = q1.Add(q1, new(big.Int).Mul(whole, q)), q
+		if last {
+			if p.BitLen()+q.BitLen() > most {
+				return nil
+			}
+			return new(big.Rat).SetFrac(p, q)
+		}
+		// Turn the rests over, which swaps the ends. The upper rest is not 0, as
+		// the lower one is greater than 0 and below it.
+		a, b, c, d, rest, restOther = d, restOther, b, rest, a, c
 	}
-	floor := new(big.Int).Quo(a.Num(), a.Denom())
-	whole := new(big.Rat).SetInt(floor)
-	if whole.Cmp(a) == 0 {
-		return whole
-	}
-	next := new(big.Rat).SetInt(new(big.Int).Add(floor, bigOne))
-	if next.Cmp(b) <= 0 {
-		return next
-	}
-	// a and b have the whole part in common: turn the rests over.
-	ra, rb := new(big.Rat).Sub(a, whole), new(big.Rat).Sub(b, whole)
-	r := simplestBetween(rb.Inv(rb), ra.Inv(ra))
-	return r.Add(whole, r.Inv(r))
+	return nil
 }
 
 // branches returns the roots of the polynomial that an essential root of a unit

@@ -54,9 +54,9 @@ func (e *evaluator) balanced(prec uint) (c []*big.Float, scale int) {
 		}
 		c[i] = f
 	}
-	leading := new(big.Float).Copy(c[e.n])
+	inverse := new(big.Float).SetPrec(prec).Quo(big.NewFloat(1), c[e.n])
 	for i := range c {
-		c[i].Quo(c[i], leading)
+		c[i].Mul(c[i], inverse)
 	}
 	return c, scale
 }
@@ -98,13 +98,13 @@ func jacobi(c []*big.Float, scale int, prec uint) *recurrence {
 	n := len(c) - 1
 	r := &recurrence{alpha: make([]float64, n+1), beta: make([]float64, n+1), scale: scale}
 	above, p := c, make([]*big.Float, n)
-	order := new(big.Float).SetInt64(int64(n))
+	order := new(big.Float).SetPrec(prec).Quo(big.NewFloat(1), big.NewFloat(float64(n)))
 	for i := range p {
 		p[i] = new(big.Float).SetPrec(prec).SetInt64(int64(i + 1))
 		p[i].Mul(p[i], c[i+1])
-		p[i].Quo(p[i], order)
+		p[i].Mul(p[i], order)
 	}
-	t := new(big.Float).SetPrec(prec)
+	t, one := new(big.Float).SetPrec(prec), big.NewFloat(1)
 	for m := n; ; m-- { // above has degree m, p degree m−1
 		// α = p[m−2] − above[m−1], from the second coefficients
 		alpha := new(big.Float).SetPrec(prec).Neg(above[m-1])
@@ -128,11 +128,11 @@ func jacobi(c []*big.Float, scale int, prec uint) *recurrence {
 		if next[m-2].Sign() >= 0 {
 			return nil
 		}
-		lead := new(big.Float).Copy(next[m-2])
-		beta, _ := lead.Float64()
+		beta, _ := next[m-2].Float64()
 		r.beta[m] = -beta
+		inverse := new(big.Float).SetPrec(prec).Quo(one, next[m-2])
 		for i := range next {
-			next[i].Quo(next[i], lead)
+			next[i].Mul(next[i], inverse)
 		}
 		above, p = p, next
 	}

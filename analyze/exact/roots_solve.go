@@ -31,8 +31,11 @@ type rootSolver struct {
 	value     *evaluator
 	roots     []approximation
 	certified bool
-	essential []int // after certification: the real roots and those of the upper half plane
+	rational  map[int]*big.Rat // rational roots found, by index; see rationalIn
+	searched  map[int]int64    // bits of the ball in which none was found
+	essential []int            // after certification: the real roots and those of the upper half plane
 	space     scratch
+	usual     int // W of the last evaluation that met its goal
 	views     []start
 }
 
@@ -53,7 +56,9 @@ type approximation struct {
 	link    int     // index of the mirror image that is kept in step, own index for a real point, −1 for none
 }
 
-func newRootSolver(p Poly) *rootSolver { return &rootSolver{poly: p} }
+func newRootSolver(p Poly) *rootSolver {
+	return &rootSolver{poly: p, rational: map[int]*big.Rat{}, searched: map[int]int64{}}
+}
 
 // refine brings every root to a relative radius of 2^-goal.
 func (s *rootSolver) refine(ctx context.Context, goal int) error {
@@ -234,10 +239,14 @@ func (s *rootSolver) improve(i int) (done bool) {
 	a := &s.roots[i]
 	n := math.Log2(float64(s.value.n))
 	var ev evaluation
+	if a.tries == 0 {
+		a.work = max(a.work, s.usual-1)
+	}
 	for {
 		ev = s.value.evaluate(a.fixed(), a.work, &s.space)
 		a.log = bound(&ev) + n
 		if a.log <= -a.goal {
+			s.usual = a.work
 			return true
 		}
 		settled := math.Min(math.Max(-a.log, 2), 40)

@@ -183,6 +183,13 @@ func (e *evaluator) roughRoots() []start {
 	evaluate := e.coefficientEvaluation()
 	if r := e.threeTerm(); r != nil {
 		evaluate = r.evaluate
+		if points := r.begin(); points != nil {
+			for i, p := range points {
+				if !e.rim.outside(p) {
+					z[i] = p
+				}
+			}
+		}
 	}
 	last := make([]float64, e.n) // size of the last step, 0 when settled
 	for i := range last {
