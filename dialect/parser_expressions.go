@@ -126,6 +126,11 @@ func (p *parser) termFrom(x Expr) Expr {
 			p.take()
 			x = p.binary(t, '/', x, p.signed())
 		case tSlashes:
+			if p.proseAhead() {
+				p.fail(t.span(), "a comment starts with `#`", p.only("write `#`", t.span(), "#"))
+				p.at = len(p.tokens) - 1
+				return x
+			}
 			p.fail(t.span(), "`//` has no meaning in an expression: the resistance of two in parallel is 1/(1/R1 + 1/R2)",
 				p.repair("write `/`", t.span(), "/"))
 			p.failed = false
@@ -149,6 +154,15 @@ func (p *parser) termFrom(x Expr) Expr {
 			return x
 		}
 	}
+}
+
+// proseAhead says that words follow the current token rather than an operand.
+func (p *parser) proseAhead() bool {
+	if p.peekAt(1).kind != tWord {
+		return false
+	}
+	next := p.peekAt(2)
+	return next.kind == tWord && !isQualifierWord(p.read(next))
 }
 
 // signed reads: ["-"|"+"] power. Two signs are an error.

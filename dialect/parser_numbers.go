@@ -29,8 +29,8 @@ func (p *parser) number() Expr {
 // touches its number, or a slip.
 func (p *parser) lettered(n *NumberExpr, rest string) Expr {
 	symbol := Word{Span{n.Number.Span.End, n.Span.End}, rest}
-	if _, _, ok := lookupUnit(rest); ok {
-		return p.unitFrom(n, symbol)
+	if f := knownFactor(symbol); f.Known {
+		return p.unitFrom(n, f)
 	}
 	switch {
 	case rest == "e" || rest == "E":
@@ -118,8 +118,8 @@ func (p *parser) decimalComma(n *NumberExpr) bool {
 	n.Number = Word{span, write}
 	n.Span.End = next.end
 	if rest := text[split:]; rest != "" {
-		if _, _, ok := lookupUnit(rest); ok {
-			p.unitFrom(n, Word{Span{next.start + split, next.end}, rest})
+		if f := knownFactor(Word{Span{next.start + split, next.end}, rest}); f.Known {
+			p.unitFrom(n, f)
 		}
 	}
 	return true
@@ -167,24 +167,24 @@ func (p *parser) unitAfter(n *NumberExpr) Expr {
 		return n
 	case t.kind == tUnitMark && gap <= 1:
 		p.take()
-		return p.unitFrom(n, p.word(t))
+		return p.unitFrom(n, knownFactor(p.word(t)))
 	case t.kind != tWord || gap > 1<<10:
 		return n
 	}
 	symbol := p.word(t)
-	_, _, known := lookupUnit(symbol.Text)
+	f := knownFactor(symbol)
 	switch {
-	case known && gap > 1:
+	case f.Known && gap > 1:
 		p.fail(Span{n.Span.Start, t.end}, "a unit follows its number with at most one space", p.only("write one space", Span{n.Span.End, t.start}, " "))
 		p.failed = false
-	case !known && (gap > 1 || isQualifierWord(symbol.Text)):
+	case !f.Known && (gap > 1 || isQualifierWord(symbol.Text)):
 		return n
 	}
 	p.take()
-	if !known {
+	if !f.Known {
 		return p.badUnit(n, symbol)
 	}
-	return p.unitFrom(n, symbol)
+	return p.unitFrom(n, f)
 }
 
 // reciprocalAhead says that "1/" and a symbol follow, which make a unit.
@@ -206,14 +206,10 @@ func (p *parser) reciprocal(n *NumberExpr) Expr {
 	return p.factors(n, f)
 }
 
-// unitFrom reads a unit whose first symbol, in the table, is consumed.
-func (p *parser) unitFrom(n *NumberExpr, symbol Word) Expr {
-	f := knownFactor(symbol)
-	if !f.Known {
-		return p.badUnit(n, symbol)
-	}
+// unitFrom reads a unit whose first symbol is consumed.
+func (p *parser) unitFrom(n *NumberExpr, f UnitFactor) Expr {
 	n.Unit = fresh(&p.slabs.units)
-	n.Unit.Span = symbol.Span
+	n.Unit.Span = f.Span
 	return p.factors(n, f)
 }
 

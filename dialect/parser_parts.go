@@ -138,7 +138,7 @@ func canonicalPrefix(letter string) string {
 // valueEndsAt says that the token n places on ends a part's value.
 func (p *parser) valueEndsAt(n int) bool {
 	switch p.peekAt(n).kind {
-	case tEnd, tComma, tBars, tClose, tPlusMinus:
+	case tEnd, tComma, tBars, tClose, tPlusMinus, tWord:
 		return true
 	case tPlus, tMinus:
 		return p.percentAt(n)

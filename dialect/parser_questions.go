@@ -290,8 +290,12 @@ func (p *parser) unknown(head Head) Statement {
 	p.head.Broken = true
 	t := p.peek()
 	switch {
+	case p.commentAhead():
+		p.otherComment(t)
 	case t.kind == tBad || t.kind == tForeign:
 		p.foreign(t)
+	case t.kind == tWord && p.peekAt(1).kind == tMinus:
+		p.bareBoxes()
 	case t.kind == tWord && p.peekAt(1).kind == tEquals:
 		p.fail(t.span(), fmt.Sprintf("`let` is missing before a constant, or the kind before a part: let %s = …, resistor %s = …", p.read(t), p.read(t)),
 			p.repair("insert `let`", Span{t.start, t.start}, "let "))
@@ -308,6 +312,57 @@ func (p *parser) unknown(head Head) Statement {
 	h.Span = Span{t.start, t.end}
 	p.at = len(p.tokens) - 1
 	return s
+}
+
+// commentAhead says that the line starts with the sign of a comment in some
+// other notation.
+func (p *parser) commentAhead() bool {
+	t := p.peek()
+	switch t.kind {
+	case tSlashes, tStar, tUnitMark:
+		return true
+	case tSlash, tMinus:
+		return p.touches(1) && (p.peekAt(1).kind == tStar || p.peekAt(1).kind == tMinus)
+	}
+	return t.kind == tBad && p.text[t.start] == ';'
+}
+
+// otherComment reports the sign of a comment in some other notation.
+func (p *parser) otherComment(t token) {
+	end := t.end
+	for p.peekAt(1).kind != tEnd && p.touches(1) && p.peekAt(1).kind == t.kind {
+		end = p.peekAt(1).end
+		p.take()
+	}
+	span := Span{t.start, end}
+	p.fail(span, "a comment starts with `#`", p.only("write `#`", span, "#"))
+}
+
+// bareBoxes reports a path whose parts stand in no boxes: in - R1 - out.
+func (p *parser) bareBoxes() {
+	last := p.tokens[len(p.tokens)-2]
+	span := Span{p.peek().start, last.end}
+	var b strings.Builder
+	for i, t := range p.tokens[:len(p.tokens)-1] {
+		named := t.kind == tWord || i > 0 && (t.kind == tDigits || t.kind == tNumber)
+		switch {
+		case (i%2 == 0) != named, i%2 == 1 && t.kind != tMinus:
+			b.Reset()
+			b.WriteByte('!')
+		case i%4 == 1:
+			b.WriteString(" -[")
+		case i%4 == 3:
+			b.WriteString("]- ")
+		default:
+			b.WriteString(p.read(t))
+		}
+	}
+	message := "a part in a path stands in a box: in -[R1]- out"
+	if write := b.String(); len(p.tokens)%4 == 2 && !strings.Contains(write, "!") {
+		p.fail(span, message, p.only("write `"+shorten(write)+"`", span, write))
+		return
+	}
+	p.fail(span, message)
 }
 
 // otherWorlds explains words for things that these networks do not hold, or

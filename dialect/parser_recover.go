@@ -252,6 +252,9 @@ func (p *parser) leftover() {
 		p.fail(t.span(), "a tolerance stands only after the value of a part")
 	case t.kind == tBrace:
 		p.fail(t.span(), "`{` belongs to a subnetwork's first line: subnetwork NAME (TERMINAL, …) {")
+	case p.kind != NoKind && t.kind == tWord && isOptionWord(p.read(t)):
+		at := p.last()
+		p.fail(t.span(), "a comma is missing before this option", p.only("insert `,`", Span{at, at}, ","))
 	case t.kind == tComma:
 		p.fail(t.span(), "nothing can follow a comma here")
 	case t.kind == tEquals:
@@ -282,6 +285,10 @@ var qualifierNear = []string{"at", "before", "from", "to", "with", "without", "n
 
 // slashes reports the sign that is used elsewhere for parallel parts.
 func (p *parser) slashes(t token) {
+	if p.proseAhead() {
+		p.fail(t.span(), "a comment starts with `#`", p.only("write `#`", t.span(), "#"))
+		return
+	}
 	p.fail(t.span(), "`//` has no meaning here: parts in parallel are written `||` inside a box, -[R1 || C1]-")
 }
 
@@ -305,6 +312,8 @@ func (p *parser) foreign(t token) {
 		return
 	}
 	switch {
+	case r == '@':
+		p.fail(t.span(), "`@` is written `at` in the notation", p.only("write `at`", t.span(), "at"))
 	case r == ';':
 		p.fail(t.span(), "a statement ends with its line, without `;`", p.only("remove it", t.span(), ""))
 	case unicode.IsControl(r) || !unicode.IsPrint(r):

@@ -3,7 +3,6 @@ package dialect
 import (
 	"slices"
 	"strings"
-	"unicode/utf8"
 )
 
 // This file is the one table of unit symbols and SI prefixes as they are
@@ -42,28 +41,37 @@ var unitPrefixes = map[string]struct {
 	"R": {"R", 27}, "Q": {"Q", 30},
 }
 
-// lookupUnit splits a spelled unit into canonical prefix and symbol. A symbol
-// without prefix wins over a prefixed one ("cd" is no unit, "dB" is dB).
-func lookupUnit(text string) (prefix, base string, ok bool) {
-	if s, ok := unitSymbols[text]; ok {
-		return "", s.canonical, true
+// spelledUnits maps every spelling of a symbol with or without prefix to its
+// canonical prefix and symbol. A symbol without prefix wins over a prefixed
+// one.
+var spelledUnits = func() map[string][2]string {
+	table := make(map[string][2]string, len(unitPrefixes)*len(unitSymbols))
+	for spelled, s := range unitSymbols {
+		if !s.prefixable {
+			continue
+		}
+		for prefix, p := range unitPrefixes {
+			table[prefix+spelled] = [2]string{p.canonical, s.canonical}
+		}
 	}
-	if len(text) < 2 {
+	for spelled, s := range unitSymbols {
+		table[spelled] = [2]string{"", s.canonical}
+	}
+	return table
+}()
+
+// lookupUnit splits a spelled unit into canonical prefix and symbol.
+func lookupUnit(text string) (prefix, base string, ok bool) {
+	if len(text) > maxUnitLength {
 		return "", "", false
 	}
-	_, n := utf8.DecodeRuneInString(text)
-	if p, ok := unitPrefixes[text[:n]]; ok {
-		if s, ok := unitSymbols[text[n:]]; ok && s.prefixable {
-			return p.canonical, s.canonical, true
-		}
-	}
-	if rest, ok := strings.CutPrefix(text, "da"); ok {
-		if s, ok := unitSymbols[rest]; ok && s.prefixable {
-			return "da", s.canonical, true
-		}
-	}
-	return "", "", false
+	u, ok := spelledUnits[text]
+	return u[0], u[1], ok
 }
+
+// maxUnitLength is the length in bytes of the longest spelling, "dBµV" with
+// U+03BC or a prefix of two bytes before "ohm".
+const maxUnitLength = 5
 
 // kindUnit is the unit of a kind's value where it is one unit, "" otherwise.
 func kindUnit(k Kind) string {

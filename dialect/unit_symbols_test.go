@@ -14,6 +14,13 @@ func TestLookupUnit(t *testing.T) {
 			t.Errorf("%s: %q %q %v", text, prefix, base, ok)
 		}
 	}
+	longest := 0
+	for text := range spelledUnits {
+		longest = max(longest, len(text))
+	}
+	if longest != maxUnitLength {
+		t.Errorf("the longest spelling has %d bytes, not %d", longest, maxUnitLength)
+	}
 	for _, text := range []string{"", "k", "Kohm", "KΩ", "mmF", "kdB", "m%", "kdeg", "dam", "Ohm", "hz", "v", "f", "u"} {
 		if prefix, base, ok := lookupUnit(text); ok {
 			t.Errorf("%s is read as %q %q", text, prefix, base)
