@@ -39,7 +39,6 @@ func (e *evaluator) fits(x Expr, o *operand, want Dimension, what string) bool {
 	return false
 }
 
-
 func (e *evaluator) fitsFrequency(x Expr, o *operand, what string) bool {
 	span := x.Extent()
 	if o.isHertz() || o.isRadian() {

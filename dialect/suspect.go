@@ -7,7 +7,7 @@ import (
 // The values beyond which a part is suspected of a wrong prefix: far outside
 // what is made, yet written in earnest by nobody (common practice, no source).
 const (
-	largestCapacitor = 1e4  // F; the largest double-layer cells hold some thousands
+	largestCapacitor = 1e4 // F; the largest double-layer cells hold some thousands
 	smallestPart     = 1e-18
 	largestInductor  = 1e4  // H
 	largestResistor  = 1e15 // Ω
