@@ -11,7 +11,42 @@ import (
 // it is first taken. Both limits count at a jump. The error is ErrUndefined with
 // the reason (it grows, there is an impulse), ErrUndecided, ErrRange, or the
 // context's.
-func (c *Curve) Peak(ctx context.Context, r Range) (Extreme, error) { return c.greatest(ctx, r) }
+func (c *Curve) Peak(ctx context.Context, r Range) (Extreme, error) {
+	if c.op == opAbs {
+		return c.args[0].farthest(ctx, r)
+	}
+	return c.greatest(ctx, r)
+}
+
+// farthest is the greatest distance from zero: the greater of peak and
+// negative trough. Either search is much easier than one for the absolute
+// value, which is near its maximum on both sides of zero.
+func (c *Curve) farthest(ctx context.Context, r Range) (Extreme, error) {
+	hi, err := c.Peak(ctx, r)
+	if err != nil {
+		return hi, err
+	}
+	lo, err := c.Trough(ctx, r)
+	if err != nil {
+		return lo, err
+	}
+	lo.Value = lo.Value.Neg()
+	if lo.Exact != nil {
+		lo.Exact = new(big.Rat).Neg(lo.Exact)
+	}
+	order, sure := lo.Value.Cmp(hi.Value)
+	switch {
+	case sure && order > 0:
+		return lo, nil
+	case sure && order < 0 || lo.HasAt == hi.HasAt && hi.HasAt && hi.At.Mid().Cmp(lo.At.Mid()) <= 0:
+		return hi, nil
+	case !lo.HasAt:
+		return hi, nil
+	case hi.HasAt && hi.At.Mid().Cmp(lo.At.Mid()) <= 0:
+		return hi, nil
+	}
+	return lo, nil
+}
 
 // Trough is the least value over the range (its greatest lower bound).
 func (c *Curve) Trough(ctx context.Context, r Range) (Extreme, error) {
