@@ -126,7 +126,7 @@ func (s *session) handle(ctx context.Context, req *jsonrpc2.Request) (any, error
 		return nil, jsonrpc2.Errorf(jsonrpc2.MethodNotFound, "%s is not offered", strings.Clone(req.Method()))
 	}
 	id := req.ID()
-	ctx2, cancel := context.WithCancelCause(ctx)
+	own, cancel := context.WithCancelCause(s.life) // the connection takes ctx back
 	defer cancel(nil)
 	s.running.add(id, cancel)
 	defer s.running.remove(id)
@@ -134,7 +134,7 @@ func (s *session) handle(ctx context.Context, req *jsonrpc2.Request) (any, error
 	if !m.inOrder {
 		jsonrpc2.Async(ctx)
 	}
-	return s.run(ctx2, m, r, req.Params())
+	return s.run(own, m, r, req.Params())
 }
 
 // run answers a request and contains its panics.

@@ -29,6 +29,10 @@ func hover(ctx context.Context, r *request, p *protocol.HoverParams) (*protocol.
 	m := &markup{markdown: r.client.markdownHover}
 	if ok {
 		r.card(m, card)
+	} else if word, where := at.word(); word != "" {
+		m.title(word)
+		m.prose(wordDocs[word])
+		span, ok = where, true
 	}
 	if found, where := at.finding(); found != "" {
 		m.prose(found)
@@ -72,6 +76,20 @@ func (r *request) sendsPictures() bool {
 		return false
 	}
 	return r.client.pictures
+}
+
+// word is the word of the notation at the place, if it is one that is
+// documented.
+func (p *place) word() (string, dialect.Span) {
+	path := dialect.PathTo(p.file, p.offset)
+	if len(path) == 0 {
+		return "", dialect.Span{}
+	}
+	word, ok := path[len(path)-1].(dialect.Word)
+	if !ok || wordDocs[word.Text] == "" {
+		return "", dialect.Span{}
+	}
+	return word.Text, word.Span
 }
 
 // finding explains the finding at the place, if there is one.

@@ -72,22 +72,22 @@ func TestEndOfInputEndsTheServer(t *testing.T) {
 	}
 }
 
-func frame(body string) string {
+func wire(body string) string {
 	return fmt.Sprintf("Content-Length: %d\r\n\r\n%s", len(body), body)
 }
 
 // TestMalformedMessagesCostOnlyThemselves feeds damaged frames before and
 // after good ones.
 func TestMalformedMessagesCostOnlyThemselves(t *testing.T) {
-	initialize := frame(`{"jsonrpc":"2.0","id":1,"method":"initialize","params":{"processId":null,"rootUri":null,"capabilities":{}}}`)
-	shutdown := frame(`{"jsonrpc":"2.0","id":2,"method":"shutdown"}`) + frame(`{"jsonrpc":"2.0","method":"exit"}`)
+	initialize := wire(`{"jsonrpc":"2.0","id":1,"method":"initialize","params":{"processId":null,"rootUri":null,"capabilities":{}}}`)
+	shutdown := wire(`{"jsonrpc":"2.0","id":2,"method":"shutdown"}`) + wire(`{"jsonrpc":"2.0","method":"exit"}`)
 	for name, damage := range map[string]string{
-		"not JSON":                  frame(`{"jsonrpc":`),
-		"trailing text":             frame(`{"jsonrpc":"2.0","method":"a"} x`),
-		"not an object":             frame(`"hello"`),
-		"no version":                frame(`{"id":7,"method":"textDocument/hover"}`),
-		"broken batch":              frame(`[{]`),
-		"bad id":                    frame(`{"jsonrpc":"2.0","id":{},"method":"textDocument/hover"}`),
+		"not JSON":                  wire(`{"jsonrpc":`),
+		"trailing text":             wire(`{"jsonrpc":"2.0","method":"a"} x`),
+		"not an object":             wire(`"hello"`),
+		"no version":                wire(`{"id":7,"method":"textDocument/hover"}`),
+		"broken batch":              wire(`[{]`),
+		"bad id":                    wire(`{"jsonrpc":"2.0","id":{},"method":"textDocument/hover"}`),
 		"no header":                 "hello\r\n\r\n",
 		"garbage without line feed": "garbage",
 		"negative length":           "Content-Length: -5\r\n\r\n",

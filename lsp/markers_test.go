@@ -21,7 +21,8 @@ import (
 // asks about the nearest line above that is no such comment; TEXT is a piece
 // of that line with | where the pointer is. The answer stands below it in
 // lines "#> …", which -update writes anew. A folder of markers is a workspace;
-// the lines themselves are part of the network, as comments.
+// the questions are part of the network, as comments, the answers are not: line
+// numbers count without them.
 func TestMarkers(t *testing.T) {
 	names, err := filepath.Glob("testdata/markers/*/*.plight")
 	if err != nil || len(names) == 0 {
@@ -57,15 +58,17 @@ func markers(t *testing.T, name, text string, asked map[string]bool) {
 	}
 	e := newEditor(t, fullClient, folder)
 	m := &marked{editor: e, at: uri.File(filepath.Join(folder, filepath.Base(name))), folder: folder}
-	m.lines = strings.Split(strings.TrimSuffix(text, "\n"), "\n")
-	e.open(m.at, text)
+	for l := range strings.Lines(text) { // answers are no part of the question
+		if !strings.HasPrefix(l, "#>") {
+			m.lines = append(m.lines, strings.TrimSuffix(l, "\n"))
+		}
+	}
+	e.open(m.at, strings.Join(m.lines, "\n")+"\n")
 	e.findings(m.at)
 	var out []string
 	line := 0
 	for i := 0; i < len(m.lines); i++ {
 		switch {
-		case strings.HasPrefix(m.lines[i], "#> ") || m.lines[i] == "#>":
-			continue // written anew below its question
 		case strings.HasPrefix(m.lines[i], "#@ "):
 			out = append(out, m.lines[i])
 			request, where, _ := strings.Cut(strings.TrimPrefix(m.lines[i], "#@ "), " ")

@@ -110,11 +110,11 @@ func brailleText(c *analyze.PlotCurve) []string {
 var brailleBit = [4][2]rune{{0x01, 0x08}, {0x02, 0x10}, {0x04, 0x20}, {0x40, 0x80}}
 
 func label(c *analyze.PlotCurve, f frame, dots [brailleRows * 4][brailleColumns * 2]bool) []string {
-	high, low := axisFigure(f.high), axisFigure(f.low)
+	high, low := axisFigure(f.high, c.YLabel), axisFigure(f.low, c.YLabel)
 	width := max(utf8.RuneCountInString(high), utf8.RuneCountInString(low))
 	lines := make([]string, 0, brailleRows+2)
-	if head := strings.TrimSpace(c.Title + "  " + bracket(c.YLabel)); head != "" {
-		lines = append(lines, head)
+	if c.Title != "" {
+		lines = append(lines, c.Title)
 	}
 	for row := range brailleRows {
 		mark := ""
@@ -139,22 +139,37 @@ func label(c *analyze.PlotCurve, f frame, dots [brailleRows * 4][brailleColumns 
 		}
 		lines = append(lines, b.String())
 	}
-	left, right := axisFigure(f.left), axisFigure(f.right)+" "+c.XLabel
+	left, right := axisFigure(f.left, c.XLabel), axisFigure(f.right, c.XLabel)
 	gap := brailleColumns - utf8.RuneCountInString(left) - utf8.RuneCountInString(right)
 	return append(lines, strings.Repeat(" ", width+2)+left+strings.Repeat(" ", max(gap, 1))+right)
 }
 
-func bracket(text string) string {
-	if text == "" {
-		return ""
+// axisFigure writes a number at the end of an axis, with an SI prefix where it
+// has a unit that takes one.
+func axisFigure(v float64, unit string) string {
+	prefix := ""
+	if unit != "" && unit != "dB" && unit != "°" && v != 0 {
+		power := int(math.Floor(math.Log10(math.Abs(v))/3 + 1e-9))
+		power = max(-len(smallPrefixes), min(power, len(largePrefixes)))
+		v /= math.Pow(1000, float64(power))
+		switch {
+		case power < 0:
+			prefix = smallPrefixes[-power-1]
+		case power > 0:
+			prefix = largePrefixes[power-1]
+		}
 	}
-	return "[" + text + "]"
+	text := strings.Replace(strconv.FormatFloat(v+0, 'g', 4, 64), "-", "−", 1)
+	if text == "−0" {
+		text = "0"
+	}
+	return strings.TrimSpace(text + " " + prefix + unit)
 }
 
-// axisFigure writes a number at the end of an axis.
-func axisFigure(v float64) string {
-	return strings.ReplaceAll(strconv.FormatFloat(v, 'g', 4, 64), "-", "−")
-}
+var (
+	smallPrefixes = []string{"m", "µ", "n", "p", "f"}
+	largePrefixes = []string{"k", "M", "G", "T"}
+)
 
 // pictureLink draws a curve as an image within Markdown, "" where it cannot
 // be drawn.

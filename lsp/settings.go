@@ -26,11 +26,11 @@ type setting struct {
 
 // settingTable lists every key there is; METHODS.md shows it.
 var settingTable = []setting{
-	{"inlay.answers", "true", "show the answer of each tell line behind it", flag(func(s *settings) *bool { return &s.answers })},
-	{"inlay.verdicts", "true", "show the verdict on each require line behind it", flag(func(s *settings) *bool { return &s.verdicts })},
-	{"inlay.constants", "true", "show the value of a let that is not a plain number", flag(func(s *settings) *bool { return &s.constants })},
-	{"inlay.directions", "true", "show which way the current or voltage of a part counts where it is asked for", flag(func(s *settings) *bool { return &s.directions })},
-	{"lens", "true", "show a line of facts above ports, functions and limits", flag(func(s *settings) *bool { return &s.lens })},
+	{"inlay.answers", "true", "show the answer of each tell line behind it", switchable(func(s *settings) *bool { return &s.answers })},
+	{"inlay.verdicts", "true", "show the verdict on each require line behind it", switchable(func(s *settings) *bool { return &s.verdicts })},
+	{"inlay.constants", "true", "show the value of a let that is not a plain number", switchable(func(s *settings) *bool { return &s.constants })},
+	{"inlay.directions", "true", "show which way the current or voltage of a part counts where it is asked for", switchable(func(s *settings) *bool { return &s.directions })},
+	{"lens", "true", "show a line of facts above ports, functions and limits", switchable(func(s *settings) *bool { return &s.lens })},
 	{"hover.pictures", "auto", "images in hovers: auto sends them to editors known to show them, always, never", choice(func(s *settings) *string { return &s.pictures }, "auto", "always", "never")},
 	{"command", "portlight", "the program that an editor's extension starts; the server itself does not read it", func(*settings, json.RawMessage) error { return nil }},
 }
@@ -39,7 +39,7 @@ func defaultSettings() settings {
 	return settings{answers: true, verdicts: true, constants: true, directions: true, lens: true, pictures: "auto"}
 }
 
-func flag(field func(*settings) *bool) func(*settings, json.RawMessage) error {
+func switchable(field func(*settings) *bool) func(*settings, json.RawMessage) error {
 	return func(s *settings, raw json.RawMessage) error {
 		if json.Unmarshal(raw, field(s)) != nil {
 			return fmt.Errorf("must be true or false, not %s", raw)
