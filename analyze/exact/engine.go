@@ -87,6 +87,11 @@ func (y *system) order(ctx context.Context) (*elimination, error) {
 			return nil, err
 		}
 		m := takeModuli(attempts)[i]
+		if sym := y.symmetric(); sym != nil && i == 0 {
+			if plan := y.eliminateSymmetric(m, rand.Uint64N(m.p), sym); plan != nil {
+				return plan, nil
+			}
+		}
 		plan, block := y.eliminate(m, rand.Uint64N(m.p))
 		if plan != nil {
 			return plan, nil
@@ -224,7 +229,8 @@ func (r *modularRun) runAll(ctx context.Context) error {
 
 // worker takes primes until all places are filled.
 func (r *modularRun) worker(ctx context.Context) error {
-	v := newMachine(r.prog, min(r.points, chunkPoints))
+	chunks := (r.points + chunkPoints - 1) / chunkPoints
+	v := newMachine(r.prog, (r.points+chunks-1)/chunks)
 	values := make([][]uint64, len(r.residue))
 	for i := range values {
 		if r.residue[i] != nil {
@@ -238,6 +244,9 @@ func (r *modularRun) worker(ctx context.Context) error {
 		}
 		for done := false; !done; {
 			i := int(r.next.Add(1))
+			if i > 2*len(r.used)+64 {
+				return errors.New("no usable primes") // probability below 2^-100
+			}
 			m := takeModuli(i)[i-1]
 			var err error
 			if done, err = r.evaluate(ctx, v, m, values); err != nil {
@@ -257,7 +266,9 @@ func (r *modularRun) worker(ctx context.Context) error {
 // reports success; it fails if every coset of points tried meets a zero of a
 // pivot.
 func (r *modularRun) evaluate(ctx context.Context, v *machine, m *modulus, values [][]uint64) (bool, error) {
-	v.load(m)
+	if !v.load(m) {
+		return false, nil
+	}
 	const attempts = 3
 	for range attempts {
 		q := m.newPoints(r.points, 1+rand.Uint64N(m.p-1))
@@ -280,6 +291,11 @@ func (r *modularRun) evaluate(ctx context.Context, v *machine, m *modulus, value
 		for i, val := range values {
 			if val == nil {
 				continue
+			}
+			if r.prog.sym != nil && v.undo != m.one {
+				for k := range val {
+					val[k] = m.mul(val[k], v.undo)
+				}
 			}
 			q.interpolate(val)
 			for _, c := range val[r.degrees[i]+1:] {

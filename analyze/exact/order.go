@@ -6,15 +6,18 @@ package exact
 type elimination struct {
 	entries  []factorEntry
 	pivots   []pivotStep
-	negative []bool // per block: the pivots form an odd permutation
-	border   []int  // entry of border row o, column j at o·rhs + j, −1 if zero
+	negative []bool    // per block: the pivots form an odd permutation
+	border   []int     // entry of border row o, column j at o·rhs + j, −1 if zero
+	symmetry *symmetry // for a symmetric elimination, which multiplies the rows by factors
 }
 
 // factorEntry is an entry of the factors: source − Σ product of two entries,
 // then possibly multiplied by an inverse pivot.
 type factorEntry struct {
 	source   *intEntry // nil for fill
+	row      int       // whose factor the source gets in a symmetric elimination, −1 for none
 	products []product
+	mirrorOf int32 // one more than the entry this one is, times the inverse pivot; 0 for others
 }
 
 // product is a pair of entries of the lower and the upper factor.
@@ -67,6 +70,13 @@ func (y *system) eliminate(m *modulus, s uint64) (*elimination, int) {
 			return nil, b
 		}
 	}
+	z.collectBorder()
+	return z.out, -1
+}
+
+// collectBorder notes the entries where the borders meet.
+func (z *eliminator) collectBorder() {
+	y := z.y
 	z.out.border = make([]int, y.outs*y.rhs)
 	for o := range y.outs {
 		for j := range y.rhs {
@@ -76,7 +86,6 @@ func (y *system) eliminate(m *modulus, s uint64) (*elimination, int) {
 			z.out.border[o*y.rhs+c.index-y.n] = int(c.entry)
 		}
 	}
-	return z.out, -1
 }
 
 // entryAt returns the residue of g + s·c.

@@ -10,7 +10,10 @@ type program struct {
 	ops     []op
 	pairs   []product
 	sources []*intEntry
-	outputs []int32 // slots, −1 for an output that is zero
+	rows    []int     // the rows of the sources, for the factors of a symmetric system
+	outputs []int32   // slots, −1 for an output that is zero
+	sym     *symmetry // nil for a system that is not symmetric
+	rowsAll int       // number of rows with factors
 }
 
 type opKind uint8
@@ -35,7 +38,7 @@ type op struct {
 // compile turns an elimination into a program whose outputs are the wanted
 // block determinants followed by all numerators.
 func (y *system) compile(z *elimination, wantDet []bool) *program {
-	c := &compiler{y: y, z: z, p: &program{}}
+	c := &compiler{y: y, z: z, p: &program{sym: z.symmetry, rowsAll: y.n}}
 	c.p.slots = len(z.entries)
 	c.p.point = c.newSlot()
 	inverse := c.newSlot()
@@ -58,7 +61,11 @@ func (y *system) compile(z *elimination, wantDet []bool) *program {
 			scaled = step.lower
 		}
 		for _, e := range scaled {
-			c.emit(op{kind: opMul, dst: e, a: e, b: inverse})
+			from := e
+			if mirror := z.entries[e].mirrorOf; mirror > 0 {
+				from = mirror - 1
+			}
+			c.emit(op{kind: opMul, dst: e, a: from, b: inverse})
 		}
 	}
 	c.determinants(pivots, wantDet)
@@ -81,12 +88,16 @@ func (c *compiler) emit(o op) { c.p.ops = append(c.p.ops, o) }
 // dot emits the operation that makes an entry of the factors.
 func (c *compiler) dot(entry int32) {
 	e := &c.z.entries[entry]
+	if e.mirrorOf > 0 {
+		return
+	}
 	o := op{kind: opDot, dst: entry, source: -1, a: int32(len(c.p.pairs))}
 	c.p.pairs = append(c.p.pairs, e.products...)
 	o.b = int32(len(c.p.pairs))
 	if e.source != nil {
 		o.source = int32(len(c.p.sources))
 		c.p.sources = append(c.p.sources, e.source)
+		c.p.rows = append(c.p.rows, e.row)
 	}
 	c.emit(o)
 }
@@ -149,6 +160,8 @@ type machine struct {
 	hi, lo []uint64
 	spare  []uint64
 	g, c   []uint64 // residues of the sources, c negated
+	factor []uint64 // of the rows of a symmetric system
+	undo   uint64   // inverse of the product of the factors
 }
 
 func newMachine(prog *program, width int) *machine {
@@ -158,11 +171,13 @@ func newMachine(prog *program, width int) *machine {
 		prog: prog, width: width, slots: buf[:k],
 		hi: buf[k : k+width], lo: buf[k+width : k+2*width], spare: buf[k+2*width:],
 		g: make([]uint64, len(prog.sources)), c: make([]uint64, len(prog.sources)),
+		factor: make([]uint64, prog.rowsAll),
 	}
 }
 
-// load takes the residues of the sources modulo m.
-func (v *machine) load(m *modulus) {
+// load takes the residues of the sources modulo m and reports success; it
+// fails where a symmetric system is not symmetric modulo m.
+func (v *machine) load(m *modulus) bool {
 	for i, e := range v.prog.sources {
 		v.g[i], v.c[i] = 0, 0
 		if e.g != nil {
@@ -172,6 +187,33 @@ func (v *machine) load(m *modulus) {
 			v.c[i] = m.neg(m.fromBig(e.c))
 		}
 	}
+	if v.prog.sym == nil {
+		return true
+	}
+	return v.loadFactors(m)
+}
+
+// loadFactors multiplies the sources of a symmetric system by the factors of
+// their rows.
+func (v *machine) loadFactors(m *modulus) bool {
+	if !v.prog.sym.rowFactors(m, v.factor) {
+		return false
+	}
+	all := m.one
+	for _, f := range v.factor {
+		if f != m.one {
+			all = m.mul(all, f)
+		}
+	}
+	if v.undo = all; all != m.one {
+		v.undo = m.inverse(all)
+	}
+	for i, row := range v.prog.rows {
+		if row >= 0 && v.factor[row] != m.one {
+			v.g[i], v.c[i] = m.mul(v.g[i], v.factor[row]), m.mul(v.c[i], v.factor[row])
+		}
+	}
+	return true
 }
 
 func (v *machine) slot(i int32, n int) []uint64 {

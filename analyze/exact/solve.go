@@ -226,7 +226,7 @@ func (y *system) solveAtJ(ctx context.Context, acting bool) (*gaussianInt, []gau
 	var used []*modulus
 	for i := 0; len(used) < primes; i++ {
 		m := takeModuli(i + 1)[i]
-		v.load(m)
+		v.load(m) // not a symmetric program: does not fail
 		j := m.sqrtMinusOne()
 		ok, err := v.run(ctx, m, []uint64{j, m.neg(j)}[:points])
 		if err != nil {

@@ -34,10 +34,14 @@ func blockTriangular(pattern [][]int) *blocks {
 	b := &blocks{blockOfRow: make([]int, n), blockOfCol: make([]int, n)}
 	for _, component := range strongComponents(pattern, rowOf) {
 		slices.Sort(component)
+		first := len(b.cols)
 		for _, r := range component {
 			b.blockOfRow[r], b.blockOfCol[colOf[r]] = len(b.end), len(b.end)
 			b.rows = append(b.rows, r)
 			b.cols = append(b.cols, colOf[r])
+		}
+		if symmetricPattern(pattern, component, b.cols[first:]) {
+			slices.Sort(b.cols[first:]) // so that the block stays symmetric
 		}
 		b.end = append(b.end, len(b.rows))
 	}
@@ -52,6 +56,24 @@ func blockTriangular(pattern [][]int) *blocks {
 	}
 	b.negative = oddPermutation(b.rows) != oddPermutation(b.cols)
 	return b
+}
+
+// symmetricPattern reports whether the block of the rows, ascending, and
+// columns has the same pattern when mirrored.
+func symmetricPattern(pattern [][]int, rows, cols []int) bool {
+	for _, c := range cols {
+		if _, ok := slices.BinarySearch(rows, c); !ok {
+			return false
+		}
+	}
+	for _, r := range rows {
+		for _, c := range pattern[r] {
+			if _, inside := slices.BinarySearch(rows, c); inside && !slices.Contains(pattern[c], r) {
+				return false
+			}
+		}
+	}
+	return true
 }
 
 // maximumMatching returns for every column the row matched to it, −1 for
