@@ -217,6 +217,101 @@ func TestLongValues(t *testing.T) {
 	})
 }
 
+// A ladder of degree 400 agrees with the three-term recurrence of
+// tridiagonal determinants (T. Muir, A Treatise on the Theory of Determinants,
+// 1882, on continuants), evaluated at rational points.
+func TestLadderOfDegree400(t *testing.T) {
+	const sections = 200
+	p, rhs, input, _ := ladder(sections)
+	f, err := p.Prepare(context.Background())
+	if err != nil {
+		t.Fatal(err)
+	}
+	num, err := f.Numerators(context.Background(), []Vector{rhs}, []Vector{input})
+	if err != nil {
+		t.Fatal(err)
+	}
+	d := f.Determinant()
+	if d.Degree() != 2*sections {
+		t.Fatalf("degree %d", d.Degree())
+	}
+	for _, s := range []*big.Rat{big.NewRat(-3, 1), big.NewRat(400001, 3), big.NewRat(-7, 10001)} {
+		n := 2 * sections
+		at := func(i, j int) *big.Rat {
+			for _, e := range p.rows[i] {
+				if e.Col == j {
+					v := new(big.Rat).Mul(e.C, s)
+					return v.Add(v, e.G)
+				}
+			}
+			return new(big.Rat)
+		}
+		// From the far end: with[k] is the determinant of rows and columns k….
+		with := make([]*big.Rat, n+2)
+		with[n], with[n+1] = big.NewRat(1, 1), new(big.Rat)
+		for k := n - 1; k >= 0; k-- {
+			with[k] = new(big.Rat).Mul(at(k, k), with[k+1])
+			if k+1 < n {
+				t := new(big.Rat).Mul(at(k, k+1), at(k+1, k))
+				with[k].Sub(with[k], t.Mul(t, with[k+2]))
+			}
+		}
+		if got := d.Eval(s); got.Cmp(with[0]) != 0 {
+			t.Errorf("determinant at %v is wrong", s)
+		}
+		// The right-hand side is −1 in equation 0, the output unknown 0.
+		if got := num[0][0].Eval(s); got.Cmp(with[1].Neg(with[1])) != 0 {
+			t.Errorf("numerator at %v is wrong", s)
+		}
+	}
+}
+
+// Outputs along a cascade are solved in few groups, with the answers they
+// would have alone.
+func TestOutputsAlongCascade(t *testing.T) {
+	ctx := context.Background()
+	const stages = 12
+	p := NewPencil(2 * stages)
+	for k := range 2 * stages {
+		p.Add(k, k, decimal(k, 0), decimal(k+3, -3))
+		if k%2 == 0 {
+			p.Add(k, k+1, big.NewRat(1, 1), nil)
+			p.Add(k+1, k, big.NewRat(-2, 1), nil)
+		}
+		if k > 0 {
+			p.Add(k, k-1, decimal(k, -1), nil)
+		}
+	}
+	var out []Vector
+	for k := range 2 * stages {
+		out = append(out, Unit(k))
+	}
+	f, err := p.Prepare(ctx)
+	if err != nil {
+		t.Fatal(err)
+	}
+	if f.Blocks() != stages {
+		t.Fatalf("%d pieces", f.Blocks())
+	}
+	if n := len(f.groupOuts(out, f.reachedFrom([]Vector{Unit(0)}))); n > 5 {
+		t.Errorf("%d groups", n)
+	}
+	together, err := f.Responses(ctx, []Vector{Unit(0)}, out)
+	if err != nil {
+		t.Fatal(err)
+	}
+	for k := range out {
+		g, _ := p.Prepare(ctx)
+		alone, err := g.Responses(ctx, []Vector{Unit(0)}, out[k:k+1])
+		if err != nil {
+			t.Fatal(err)
+		}
+		if !alone[0][0].Equal(together[k][0]) || alone[0][0].Den.Degree() != k/2*2+2 {
+			t.Errorf("output %d: %v alone, %v together", k, alone[0][0], together[k][0])
+		}
+	}
+}
+
 // The bounds that decide the number of points and primes hold for the true
 // coefficients, and are tight enough to be worth their name.
 func TestBoundsHold(t *testing.T) {

@@ -153,20 +153,7 @@ func (g *group) scale(out, rhs int) *big.Rat {
 // blocks in between have the answer 0 and are left out.
 func (f *Prepared) eachGroup(ctx context.Context, rhs, out []Vector, visit func(*group) error) error {
 	reached := f.reachedFrom(rhs)
-	var groups []*group
-	for i, v := range out {
-		blocks := f.neededFor(v, reached)
-		if len(blocks) == 0 {
-			continue
-		}
-		k := slices.IndexFunc(groups, func(g *group) bool { return slices.Equal(g.blocks, blocks) })
-		if k < 0 {
-			k = len(groups)
-			groups = append(groups, &group{blocks: blocks})
-		}
-		groups[k].outs = append(groups[k].outs, i)
-	}
-	for _, g := range groups {
+	for _, g := range f.groupOuts(out, reached) {
 		if err := f.solveGroup(ctx, g, rhs, out); err != nil {
 			return f.note(err)
 		}
@@ -175,6 +162,49 @@ func (f *Prepared) eachGroup(ctx context.Context, rhs, out []Vector, visit func(
 		}
 	}
 	return nil
+}
+
+// groupOuts sorts the outputs into groups. Outputs with the same pieces are
+// solved together, and so are those that need at least half of the pieces of
+// a group and no others: along a cascade that is cheaper than beginning anew
+// for every stage.
+func (f *Prepared) groupOuts(out []Vector, reached []bool) []*group {
+	var all []*group
+	for i, v := range out {
+		blocks := f.neededFor(v, reached)
+		if len(blocks) == 0 {
+			continue
+		}
+		k := slices.IndexFunc(all, func(g *group) bool { return slices.Equal(g.blocks, blocks) })
+		if k < 0 {
+			k = len(all)
+			all = append(all, &group{blocks: blocks})
+		}
+		all[k].outs = append(all[k].outs, i)
+	}
+	slices.SortStableFunc(all, func(a, b *group) int { return len(b.blocks) - len(a.blocks) })
+	var merged []*group
+	for _, g := range all {
+		k := slices.IndexFunc(merged, func(m *group) bool {
+			return len(m.blocks) <= 2*len(g.blocks) && isSubset(g.blocks, m.blocks)
+		})
+		if k < 0 {
+			merged = append(merged, g)
+			continue
+		}
+		merged[k].outs = append(merged[k].outs, g.outs...)
+	}
+	return merged
+}
+
+// isSubset reports whether every element of a is in b; both are ascending.
+func isSubset(a, b []int) bool {
+	for _, x := range a {
+		if _, ok := slices.BinarySearch(b, x); !ok {
+			return false
+		}
+	}
+	return true
 }
 
 // reachedFrom tells for every block whether a right-hand side acts on it,
