@@ -131,7 +131,7 @@ func (s *search) refine(ctx context.Context, c cluster) (place, bool, error) {
 	} else if sign, decided := d1.at(c.stage.lengthBall()).Sign(); decided && sign >= 0 {
 		return s.end(ctx, c, true)
 	}
-	tau := newton(d1, bend, ballBetween(c.a, c.b))
+	tau := newton(d1, d1.derivative(), bend, ballBetween(c.a, c.b))
 	mid := number.BallFromFloat(tau.Mid(), refinePrecision)
 	// f(τ) = f(mid) + f′(ξ)(τ−mid) with ξ in the ball of τ.
 	reach := d1.at(tau).Abs().Mul(number.BallFromFloat(tau.Rad(), refinePrecision))
@@ -156,21 +156,39 @@ func (st *stage) lengthBall() number.Ball {
 	return number.BallFromRat(new(big.Rat).Sub(st.end, st.origin), refinePrecision)
 }
 
-// newton encloses the zero of f in box, where slope bounds its derivative, away
-// from zero: the interval Newton step N = m − f(m)/slope keeps every zero, and
-// steps are taken while they gain.
-func newton(f *sum, slope interval, box number.Ball) number.Ball {
-	df := ballBetween(slope.lo, slope.hi)
-	for range 40 {
+// newton encloses the zero of f in box, where slope bounds its derivative df, away
+// from zero. The interval Newton step N = m − f(m)/df(box) keeps every zero; where
+// it gains little the box is halved by the sign in its middle.
+func newton(f, df *sum, slope interval, box number.Ball) number.Ball {
+	whole := ballBetween(slope.lo, slope.hi)
+	for range 200 {
 		mid := number.BallFromFloat(box.Mid(), refinePrecision)
-		next := mid.Sub(f.at(mid).Quo(df))
-		if !next.IsFinite() {
-			return box
+		value := f.at(mid)
+		by := df.at(box)
+		if sign, decided := by.Sign(); !decided || sign == 0 {
+			by = whole
 		}
-		next = intersect(next, box)
+		next := box
+		if n := mid.Sub(value.Quo(by)); n.IsFinite() {
+			next = intersect(n, box)
+		}
 		gain := new(big.Float).Mul(next.Rad(), big.NewFloat(1.5))
 		if gain.Cmp(box.Rad()) >= 0 {
+			sign, decided := value.Sign()
+			if !decided {
+				return next
+			}
+			if (sign > 0) == (slope.lo > 0) { // the zero is on the left
+				next = number.Hull(box.Lower(), mid.Upper(), refinePrecision)
+			} else {
+				next = number.Hull(mid.Lower(), box.Upper(), refinePrecision)
+			}
+		}
+		if next.Rad().Sign() == 0 || next.RelativeBits() > refinePrecision-24 {
 			return next
+		}
+		if next.Rad().Cmp(box.Rad()) >= 0 {
+			return box
 		}
 		box = next
 	}
@@ -261,6 +279,29 @@ func (s *search) resolve(c cluster) (*sum, bool) {
 	return combineSums(c.stage.sums, signs), true
 }
 
+// resolveTail finds the one sum that the curve is from τ = t on. Besides the
+// sizes of the terms, a leaf's sign is known where one term of it dominates.
+func (s *search) resolveTail(st *stage, t float64) (*sum, bool) {
+	leaves := make([]enclosure, len(st.floats))
+	from := number.BallFromFloat64(t, refinePrecision)
+	for i, f := range st.floats {
+		leaves[i] = f.crude(t, math.Inf(1))
+		if leaves[i].lo < 0 && leaves[i].hi > 0 {
+			switch st.sums[i].dominance(from) {
+			case 1:
+				leaves[i].lo = 0
+			case -1:
+				leaves[i].hi = 0
+			}
+		}
+	}
+	signs, _, rest, ok := s.curve.branch(leaves, 1)
+	if !ok || len(rest) != 0 {
+		return nil, false
+	}
+	return combineSums(st.sums, signs), true
+}
+
 // branch tells with which sign each leaf counts, given enclosures of the leaves.
 func (c *Curve) branch(leaves []enclosure, sign int) (signs []int, value enclosure, rest []enclosure, ok bool) {
 	if c.op == opLeaf {
@@ -309,23 +350,18 @@ func (c *Curve) branch(leaves []enclosure, sign int) (signs []int, value enclosu
 // beginning on, it either falls, and has its greatest value there, or rises
 // towards its limit, which competes already.
 func (s *search) refineTail(ctx context.Context, c cluster) (place, bool, error) {
-	if sums, ok := s.resolve(c); ok {
-		d := sums.derivative()
-		if len(d.terms) == 0 { // constant
-			p, ok, err := s.end(ctx, cluster{stage: c.stage, index: c.index, a: c.a, b: c.b}, false)
-			return p, ok, err
+	unitTime := c.stage.unitTime()
+	for t := c.a; t < 1e6*math.Max(c.a, unitTime); t = 2*t + unitTime {
+		sums, ok := s.resolveTail(c.stage, t)
+		if !ok {
+			continue
 		}
-		for t := c.a; t < 1e6*math.Max(c.a, c.stage.unitTime()); t = 2*t + c.stage.unitTime() {
-			sign := d.dominance(number.BallFromFloat64(t, refinePrecision))
-			switch {
-			case sign == 0:
-				continue
-			case t > c.a:
-				return s.cutThenRefine(ctx, c, t, sign)
-			case sign > 0:
-				return place{}, false, nil
-			}
-			return s.end(ctx, c, false)
+		d := sums.derivative()
+		if len(d.terms) == 0 { // constant from here on
+			return s.cutThenRefine(ctx, c, t, -1)
+		}
+		if sign := d.dominance(number.BallFromFloat64(t, refinePrecision)); sign != 0 {
+			return s.cutThenRefine(ctx, c, t, sign)
 		}
 	}
 	p := s.coarse(cluster{stage: c.stage, index: c.index, a: c.a, b: c.a, boxes: c.boxes})
@@ -337,7 +373,9 @@ func (s *search) refineTail(ctx context.Context, c cluster) (place, bool, error)
 // before is searched on its own.
 func (s *search) cutThenRefine(ctx context.Context, c cluster, t float64, sign int) (place, bool, error) {
 	inner := &search{curve: s.curve, stages: s.stages, scale: s.scale, best: s.best, ceiling: math.NaN()}
-	inner.add(&box{stage: c.stage, index: c.index, a: c.a, b: t, on: c.stage.crude(s.curve, c.a, t)})
+	if t > c.a {
+		inner.add(&box{stage: c.stage, index: c.index, a: c.a, b: t, on: c.stage.crude(s.curve, c.a, t)})
+	}
 	if err := inner.run(ctx); err != nil {
 		return place{}, false, err
 	}

@@ -125,11 +125,6 @@ func (e *edgeSearch) firstForward(ctx context.Context, st *stage, i int) (number
 	return number.Ball{}, false, undecided("it comes too near the level for t → ∞")
 }
 
-// resolveTail is the one sum that the curve is from τ = t on.
-func (e *edgeSearch) resolveTail(st *stage, t float64) (*sum, bool) {
-	return e.resolve(cluster{stage: st, boxes: []*box{{stage: st, a: t, b: math.Inf(1)}}})
-}
-
 // within looks for the edge in [a, b] of a stage, from the side it must be met
 // first. Everything passed over is proved not to be above zero.
 func (e *edgeSearch) within(ctx context.Context, st *stage, i int, a, b float64) (number.Ball, bool, error) {
@@ -236,11 +231,11 @@ func (e *edgeSearch) pass(x *box) (number.Ball, bool, error) {
 	switch {
 	case !okLeft || !okRight:
 		// The zero is at an end of the box to within the working precision.
-		return origin.Add(newton(sums, slope, box)), true, nil
+		return origin.Add(newton(sums, sums.derivative(), slope, box)), true, nil
 	case left <= 0 && right <= 0:
 		return number.Ball{}, false, nil
 	case left > 0 && right > 0, e.first && left > 0, !e.first && right > 0:
 		return e.atEnd(x), true, nil
 	}
-	return origin.Add(newton(sums, slope, box)), true, nil
+	return origin.Add(newton(sums, sums.derivative(), slope, box)), true, nil
 }

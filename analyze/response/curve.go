@@ -75,14 +75,18 @@ type Curve struct {
 // Curve returns the signal as a curve.
 func (s *Signal) Curve() *Curve { return &Curve{leaf: s} }
 
-// AddConstant returns s + k for t ≥ 0.
+// AddConstant returns s + k.
 func (s *Signal) AddConstant(k number.Exact) *Signal {
 	if k.Rat().Sign() == 0 {
 		return s
 	}
 	f := newFraction(ratioOf(constantPoly(k.Rat()), polyS), polyS, one)
 	comps := append(append([]component(nil), s.comps...), component{from: new(big.Rat), cause: noCause, weight: unitWeight, fraction: f})
-	return newSignal(s.solution, comps, s.before)
+	before := s.before
+	return newSignal(s.solution, comps, func(ctx context.Context) (number.Exact, error) {
+		x, err := valueBefore(ctx, before)
+		return x.Add(k), err
+	})
 }
 
 // noCause marks what is neither due to the initial state nor to a source.
@@ -121,34 +125,12 @@ func (c *Curve) Add(d *Curve) *Curve {
 // Sub returns c − d.
 func (c *Curve) Sub(d *Curve) *Curve { return c.Add(d.Neg()) }
 
-// AddConstant returns c + k for t ≥ 0.
+// AddConstant returns c + k.
 func (c *Curve) AddConstant(k number.Exact) *Curve {
 	if s, ok := c.leaf.(*Signal); ok {
 		return s.AddConstant(k).Curve()
 	}
-	s := c.anySignal()
-	if s == nil {
-		return c
-	}
-	return c.Add((&Signal{solution: s.solution}).AddConstant(k).Curve())
-}
-
-// anySignal finds a signal at a leaf.
-func (c *Curve) anySignal() *Signal {
-	if c.op == opLeaf {
-		switch f := c.leaf.(type) {
-		case *Signal:
-			return f
-		case *product:
-			return f.a
-		}
-	}
-	for _, a := range c.args {
-		if s := a.anySignal(); s != nil {
-			return s
-		}
-	}
-	return nil
+	return c.Add(constantCurve(number.BallFromRat(k.Rat(), refinePrecision), k.Rat()))
 }
 
 // Signal returns the curve's signal when it is nothing else.

@@ -387,10 +387,7 @@ func (s *search) prepareTail(ctx context.Context, st *stage) (*Extreme, error) {
 	}
 	switch course {
 	case grows:
-		if s.fallsForEver(st) {
-			return nil, nil
-		}
-		return nil, undefined("it grows without bound")
+		return nil, s.growth(st)
 	case settles:
 		v, exactly := s.curve.limitOf(st.sums)
 		lower, _ := v.Lower().Float64()
@@ -425,22 +422,60 @@ func (c *Curve) limitNext(sums []*sum) (number.Ball, *big.Rat, []*sum) {
 	return applyBall(c.op, balls), nil, sums
 }
 
-// fallsForEver tells whether the curve, a single form, falls from some time on,
-// and replaces the tail from there by nothing.
-func (s *search) fallsForEver(st *stage) bool {
-	if s.curve.op != opLeaf {
-		return false
-	}
-	d := st.sums[0].derivative()
+// growth treats a curve that grows: where it falls from some time on, the tail
+// from there is nothing to the search; otherwise its greatest value is undefined,
+// or not decided when rising and falling parts grow alike.
+func (s *search) growth(st *stage) error {
 	t := st.unitTime()
 	for range 60 {
-		if d.dominance(number.BallFromFloat64(t, refinePrecision)) < 0 {
-			s.replaceTail(st, t)
-			return true
+		if sums, ok := s.resolveTail(st, t); ok {
+			d := sums.derivative()
+			switch sign := d.dominance(number.BallFromFloat64(t, refinePrecision)); {
+			case sign < 0:
+				s.replaceTail(st, t)
+				return nil
+			case sign > 0 && sums.course() == grows, sums.swings():
+				return undefined("it grows without bound")
+			}
 		}
 		t *= 4
 	}
-	return false
+	if inner := s.curve; inner.op == opAbs && inner.args[0].op == opLeaf {
+		return undefined("it grows without bound") // |x| where x grows
+	}
+	return undecided("parts that grow alike decide where it goes")
+}
+
+// swings tells whether the fastest growing terms are all oscillations: their sum
+// has no mean, so it goes beyond every bound on both sides.
+func (x *sum) swings() bool {
+	fastest := x.fastest()
+	for _, t := range fastest {
+		if t.pole.real {
+			return false
+		}
+	}
+	return len(fastest) > 0
+}
+
+// fastest lists the terms of greatest growth: greatest real part, then greatest
+// power; all that cannot be told apart in these.
+func (x *sum) fastest() []term {
+	var out []term
+	for _, t := range x.terms {
+		if len(out) == 0 {
+			out = append(out, t)
+			continue
+		}
+		order, decided := t.pole.p.Re.Cmp(out[0].pole.p.Re)
+		switch {
+		case decided && order != 0 && order > 0, decided && order == 0 && len(t.c) > len(out[0].c):
+			out = []term{t}
+		case !decided || order == 0 && len(t.c) == len(out[0].c):
+			out = append(out, t)
+		}
+	}
+	return out
 }
 
 // replaceTail ends the last stage at τ = t for the search.

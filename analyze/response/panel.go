@@ -123,10 +123,11 @@ func (f *floatTerm) expand(m, h float64, out *model) {
 	}
 	z := f.rate * h
 	out.addRest(size, z, n)
-	// The rounding errors of coefficient k count k-fold in the derivative: of
-	// Σ z^k/k! that is z times the sum, of x^i times it i times more.
+	// The rounding errors of coefficient k, relative to z^k/k! and its like, count
+	// k-fold in the derivative: of Σ z^k/k! that is z times the sum, of x^i times
+	// it i times more.
 	rounding := (panelUnits + 8*float64(n) + f.phaseUnits(m)) * unit * math.Exp(z) * size
-	weight := z + float64(n)
+	weight := z + float64(n-1)
 	out.err += rounding + leastBound
 	out.slope += rounding*weight + leastBound
 	out.bend += rounding*weight*(weight+1) + leastBound
@@ -140,7 +141,7 @@ func (p *model) addRest(size, z float64, n int) {
 		return
 	}
 	tail, before, second := expTail(z, panelOrder-n+1), expTail(z, panelOrder-n), expTail(z, panelOrder-n-1)
-	i := float64(n)
+	i := float64(n - 1)
 	p.err += size * tail
 	p.slope += size * (z*before + i*tail) * (1 + 8*unit)
 	p.bend += size * (z*z*second + 2*i*z*before + i*i*tail) * (1 + 8*unit)

@@ -75,6 +75,9 @@ func Solve(_ context.Context, setup Setup) (*Solution, error) {
 	if err != nil {
 		return nil, err
 	}
+	for _, v := range setup.Intervals {
+		s.exact = s.exact && v.System.Exact()
+	}
 	first := setup.Intervals[0].System
 	for _, x := range setup.Initial {
 		s.exact = s.exact && x.Value.IsExact()

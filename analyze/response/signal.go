@@ -37,6 +37,7 @@ type component struct {
 	fraction    *fraction
 	share       share
 	forced      exact.Poly // with a share: its roots count as forced
+	near        bool       // a frequency was taken as one of the network's, see tuned
 }
 
 // Signal is a sum of terms c·τ^m·e^{pτ} and impulses that begin (and, where
@@ -75,6 +76,7 @@ next:
 		for i := range out {
 			if out[i].joins(c) {
 				out[i].fraction = out[i].fraction.plus(c.fraction)
+				out[i].near = out[i].near || c.near
 				continue next
 			}
 		}
@@ -205,6 +207,18 @@ func (s *Signal) Coincides() bool {
 	return false
 }
 
+// NearCoincidence tells whether a source's frequency was taken as equal to a
+// natural frequency that it cannot be told from to within the bounds of stand-ins
+// for irrational values.
+func (s *Signal) NearCoincidence() bool {
+	for _, c := range s.comps {
+		if c.near {
+			return true
+		}
+	}
+	return false
+}
+
 // Add returns s + t. Both must come from the same Solution.
 func (s *Signal) Add(t *Signal) *Signal {
 	out := newSignal(s.solution, append(append([]component(nil), s.comps...), t.comps...), s.before)
@@ -290,8 +304,8 @@ func (s *Signal) Transform() (exact.Ratio, bool) {
 	return sum, true
 }
 
-// IsExact tells whether no number that the signal was computed from, apart
-// from element values, is a stand-in for an irrational one.
+// IsExact tells whether no number that the network, its sources and its state
+// were given is a stand-in for an irrational one.
 func (s *Signal) IsExact() bool { return s.solution.exact }
 
 // prepared builds the family of poles and the expansions.

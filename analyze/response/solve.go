@@ -125,9 +125,10 @@ func (s *Solution) components(ctx context.Context, k int, r *row) ([]component, 
 		if !ok || h.IsZero() {
 			continue
 		}
-		for _, d := range src.wave.drives(fmt.Sprintf("source %d", j), st.start, st.end) {
+		wave, near := src.wave.tuned(h)
+		for _, d := range wave.drives(fmt.Sprintf("source %d", j), st.start, st.end) {
 			f := newFraction(h.Mul(d.transform), denominator(h), denominator(d.transform), d.factors...)
-			out = append(out, component{from: d.from, until: st.end, cause: 1 + j, weight: d.weight, fraction: f})
+			out = append(out, component{from: d.from, until: st.end, cause: 1 + j, weight: d.weight, fraction: f, near: near})
 		}
 	}
 	return out, nil

@@ -183,7 +183,7 @@ func (x *sum) steady() *sum {
 // dominance is the sign of the sum for all τ ≥ from, when one real term is
 // larger than all others together from there on; 0 when that cannot be said.
 // The quotient of another term by it, τ^{m−m'}·e^{(σ−σ')τ}, must be falling
-// from there on: m = m' or τ ≥ (m−m')/(σ'−σ).
+// from there on (m = m' or τ ≥ (m−m')/(σ'−σ)), or constant.
 func (x *sum) dominance(from number.Ball) int {
 	best := -1
 	for i, t := range x.terms {
@@ -213,7 +213,7 @@ func (x *sum) dominance(from number.Ball) int {
 			}
 			gap := lead.pole.p.Re.Sub(t.pole.p.Re)
 			if i != best {
-				if s, ok := gap.Sign(); !ok || s < 0 || s == 0 && m >= top {
+				if s, ok := gap.Sign(); !ok || s < 0 || s == 0 && m > top {
 					return 0
 				}
 			}

@@ -30,6 +30,10 @@ type WaveTerm struct {
 	Power        int
 	Rate, Omega  number.Exact
 	Cosine, Sine number.Exact
+
+	// square, when set, is used for Omega²: the square of a natural frequency
+	// that Omega, a stand-in, cannot be told from.
+	square *big.Rat
 }
 
 // isExact tells whether no number of the wave is a stand-in.
@@ -155,8 +159,8 @@ func (t WaveTerm) factor() exact.Poly {
 }
 
 // kernel gives the transforms of τ^m e^{aτ} cos ωτ and τ^m e^{aτ} sin ωτ over
-// their common denominator: with z = s − a + jω they are the real and
-// imaginary part of m!·z^{m+1}, over ((s−a)² + ω²)^{m+1}.
+// their common denominator: with b = s − a and z = b + jω they are the real and
+// imaginary part of m!·z^{m+1}, over (b² + ω²)^{m+1}.
 func (t WaveTerm) kernel(m int) (cos, sin, den exact.Poly) {
 	base := exact.NewPoly(new(big.Rat).Neg(t.Rate.Rat()), big.NewRat(1, 1))
 	factorial := new(big.Rat).SetInt(new(big.Int).MulRange(1, int64(max(m, 1))))
@@ -164,12 +168,15 @@ func (t WaveTerm) kernel(m int) (cos, sin, den exact.Poly) {
 	if omega.Sign() == 0 {
 		return exact.Constant(factorial), exact.Poly{}, base.Pow(m + 1)
 	}
-	re, im := exact.Constant(factorial), exact.Poly{}
-	for range m + 1 {
-		re, im = re.Mul(base).Sub(im.Scale(omega)), im.Mul(base).Add(re.Scale(omega))
+	square := t.square
+	if square == nil {
+		square = new(big.Rat).Mul(omega, omega)
 	}
-	square := base.Mul(base).Add(exact.Constant(new(big.Rat).Mul(omega, omega)))
-	return re, im, square.Pow(m + 1)
+	re, im := exact.Constant(factorial), exact.Poly{} // z^k = re + jω·im
+	for range m + 1 {
+		re, im = re.Mul(base).Sub(im.Scale(square)), im.Mul(base).Add(re)
+	}
+	return re, im.Scale(omega), base.Mul(base).Add(exact.Constant(square)).Pow(m + 1)
 }
 
 // aged gives the term as it goes on at start, age after it began:
