@@ -317,12 +317,11 @@ func (r *modularRun) output(ctx context.Context, i int) (Poly, error) {
 	c := reconstructionFor(r.used[:r.primes[i]])
 	stride := r.degrees[i] + 1
 	ints := make([]*big.Int, stride)
-	acc := make([]uint64, c.words)
 	for k := range ints {
 		if err := ctx.Err(); err != nil {
 			return Poly{}, err
 		}
-		ints[k] = c.integer(r.residue[i][k:], stride, acc)
+		ints[k] = c.integer(r.residue[i][k:], stride)
 	}
 	return makePoly(ints, nil), nil
 }

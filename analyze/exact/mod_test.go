@@ -47,3 +47,53 @@ func TestModularArithmetic(t *testing.T) {
 		check("small", m.fromInt64(v), big.NewInt(v))
 	})
 }
+
+func TestReconstruction(t *testing.T) {
+	rapid.Check(t, func(t *rapid.T) {
+		k := rapid.IntRange(1, 150).Draw(t, "primes")
+		list := takeModuli(k)
+		limit := productOfModuli(list)
+		limit.Rsh(limit, 1)
+		x := drawInt(t, 61*k-2, "x")
+		if rapid.IntRange(0, 4).Draw(t, "extreme") == 0 {
+			x.Sub(limit, big.NewInt(rapid.Int64Range(0, 3).Draw(t, "below")))
+		}
+		if x.CmpAbs(limit) > 0 {
+			return
+		}
+		const stride = 3
+		r := make([]uint64, k*stride)
+		for i, m := range list {
+			r[i*stride+1] = m.fromBig(x)
+		}
+		if got := reconstructionFor(list).integer(r[1:], stride); got.Cmp(x) != 0 {
+			t.Fatalf("%v, want %v", got, x)
+		}
+	})
+}
+
+func TestInterpolation(t *testing.T) {
+	rapid.Check(t, func(t *rapid.T) {
+		m := takeModuli(10)[rapid.IntRange(0, 9).Draw(t, "prime")]
+		n := transformSize(rapid.IntRange(1, 300).Draw(t, "n"))
+		seed := rapid.Uint64().Draw(t, "seed")
+		c := make([]uint64, n)
+		for i := range c {
+			seed = seed*6364136223846793005 + 1442695040888963407
+			c[i] = m.fromUint(seed)
+		}
+		q := m.newPoints(n, m.fromUint(seed|1))
+		values := make([]uint64, n)
+		for k, x := range q.x {
+			for i := n - 1; i >= 0; i-- {
+				values[k] = m.add(m.mul(values[k], x), c[i])
+			}
+		}
+		q.interpolate(values)
+		for i := range c {
+			if c[i] != values[i] {
+				t.Fatalf("coefficient %d of %d", i, n)
+			}
+		}
+	})
+}

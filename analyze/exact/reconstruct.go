@@ -15,11 +15,29 @@ type reconstruction struct {
 	weights []uint64   // (M/pᵢ)⁻¹ mod pᵢ, in plain form, so that mul gives plain
 	product []uint64   // M
 	half    []uint64   // ⌊M/2⌋
+
+	// For many primes: the reconstructions from the first and the last half,
+	// combined by integer(first) + M₁·((second − first)/M₁ mod M₂).
+	first, second *reconstruction
+	m1, m2, inv   *big.Int // M₁, M₂ and 1/M₁ mod M₂
 }
+
+// directReconstruction is the number of primes up to which the terms are
+// added up one by one; from there on long products pay.
+const directReconstruction = 48
 
 // newReconstruction prepares the moduli.
 func newReconstruction(list []*modulus) *reconstruction {
 	k := len(list)
+	if k > directReconstruction {
+		c := &reconstruction{
+			moduli: list,
+			first:  newReconstruction(list[:k/2]), second: newReconstruction(list[k/2:]),
+			m1: productOfModuli(list[:k/2]), m2: productOfModuli(list[k/2:]),
+		}
+		c.inv = new(big.Int).ModInverse(c.m1, c.m2)
+		return c
+	}
 	c := &reconstruction{moduli: list, words: k + 1}
 	// Prefix products from the left and from the right give M/pᵢ.
 	left := make([]*big.Int, k+1)
@@ -42,9 +60,36 @@ func newReconstruction(list []*modulus) *reconstruction {
 	return c
 }
 
+// productOfModuli returns the product of the primes.
+func productOfModuli(list []*modulus) *big.Int {
+	switch len(list) {
+	case 0:
+		return big.NewInt(1)
+	case 1:
+		return new(big.Int).SetUint64(list[0].p)
+	}
+	a, b := productOfModuli(list[:len(list)/2]), productOfModuli(list[len(list)/2:])
+	return a.Mul(a, b)
+}
+
 // integer returns the integer with the residues r[0], r[stride], …
-func (c *reconstruction) integer(r []uint64, stride int, acc []uint64) *big.Int {
-	clear(acc)
+func (c *reconstruction) integer(r []uint64, stride int) *big.Int {
+	if c.first == nil {
+		return c.direct(r, stride)
+	}
+	x := c.first.integer(r, stride)
+	t := c.second.integer(r[len(c.first.moduli)*stride:], stride)
+	t.Sub(t, x)
+	t.Mod(t.Mul(t, c.inv), c.m2)
+	if t.Cmp(new(big.Int).Rsh(c.m2, 1)) > 0 {
+		t.Sub(t, c.m2)
+	}
+	return x.Add(x, t.Mul(t, c.m1))
+}
+
+// direct is integer for few primes.
+func (c *reconstruction) direct(r []uint64, stride int) *big.Int {
+	acc := make([]uint64, c.words)
 	// x = Σ (rᵢ·wᵢ mod pᵢ)·M/pᵢ, less a multiple of M that the fractions tell:
 	// x/M = Σ (rᵢ·wᵢ mod pᵢ)/pᵢ.
 	fraction := 0.0
@@ -145,7 +190,7 @@ func bigFromWords64(w []uint64) *big.Int {
 
 // keptReconstructions is the number of primes up to which tables are kept;
 // together they take about half a megabyte.
-const keptReconstructions = 48
+const keptReconstructions = directReconstruction
 
 var reconstructions [keptReconstructions + 1]struct {
 	sync.Mutex

@@ -252,13 +252,12 @@ func (y *system) solveAtJ(ctx context.Context, acting bool) (*gaussianInt, []gau
 		}
 	}
 	table := reconstructionFor(used)
-	acc := make([]uint64, table.words)
 	out := make([]gaussianInt, outputs)
 	stride := points * outputs
 	for k := range out {
-		out[k].re.Set(table.integer(residues[k*points:], stride, acc))
+		out[k].re.Set(table.integer(residues[k*points:], stride))
 		if points == 2 {
-			out[k].im.Set(table.integer(residues[k*points+1:], stride, acc))
+			out[k].im.Set(table.integer(residues[k*points+1:], stride))
 		}
 	}
 	return &out[0], out[1:], nil
