@@ -74,7 +74,7 @@ func (d *Doc) Text() string {
 	lines := make([]string, len(d.Lines))
 	for i, c := range d.Lines {
 		line := strings.TrimLeft(c.Text, "#")
-		lines[i] = strings.TrimRight(strings.TrimPrefix(line, " "), " \t")
+		lines[i] = strings.TrimPrefix(trimRight(line), " ")
 	}
 	return strings.Join(lines, "\n")
 }

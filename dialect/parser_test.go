@@ -288,8 +288,8 @@ func TestSlips(t *testing.T) {
 // applyEdits changes a text as edits say.
 func applyEdits(text string, edits []Edit) string {
 	sorted := slices.Clone(edits)
-	slices.SortFunc(sorted, func(a, b Edit) int { return b.Span.Start - a.Span.Start })
-	for _, e := range sorted {
+	slices.SortStableFunc(sorted, func(a, b Edit) int { return a.Span.Start - b.Span.Start })
+	for _, e := range slices.Backward(sorted) {
 		text = text[:e.Span.Start] + e.Text + text[e.Span.End:]
 	}
 	return text

@@ -22,6 +22,12 @@ func FuzzParse(f *testing.F) {
 	f.Add(wholeFile, 200)
 	f.Add("\x00\x01", 0)
 	f.Add("let x = \xb5", 8)
+	// Found by fuzzing: an unclosed "{" at the end, mixed line ends, a form
+	// feed in documentation.
+	f.Add("subnetwork {", 3)
+	f.Add("0\r #000\r\n", 3)
+	f.Add("00\x8d00000  ", 27)
+	f.Add("##\f", -14)
 	f.Fuzz(func(t *testing.T, text string, offset int) {
 		if len(text) > 1<<16 || countInvalid(text) >= maxInvalid { // tidying changes how large a part they are
 			return
