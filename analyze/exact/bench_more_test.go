@@ -3,6 +3,7 @@ package exact
 import (
 	"context"
 	"math/big"
+	"strconv"
 	"testing"
 	"time"
 )
@@ -157,4 +158,21 @@ func BenchmarkCancel(b *testing.B) {
 	}
 	b.ReportMetric(worst, "ms-worst")
 	b.ReportMetric(10, "mark-ms")
+}
+
+// BenchmarkSturm compares the two ways of counting real roots.
+func BenchmarkSturm(b *testing.B) {
+	for _, degree := range []int{4, 8, 12, 20, 40} {
+		p := randomPoly(5, degree, 300)
+		b.Run("sequence/"+strconv.Itoa(degree), func(b *testing.B) {
+			for b.Loop() {
+				SturmCount(p, nil, nil)
+			}
+		})
+		b.Run("isolation/"+strconv.Itoa(degree), func(b *testing.B) {
+			for b.Loop() {
+				IsolateRealRoots(p, nil, nil)
+			}
+		})
+	}
 }

@@ -38,6 +38,10 @@ func IsolateRealRoots(p Poly, lo, hi *big.Rat) []Interval {
 	return roots
 }
 
+// CountRealRoots returns the number of distinct real roots of p in the closed
+// range from lo to hi, a nil end being infinite; 0 for the zero polynomial.
+func CountRealRoots(p Poly, lo, hi *big.Rat) int { return len(IsolateRealRoots(p, lo, hi)) }
+
 // IsolateRealRootsContext is IsolateRealRoots with a way to stop it; the
 // error is the context's.
 func IsolateRealRootsContext(ctx context.Context, p Poly, lo, hi *big.Rat) ([]Interval, error) {

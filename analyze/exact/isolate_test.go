@@ -15,6 +15,9 @@ func checkIsolation(t interface{ Fatalf(string, ...any) }, p Poly, lo, hi *big.R
 	if got, want := len(roots), SturmCount(p, lo, hi); got != want {
 		t.Fatalf("%d roots of %v in [%v, %v], want %d", got, p, lo, hi, want)
 	}
+	if got := CountRealRoots(p, lo, hi); got != len(roots) {
+		t.Fatalf("%d roots counted, %d isolated", got, len(roots))
+	}
 	for i, v := range roots {
 		if v.Lo.Cmp(v.Hi) > 0 || lo != nil && v.Lo.Cmp(lo) < 0 || hi != nil && v.Hi.Cmp(hi) > 0 {
 			t.Fatalf("interval [%v, %v] leaves the range", v.Lo, v.Hi)

@@ -25,7 +25,7 @@ func NonNegative(p exact.Poly) bool {
 	if k := crossing.Order(); k > 0 {
 		crossing = crossing.Quo(exact.Monomial(big.NewRat(1, 1), k))
 	}
-	return crossing.Degree() < 1 || exact.SturmCount(crossing, new(big.Rat), nil) == 0
+	return crossing.Degree() < 1 || exact.CountRealRoots(crossing, new(big.Rat), nil) == 0
 }
 
 // NonNegativeRatio decides whether p(x)/q(x) ≥ 0 for every x ≥ 0 where it is

@@ -58,7 +58,7 @@ func simpleNegative(p exact.Poly) bool {
 	if exact.GCD(p, p.Derivative()).Degree() > 0 {
 		return false
 	}
-	return exact.SturmCount(p, nil, new(big.Rat)) == p.Degree()
+	return exact.CountRealRoots(p, nil, new(big.Rat)) == p.Degree()
 }
 
 // hurwitz tells whether every root of p has a negative real part, by Routh's
