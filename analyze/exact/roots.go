@@ -49,6 +49,7 @@ type rootUnit struct {
 	multiplicity int
 	squared      bool
 	solver       *rootSolver
+	bits         uint // least precision of the ball of a root known exactly
 }
 
 // rootPlace names a root of a unit: the index among the solver's essential
@@ -87,7 +88,9 @@ func Roots(ctx context.Context, p Poly) (*RootSet, error) {
 			set.units = append(set.units, part)
 		}
 	}
-	set.arrange()
+	if err := set.separate(ctx); err != nil {
+		return nil, err
+	}
 	return set, nil
 }
 

@@ -87,10 +87,13 @@ func (s *rootSolver) displace(i int) {
 	s.look(i)
 }
 
-// wantMore sets the goal of a point 30 bits beyond what it has reached.
+// wantMore sets the goal of a point beyond what it has reached.
 func (s *rootSolver) wantMore(i int) {
 	a := &s.roots[i]
-	a.goal = math.Max(a.goal, math.Min(-a.log, a.goal)+30)
+	if a.log > -a.goal {
+		return // already raised
+	}
+	a.goal += math.Max(30, a.goal/3)
 	a.tries = 0
 	if a.link >= 0 && a.link != i {
 		s.roots[a.link].goal = a.goal
@@ -120,7 +123,13 @@ func (s *rootSolver) apart(i, j int, radius []float64) bool {
 		return true
 	}
 	exact, e := s.difference(i, j)
-	return math.Ldexp(cmplx.Abs(exact), e) > both*(1+slack)
+	larger := math.Max(s.logRadius(i), s.logRadius(j)+float64(s.views[j].k-s.views[i].k))
+	return math.Log2(cmplx.Abs(exact))+float64(e)-slack > larger+1
+}
+
+// logRadius is log2 of the radius of a disc in units of 2^k.
+func (s *rootSolver) logRadius(i int) float64 {
+	return s.roots[i].log + math.Log2(cmplx.Abs(s.views[i].x)) + slack
 }
 
 // pairUp decides of each disc whether it is on the real axis, above or below,
@@ -132,14 +141,13 @@ func (s *rootSolver) pairUp() bool {
 	sure := true
 	for i := range s.roots {
 		a := &s.roots[i]
-		y := imag(s.views[i].x)
-		radius := math.Exp2(a.log+slack) * cmplx.Abs(s.views[i].x)
+		off := logAbs(a.y, a.words)-slack > s.logRadius(i)
 		switch {
 		case a.y.Sign() == 0:
 			axis = append(axis, i)
-		case math.Abs(y)*(1-slack) > radius && y > 0:
+		case off && a.y.Sign() > 0:
 			upper = append(upper, i)
-		case math.Abs(y)*(1-slack) > radius:
+		case off:
 			lower = append(lower, i)
 		case a.link >= 0:
 			sure = false // a pair of images about the axis: tell them from it

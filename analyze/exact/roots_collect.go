@@ -1,6 +1,7 @@
 package exact
 
 import (
+	"context"
 	"math"
 	"math/big"
 	"slices"
@@ -24,29 +25,41 @@ type enclosed struct {
 	rational *big.Rat
 }
 
-// essential returns one of them in a ball at the precision reached.
+// essential returns one of them in a ball at the precision reached, and with a
+// midpoint of prec bits at least. The midpoint is not rounded more coarsely than
+// the proved radius, which keeps the roots apart.
 func (u *rootUnit) essential(index int, prec uint) enclosed {
 	p := u.solver.poly
 	if p.Degree() == 1 {
 		r := p.Coeff(0)
 		r.Neg(r.Quo(r, p.Coeff(1)))
-		return enclosed{number.RealBall(number.BallFromRat(r, prec+8)), true, r}
+		return enclosed{number.RealBall(number.BallFromRat(r, max(prec, u.bits))), true, r}
 	}
 	i := u.solver.essential[index]
 	a := &u.solver.roots[i]
+	prec = max(prec, uint(-a.log)+16)
 	radius := u.solver.radius(i)
 	unit := a.k - 64*a.words + 1
-	re := number.BallFromFloat(dyadic(a.x, unit), prec+8).WithRadius(radius)
+	re := number.BallFromFloat(dyadic(a.x, unit), prec).WithRadius(radius)
 	if a.link == i {
 		e := enclosed{number.RealBall(re), true, nil}
 		if r := u.solver.rationalIn(i, re); r != nil {
 			e.rational = r
-			e.ball = number.RealBall(number.BallFromRat(r, prec+8))
+			e.ball = number.RealBall(number.BallFromRat(r, prec))
 		}
 		return e
 	}
-	im := number.BallFromFloat(dyadic(a.y, unit), prec+8).WithRadius(radius)
+	im := number.BallFromFloat(dyadic(a.y, unit), prec).WithRadius(radius)
 	return enclosed{number.ComplexBall{Re: re, Im: im}, false, nil}
+}
+
+// wantMore asks for a smaller ball of an essential root.
+func (u *rootUnit) wantMore(index int) {
+	if u.solver.poly.Degree() == 1 {
+		u.bits = max(64, u.bits) * 2
+		return
+	}
+	u.solver.wantMore(u.solver.essential[index])
 }
 
 // dyadic returns n·2^e.
@@ -136,7 +149,7 @@ func simplestBetween(lower, upper *big.Rat, most int) *big.Rat {
 // stands for: itself and its conjugate, or with squared the square roots of
 // these, lower half plane first.
 func (u *rootUnit) branches(index int, prec uint) []Root {
-	e := u.essential(index, prec+8)
+	e := u.essential(index, prec)
 	if u.squared {
 		return u.squareRoots(e)
 	}
@@ -190,14 +203,14 @@ func complexSquareRoot(y number.ComplexBall) number.ComplexBall {
 	return number.ComplexBall{Re: larger, Im: smaller}
 }
 
-// arrange fixes the order of the roots at the precision of the first
-// certification: by real part, those that the balls do not tell apart by the
-// magnitude of the imaginary part, the lower one of a pair first.
-func (s *RootSet) arrange() {
-	type placed struct {
-		places []rootPlace
-		re, im number.Ball
-	}
+// placed is one root or a pair of conjugates, on the way to its place.
+type placed struct {
+	places []rootPlace
+	re, im number.Ball
+}
+
+// everyRoot returns the roots as far as they are known, conjugates together.
+func (s *RootSet) everyRoot() []placed {
 	var all []placed
 	for ui, u := range s.units {
 		for index := range u.essentials() {
@@ -216,7 +229,57 @@ func (s *RootSet) arrange() {
 			}
 		}
 	}
-	slices.SortStableFunc(all, func(a, b placed) int { return a.re.Mid().Cmp(b.re.Mid()) })
+	return all
+}
+
+// separate refines roots, also those of different units, until their balls with
+// four times the radius do not meet. Balls refined later stay within these, so
+// they remain apart. Then the order is fixed.
+func (s *RootSet) separate(ctx context.Context) error {
+	for {
+		all := s.everyRoot()
+		slices.SortStableFunc(all, func(a, b placed) int { return a.re.Mid().Cmp(b.re.Mid()) })
+		wide := make([]number.ComplexBall, len(all))
+		widest := new(big.Float)
+		for i, g := range all {
+			wide[i] = number.ComplexBall{Re: fourfold(g.re), Im: fourfold(g.im)}
+			if r := wide[i].Re.Rad(); r.Cmp(widest) > 0 {
+				widest = r
+			}
+		}
+		apart := true
+		for i := range all {
+			reach := new(big.Float).Add(wide[i].Re.Upper(), widest)
+			for j := i + 1; j < len(all) && wide[j].Re.Mid().Cmp(reach) <= 0; j++ {
+				if wide[i].Overlaps(wide[j]) {
+					apart = false
+					for _, g := range []placed{all[i], all[j]} {
+						s.units[g.places[0].unit].wantMore(g.places[0].index)
+					}
+				}
+			}
+		}
+		if apart {
+			s.arrange(all)
+			return nil
+		}
+		for _, u := range s.units {
+			if err := u.solver.refine(ctx, basePrecision+1); err != nil {
+				return err
+			}
+		}
+	}
+}
+
+func fourfold(b number.Ball) number.Ball {
+	r := b.Rad()
+	return b.WithRadius(r.Mul(r, big.NewFloat(3)))
+}
+
+// arrange fixes the order of roots sorted by real part: those that the balls do
+// not tell apart in it by the magnitude of the imaginary part, the lower one of
+// a pair first.
+func (s *RootSet) arrange(all []placed) {
 	for i := 0; i < len(all); {
 		j := i + 1
 		for j < len(all) && all[j-1].re.Overlaps(all[j].re) {
@@ -235,7 +298,7 @@ func (s *RootSet) collect(prec uint) []Root {
 	branches := make([][][]Root, len(s.units))
 	for i, u := range s.units {
 		for index := range u.essentials() {
-			branches[i] = append(branches[i], u.branches(index, prec))
+			branches[i] = append(branches[i], u.branches(index, prec+8))
 		}
 	}
 	var out []Root

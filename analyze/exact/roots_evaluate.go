@@ -142,10 +142,7 @@ func (s *scratch) resize(w, z int) {
 func (e *evaluator) evaluate(z *fixedPoint, w int, s *scratch) evaluation {
 	s.resize(w, len(z.u))
 	base := int(math.Floor(z.log))
-	step := uint64(math.Ldexp(z.log-float64(base), 64)) // φ·2^64 < 2^64 as φ ≤ 1−2^-53
-	if z.log-float64(base) >= 1 {
-		step = math.MaxUint64
-	}
+	step := phaseStep(z.log)
 	phase := uint64(e.n) * step               // the fraction of nφ
 	whole, _ := bits.Mul64(uint64(e.n), step) // ⌊nφ⌋
 	top := e.top(z.k+base, step)              // M
@@ -173,6 +170,15 @@ func (e *evaluator) evaluate(z *fixedPoint, w int, s *scratch) evaluation {
 	}
 	rotate(s.dr, s.di, z, before, real, s)
 	return e.conclude(z, w, fraction, s)
+}
+
+// phaseStep returns φ·2^64 for the fractional part φ ≤ 1 − 2^-53 of log.
+func phaseStep(log float64) uint64 {
+	phi := log - math.Floor(log)
+	if phi >= 1 {
+		return math.MaxUint64
+	}
+	return uint64(math.Ldexp(phi, 64))
 }
 
 // top returns M: the largest bit length of a_i·2^κ_i.

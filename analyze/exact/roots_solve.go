@@ -5,6 +5,7 @@ import (
 	"errors"
 	"math"
 	"math/big"
+	"math/bits"
 	"math/cmplx"
 )
 
@@ -176,15 +177,30 @@ func (s *rootSolver) look(i int) {
 	}
 }
 
+// signedFloat returns x·2^(1−64·words) as the float64 next to it, 0 where that is
+// below its range.
 func signedFloat(x *big.Int, words int) float64 {
-	if words == 1 && x.IsInt64() {
-		return math.Ldexp(float64(x.Int64()), -63)
-	}
-	f := topFloat(padded(x, words))
+	f, e := leading(x)
+	f = math.Ldexp(f, e+1-64*words)
 	if x.Sign() < 0 {
 		return -f
 	}
 	return f
+}
+
+// logAbs returns log2 of |x|·2^(1−64·words), −Inf for 0.
+func logAbs(x *big.Int, words int) float64 {
+	f, e := leading(x)
+	return math.Log2(f) + float64(e+1-64*words)
+}
+
+// leading returns |x| as f·2^e up to 2^-52 of it.
+func leading(x *big.Int) (f float64, e int) {
+	raw := x.Bits()
+	for i := len(raw) - 1; i >= max(0, len(raw)-3); i-- {
+		f, e = math.Ldexp(f, bits.UintSize)+float64(raw[i]), i*bits.UintSize
+	}
+	return f, e
 }
 
 // leads tells whether the point is moved by itself: it is not the lower one of a
@@ -338,6 +354,9 @@ func (s *rootSolver) rethink(i int) {
 		a.y.Rsh(a.x, uint(10+a.words))
 		if a.y.Sign() == 0 {
 			a.y.SetInt64(1)
+		}
+		if i%2 == 1 {
+			a.y.Neg(a.y)
 		}
 		a.normalise()
 	case a.link >= 0:

@@ -76,7 +76,7 @@ func (e *evaluator) startingPoints() *rim {
 func (e *evaluator) roughEvaluation(z start, c []float64) (ratio complex128, noise bool) {
 	size := math.Log2(cmplx.Abs(z.x))
 	base := math.Floor(size)
-	step := uint64(math.Ldexp(size-base, 64))
+	step := phaseStep(size)
 	whole := z.k + int(base)
 	// c_i = a_i·2^(κ_i−M)
 	top := e.top(whole, step)
