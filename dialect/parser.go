@@ -66,6 +66,7 @@ type parser struct {
 	at     int
 	head   *Head
 	failed bool // a finding covers what follows, until the next sound place
+	told   bool // something is reported in this statement
 	depth  int  // nesting of brackets
 	commas int  // nesting of brackets inside which commas separate
 
@@ -151,7 +152,7 @@ func (p *parser) next(stop int) Statement {
 	head := Head{Span: Span{p.tokens[0].start, last.end}, Doc: doc}
 	p.tokens = append(p.tokens, token{tEnd, last.end, last.end})
 	p.at, p.depth, p.commas = 0, 0, 0
-	p.kind, p.unit, p.inValue, p.failed = NoKind, "", false, false
+	p.kind, p.unit, p.inValue, p.failed, p.told = NoKind, "", false, false, false
 
 	if head.Span.End-head.Span.Start > maxStatement {
 		return p.oversized(head.Span)

@@ -374,6 +374,9 @@ func (p *parser) badLetter(letter Word) {
 	folded := string(letter.Text[0] | 0x20)
 	if len(letter.Text) == 1 && isQuantityLetter(folded) {
 		p.fail(letter.Span, fmt.Sprintf("quantities are written with small letters: %s[…]", folded), p.only("write `"+folded+"`", letter.Span, folded))
+	} else if contains(matrixSets, letter.Text) {
+		p.fail(letter.Span, fmt.Sprintf("two-port parameters are asked as a matrix: matrix %s[…]", letter.Text),
+			p.repair("write `matrix "+letter.Text+"`", letter.Span, "matrix "+letter.Text))
 	} else if near := nearest(letter.Text, []string{"thevenin", "norton"}); near != "" {
 		p.fail(letter.Span, fmt.Sprintf("`%s` takes no subscripts; `%s` may be meant", letter.Text, near), p.only("write `"+near+"`", letter.Span, near))
 	} else {

@@ -149,3 +149,43 @@ func TestParseQuestion(t *testing.T) {
 		}
 	}
 }
+
+// TestTyping types every sound statement character by character above another
+// statement: at most one finding at any time, and the other stays whole.
+func TestTyping(t *testing.T) {
+	for _, c := range sound {
+		if strings.ContainsAny(c.text, "\n{") {
+			continue
+		}
+		for at := range c.text {
+			f := Parse("", c.text[:at]+"\nlet Q = 3\n")
+			if len(f.Findings) > 1 {
+				t.Errorf("%q: %d findings: %v", c.text[:at], len(f.Findings), f.Findings)
+			}
+			if n := len(f.Statements); n == 0 || sexp(f.Statements[n-1]) != "let Q 3" {
+				t.Errorf("%q: the next statement is lost", c.text[:at])
+			}
+		}
+	}
+}
+
+// TestDeletions deletes every token of every sound statement in turn: at most
+// one finding, and the next statement stays whole.
+func TestDeletions(t *testing.T) {
+	for _, c := range sound {
+		if strings.ContainsAny(c.text, "\n{") {
+			continue
+		}
+		tokens, _ := scanLine(c.text, 0, len(c.text), nil)
+		for _, tok := range tokens {
+			text := c.text[:tok.start] + c.text[tok.end:]
+			f := Parse("", text+"\nlet Q = 3\n")
+			if len(f.Findings) > 1 {
+				t.Errorf("%q without %q: %q: %d findings: %v", c.text, c.text[tok.start:tok.end], text, len(f.Findings), f.Findings)
+			}
+			if n := len(f.Statements); n == 0 || sexp(f.Statements[n-1]) != "let Q 3" {
+				t.Errorf("%q: the next statement is lost", text)
+			}
+		}
+	}
+}

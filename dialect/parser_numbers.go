@@ -177,7 +177,7 @@ func (p *parser) unitAfter(n *NumberExpr) Expr {
 	case f.Known && gap > 1:
 		p.fail(Span{n.Span.Start, t.end}, "a unit follows its number with at most one space", p.only("write one space", Span{n.Span.End, t.start}, " "))
 		p.failed = false
-	case !f.Known && (gap > 1 || isQualifierWord(symbol.Text)):
+	case !f.Known && (gap > 1 || isQualifierWord(symbol.Text) || p.kind != NoKind && isOptionWord(symbol.Text)):
 		return n
 	}
 	p.take()

@@ -138,10 +138,11 @@ func canonicalPrefix(letter string) string {
 // valueEndsAt says that the token n places on ends a part's value.
 func (p *parser) valueEndsAt(n int) bool {
 	switch p.peekAt(n).kind {
-	case tEnd, tComma, tBars, tClose, tPlusMinus, tWord:
+	case tEnd, tComma, tBars, tClose, tPlusMinus, tWord, tNumber:
 		return true
 	case tPlus, tMinus:
-		return p.percentAt(n)
+		after := p.peekAt(n + 1).kind
+		return p.percentAt(n) || after == tEnd || after == tUnitMark
 	}
 	return false
 }

@@ -59,7 +59,7 @@ func (p *parser) what() Asked {
 		return &InitialQuestion{p.word(p.take())}
 	case (p.isWord("poles") || p.isWord("zeros")) && alone:
 		return p.roots()
-	case p.isWord("matrix") && next.kind != tOpen && (alone || next.kind == tOpen):
+	case p.isWord("matrix") && (alone || next.kind == tOpen):
 		return p.matrix()
 	}
 	return p.expr()

@@ -106,10 +106,11 @@ func counted(n int, one, many string) string {
 }
 
 // fail reports a place that cannot be read. The statement is broken, and
-// nothing more is reported until a sound place is reached.
+// nothing more is reported until a sound place is reached. That a line ends
+// too early is not worth a word after another finding in its statement.
 func (p *parser) fail(span Span, message string, repairs ...Repair) {
 	p.head.Broken = true
-	if !p.failed {
+	if !p.failed && !(p.told && p.at < len(p.tokens) && p.is(tEnd)) {
 		p.complain(syntaxCode, span, message, repairs...)
 	}
 	p.failed = true
@@ -120,6 +121,7 @@ func (p *parser) complain(code Code, span Span, message string, repairs ...Repai
 	if p.record != nil || p.failed {
 		return
 	}
+	p.told = true
 	if len(p.file.Findings) >= maxFindings {
 		p.omitted++
 		return
@@ -225,12 +227,14 @@ func (p *parser) enter() bool {
 // leave undoes enter.
 func (p *parser) leave() { p.depth-- }
 
-// finish reports what is left of a statement that could have ended.
+// finish reports what is left of a statement that could have ended, unless an
+// earlier finding in it explains that.
 func (p *parser) finish() {
 	if p.is(tEnd) {
 		return
 	}
-	if !p.failed {
+	p.head.Broken = true
+	if !p.failed && !p.told {
 		p.leftover()
 	}
 	p.at = len(p.tokens) - 1
@@ -252,6 +256,8 @@ func (p *parser) leftover() {
 		p.fail(t.span(), "a tolerance stands only after the value of a part")
 	case t.kind == tBrace:
 		p.fail(t.span(), "`{` belongs to a subnetwork's first line: subnetwork NAME (TERMINAL, …) {")
+	case t.kind == tNumber && p.kind != NoKind && p.percentAt(-1):
+		p.fail(t.span(), "a tolerance starts with `±`", p.only("insert `±`", Span{t.start, t.start}, "±"))
 	case p.kind != NoKind && t.kind == tWord && isOptionWord(p.read(t)):
 		at := p.last()
 		p.fail(t.span(), "a comma is missing before this option", p.only("insert `,`", Span{at, at}, ","))
@@ -271,7 +277,12 @@ func (p *parser) leftover() {
 // missingOperator reports an operand that follows another without operator.
 func (p *parser) missingOperator(t token) {
 	if t.kind == tWord {
-		if near := nearest(p.read(t), qualifierNear); near != "" {
+		near := nearest(p.read(t), qualifierNear)
+		if near == p.read(t) {
+			p.fail(t.span(), fmt.Sprintf("%s is not expected here", p.describe()))
+			return
+		}
+		if near != "" {
 			p.fail(t.span(), fmt.Sprintf("`%s` is not expected here; `%s` may be meant", p.read(t), near), p.only("write `"+near+"`", t.span(), near))
 			return
 		}

@@ -196,6 +196,9 @@ func (p *parser) touching(w Word) {
 	if !p.touches(0) || t.kind != tMinus && t.kind != tPlus && t.kind != tDot && t.kind != tBad {
 		return
 	}
+	if p.head.Inline && !p.closeAhead() {
+		return // "-[wire W1- b": the "]" is missing
+	}
 	if t.kind == tBad {
 		p.foreign(t)
 		p.take()

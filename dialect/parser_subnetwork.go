@@ -174,7 +174,7 @@ func (p *parser) body(s *SubnetworkStatement, line int) {
 			end = s.Statements[n-1].Extent().End
 		}
 		s.BodyStop, s.BraceClose, s.Span.End = end, Span{end, end}, end
-		p.failed = false
+		p.failed, p.told = false, false
 		p.fail(s.BraceOpen, "this `{` is never closed; a `}` on a line of its own ends the subnetwork",
 			p.only("insert `}`", Span{end, end}, "\n"+strings.Repeat(" ", p.indent(line))+"}"))
 		s.Holes = append(s.Holes, &Hole{Span: Span{end, end}, Want: WantMark, Words: []string{"}"}})
@@ -192,7 +192,7 @@ func (p *parser) closeBrace(s *SubnetworkStatement) {
 	last := p.tokens[len(p.tokens)-1]
 	s.BodyStop, s.BraceClose, s.Span.End = brace.start, brace.span(), last.end
 	p.tokens = append(p.tokens, token{tEnd, last.end, last.end})
-	p.at, p.failed = 1, false
+	p.at, p.failed, p.told = 1, false, false
 	if !p.is(tEnd) {
 		p.fail(Span{p.peek().start, last.end}, "`}` stands alone on its line", p.repair("start a new line", Span{brace.end, p.peek().start}, "\n"))
 	}
