@@ -10,6 +10,19 @@ type base struct {
 	members []exact.Poly
 }
 
+// equal tells whether two bases have the same members in the same order.
+func (b base) equal(c base) bool {
+	if len(b.members) != len(c.members) {
+		return false
+	}
+	for i, m := range b.members {
+		if !m.Equal(c.members[i]) {
+			return false
+		}
+	}
+	return true
+}
+
 // insert refines the base so that p, square-free, becomes a product of members.
 func (b *base) insert(p exact.Poly) {
 	p = p.Primitive()

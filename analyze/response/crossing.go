@@ -24,6 +24,7 @@ func (c *Curve) edge(ctx context.Context, r Range, first bool) (number.Ball, err
 	for _, st := range stages {
 		s.scale = math.Max(s.scale, st.scale)
 	}
+	s.enough = func(e enclosure) bool { return e.hi <= 0 || e.lo > 0 }
 	e := &edgeSearch{search: s, first: first}
 	if first {
 		for i := range stages {

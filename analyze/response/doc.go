@@ -19,14 +19,22 @@
 //	base.go       coprime factors that several denominators share
 //	pole.go       poles to any precision
 //	fraction.go   partial fractions of one transform
+//	coincide.go   frequencies that cannot be told apart
 //	solve.go      from interval to interval: the state at each switching
+//	setup.go      networks and sources; what was before t = 0
 //	signal.go     Signal: parts, sums and scaling; values at an instant
+//	value.go      values at an instant, impulses
 //	segment.go    a signal between two breakpoints as one sum of terms
-//	sample.go     float64 samples with a bound of their error
-//	curve.go      signals under sums, products, absolute value, least and greatest
+//	floatterm.go sample.go
+//	              float64 samples with a bound of their error
+//	sumops.go     derivatives, limits, what dominates in the end
+//	curve.go product.go
+//	              signals under sums, products, absolute value, least and greatest
 //	panel.go      Taylor models: what is true between samples
-//	extreme.go    peaks and troughs, proved
+//	extreme.go conclude.go
+//	              peaks and troughs, proved
 //	crossing.go   first and last crossings of a level, proved
+//	turn.go       turning points, for tables and pictures
 //	integral.go   means, mean squares, energies
 //	measure.go    the measures of the notation
 //	decide.go     limits on a signal over a range of time

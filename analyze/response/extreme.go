@@ -84,6 +84,8 @@ type search struct {
 	// ceiling bounds the steady oscillation of the last stage from above, when
 	// it goes on for ever and oscillates; otherwise it is NaN.
 	ceiling float64
+	// enough, when set, replaces the question whether a box is below best.
+	enough func(enclosure) bool
 }
 
 func newSearch(c *Curve, stages []*stage) *search {
@@ -201,15 +203,36 @@ func (st *stage) transientBound(tau float64) float64 {
 	return total * (1 + 8*unit)
 }
 
-// makePanel builds the models of a box, if it is narrow enough for them.
+// makePanel builds the models of a box, if it is narrow enough for them. Where
+// terms cancel so much that float64 does not tell what has to be told, they are
+// expanded with balls, on a narrower panel.
 func (s *search) makePanel(b *box) bool {
 	b.m = b.a + (b.b-b.a)/2
 	b.h = math.Nextafter(math.Max(b.b-b.m, b.m-b.a), math.Inf(1))
 	models, ok := b.stage.models(b.m, b.h, s.scale)
-	if ok {
-		b.models = models
+	if !ok {
+		return false
 	}
-	return ok
+	for i := range models {
+		p := &models[i]
+		if p.err < 1e-11*p.size() || p.err < tolerance*s.scale/4 || s.told(s.evaluate(models, -1, 1)) {
+			continue
+		}
+		if b.stage.floats[i].rate*b.h > panelPhase/8 {
+			return false
+		}
+		models[i] = b.stage.sums[i].ballModel(b.m, b.h)
+	}
+	b.models = models
+	return true
+}
+
+// told tells whether an enclosure says all that the search wants to know.
+func (s *search) told(e enclosure) bool {
+	if s.enough != nil {
+		return s.enough(e)
+	}
+	return e.hi < s.best
 }
 
 // models expands every leaf on [m−h, m+h].
@@ -222,13 +245,6 @@ func (st *stage) models(m, h, scale float64) ([]model, bool) {
 		var ok bool
 		if out[i], ok = x.model(m, h, panelFloor*scale); !ok {
 			return nil, false
-		}
-		if out[i].err > 1e-11*out[i].size() && out[i].err > tolerance*scale/4 {
-			// Terms cancel: expand them with balls, on a panel narrow enough.
-			if x.rate*h > panelPhase/8 {
-				return nil, false
-			}
-			out[i] = st.sums[i].ballModel(m, h)
 		}
 	}
 	return out, true

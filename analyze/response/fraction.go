@@ -26,6 +26,7 @@ type fraction struct {
 // factors of source that are better kept apart.
 func newFraction(f exact.Ratio, natural, source exact.Poly, splits ...exact.Poly) *fraction {
 	impulses, rest := f.ProperPart()
+	f = exact.Ratio{Num: f.Num, Den: denominator(f)}
 	out := &fraction{ratio: f, impulses: impulses, num: rest.Num, den: rest.Den, natural: natural, source: source, splits: splits}
 	if rest.Num.IsZero() {
 		out.den = exact.PolyFromInt64s(1)
@@ -39,19 +40,27 @@ func newFraction(f exact.Ratio, natural, source exact.Poly, splits ...exact.Poly
 type expansion struct {
 	*fraction
 	family *family
-	powers []int // per pole of the family: order of the pole, 0 where there is none
+	powers []byte // per pole of the family: order of the pole, 0 where there is none
 
 	mu    sync.Mutex
 	cache map[uint][][]number.ComplexBall
 }
 
-func newExpansion(f *fraction, fam *family) *expansion {
-	exponents := fam.base.exponents(f.factors)
-	powers := make([]int, len(fam.poles))
-	for i, p := range fam.poles {
-		powers[i] = exponents[p.member]
+// expand returns the expansion of a fraction, made on first use.
+func (fam *family) expand(f *fraction) *expansion {
+	fam.mu.Lock()
+	defer fam.mu.Unlock()
+	if e, ok := fam.expansions[f]; ok {
+		return e
 	}
-	return &expansion{fraction: f, family: fam, powers: powers, cache: map[uint][][]number.ComplexBall{}}
+	exponents := fam.base.exponents(f.factors)
+	powers := make([]byte, len(fam.poles))
+	for i, p := range fam.poles {
+		powers[i] = byte(min(exponents[p.member], 255))
+	}
+	e := &expansion{fraction: f, family: fam, powers: powers, cache: map[uint][][]number.ComplexBall{}}
+	fam.expansions[f] = e
+	return e
 }
 
 // coefficients returns, per pole of the family (one of each conjugate pair)
@@ -66,8 +75,11 @@ func (e *expansion) coefficients(ctx context.Context, prec uint) ([][]number.Com
 	if err != nil {
 		return nil, err
 	}
+	cofactors, err := e.family.cofactorsOf(ctx, e.powers, poles, prec)
+	if err != nil {
+		return nil, err
+	}
 	num := complexCoefficients(e.num, prec)
-	lead := e.den.Leading()
 	out := make([][]number.ComplexBall, len(poles))
 	for i := range poles {
 		if e.powers[i] == 0 {
@@ -76,47 +88,62 @@ func (e *expansion) coefficients(ctx context.Context, prec uint) ([][]number.Com
 		if err := ctx.Err(); err != nil {
 			return nil, err
 		}
+		order := int(e.powers[i])
 		if e.family.poles[i].zero {
-			out[i] = e.atOrigin(e.powers[i], prec)
+			out[i] = e.atOrigin(order, prec)
 			continue
 		}
-		out[i] = e.atPole(poles, i, num, lead, prec)
+		series := divideSeries(taylor(num, poles[i], order), cofactors[i])
+		out[i] = e.byPower(series, e.family.poles[i].real)
 	}
 	e.cache[prec] = out
 	return out, nil
 }
 
-// atPole expands num/den around pole i to its order e. With x = s − p,
-// den = x^e·q(x), and q(x) = lead·Π (p − p_j + x)^{e_j} over the other poles:
-// a product of differences keeps its relative accuracy however high the degree.
-func (e *expansion) atPole(poles []number.ComplexBall, i int, num []number.ComplexBall, lead *big.Rat, prec uint) []number.ComplexBall {
-	order := e.powers[i]
-	p := poles[i]
-	q := make([]number.ComplexBall, order)
-	q[0] = realBall(number.BallFromRat(lead, prec))
-	for j := range poles {
-		if e.powers[j] == 0 {
+// cofactorsOf returns, for a monic denominator with poles of the given orders,
+// its expansion around each pole p of order e without the factor (s−p)^e, to e
+// terms: with x = s − p it is Π (p − p_j + x)^{e_j} over the other poles. A
+// product of differences keeps its relative accuracy however high the degree.
+func (fam *family) cofactorsOf(ctx context.Context, powers []byte, poles []number.ComplexBall, prec uint) ([][]number.ComplexBall, error) {
+	key := cofactorKey{prec, string(powers)}
+	fam.mu.Lock()
+	known, ok := fam.cofactors[key]
+	fam.mu.Unlock()
+	if ok {
+		return known, nil
+	}
+	out := make([][]number.ComplexBall, len(poles))
+	for i, p := range poles {
+		if powers[i] == 0 || fam.poles[i].zero {
 			continue
 		}
-		if j != i {
-			for range e.powers[j] {
-				multiplyLinear(q, p.Sub(poles[j]))
+		if err := ctx.Err(); err != nil {
+			return nil, err
+		}
+		q := make([]number.ComplexBall, powers[i])
+		q[0] = realBall(number.BallFromInt(1, prec))
+		for j := range poles {
+			for range powers[j] {
+				if j != i {
+					multiplyLinear(q, p.Sub(poles[j]))
+				}
+				if !fam.poles[j].real {
+					multiplyLinear(q, p.Sub(poles[j].Conj()))
+				}
 			}
 		}
-		if !e.family.poles[j].real {
-			for range e.powers[j] {
-				multiplyLinear(q, p.Sub(poles[j].Conj()))
-			}
-		}
+		out[i] = q
 	}
-	series := divideSeries(taylor(num, p, order), q)
-	return e.byPower(series, e.family.poles[i].real, prec)
+	fam.mu.Lock()
+	defer fam.mu.Unlock()
+	fam.cofactors[key] = out
+	return out, nil
 }
 
 // byPower turns the expansion Σ series[k]·x^k of x^e·num/den into coefficients
 // of τ^m: the term of 1/x^{m+1} is series[e−1−m], and its inverse transform
 // τ^m/m!. Coefficients of real poles are real.
-func (e *expansion) byPower(series []number.ComplexBall, real bool, prec uint) []number.ComplexBall {
+func (e *expansion) byPower(series []number.ComplexBall, real bool) []number.ComplexBall {
 	n := len(series)
 	out := make([]number.ComplexBall, n)
 	factorial := big.NewRat(1, 1)

@@ -133,7 +133,7 @@ func (c *Curve) integrate(ctx context.Context, r Range, square bool, prec uint) 
 	if err != nil {
 		return number.Ball{}, err
 	}
-	s := &search{curve: c, stages: stages}
+	s := &search{curve: c, stages: stages, enough: func(enclosure) bool { return false }}
 	for _, st := range stages {
 		s.scale = math.Max(s.scale, st.scale)
 	}

@@ -215,7 +215,7 @@ func (c *Curve) periodMean(ctx context.Context, st *stage, square bool) (number.
 	if err != nil {
 		return number.Ball{}, err
 	}
-	s := &search{curve: c, stages: []*stage{steady}, scale: steady.scale}
+	s := &search{curve: c, stages: []*stage{steady}, scale: steady.scale, enough: func(enclosure) bool { return false }}
 	steady.period = &period
 	v, err := s.integrateStage(ctx, steady, square, refinePrecision)
 	return v.Quo(period), err

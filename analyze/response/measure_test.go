@@ -301,3 +301,33 @@ func TestGreatestAndLeast(t *testing.T) {
 		t.Errorf("integral of the least: %s %v, want %g", v, err, want)
 	}
 }
+
+// The turning points of 1 − e^{−ζt}(…) are half periods apart.
+func TestTurns(t *testing.T) {
+	c := through(t, poly(25), poly(25, 10, 25), step(num(t, "1")))
+	wd := math.Sqrt(0.96)
+	times, complete, err := c.Turns(background, Range{To: rat(t, "20")}, 1000)
+	if err != nil || !complete {
+		t.Fatal(times, complete, err)
+	}
+	want := []float64{0, 0}
+	for k := 1; float64(k)*math.Pi/wd < 20; k++ {
+		want = append(want, float64(k)*math.Pi/wd)
+	}
+	want = append(want, 20)
+	if len(times) != len(want) {
+		t.Fatalf("turns %v, want %v", times, want)
+	}
+	for i := range times {
+		if math.Abs(times[i]-want[i]) > 1e-5 {
+			t.Errorf("turn %d at %g, want %g", i, times[i], want[i])
+		}
+	}
+	if times, complete, err = c.Turns(background, Range{To: rat(t, "20")}, 4); err != nil || complete || len(times) != 4 {
+		t.Errorf("cut list %v %v %v", times, complete, err)
+	}
+	h, err := c.Horizon(background, 0.01)
+	if err != nil || h < 20 || h > 40 { // e^{−h/5} = 1/100
+		t.Errorf("horizon %g %v", h, err)
+	}
+}

@@ -27,13 +27,50 @@ type family struct {
 	factors []*rootFactor // per member of the base
 	poles   []pole
 
-	mu    sync.Mutex
-	cache map[uint][]number.ComplexBall
+	mu         sync.Mutex
+	cache      map[uint][]number.ComplexBall
+	cofactors  map[cofactorKey][][]number.ComplexBall
+	expansions map[*fraction]*expansion
+}
+
+// cofactorKey is a working precision and the powers of the poles, as bytes.
+type cofactorKey struct {
+	prec   uint
+	powers string
+}
+
+// family returns the family of a base; equal bases share one, and with it all
+// that was computed.
+func (l *rootLibrary) family(ctx context.Context, b base) (*family, error) {
+	l.mu.Lock()
+	for _, f := range l.families {
+		if f.base.equal(b) {
+			l.mu.Unlock()
+			return f, nil
+		}
+	}
+	l.mu.Unlock()
+	f, err := newFamily(ctx, b, l)
+	if err != nil {
+		return nil, err
+	}
+	l.mu.Lock()
+	defer l.mu.Unlock()
+	for _, g := range l.families {
+		if g.base.equal(b) {
+			return g, nil
+		}
+	}
+	l.families = append(l.families, f)
+	return f, nil
 }
 
 // newFamily finds the kinds of the roots of every member of the base.
 func newFamily(ctx context.Context, b base, library *rootLibrary) (*family, error) {
-	f := &family{base: b, cache: map[uint][]number.ComplexBall{}}
+	f := &family{
+		base: b, cache: map[uint][]number.ComplexBall{},
+		cofactors: map[cofactorKey][][]number.ComplexBall{}, expansions: map[*fraction]*expansion{},
+	}
 	for i, m := range b.members {
 		rf, err := library.factor(ctx, m)
 		if err != nil {
@@ -70,8 +107,9 @@ func (f *family) at(ctx context.Context, prec uint) ([]number.ComplexBall, error
 // rootLibrary keeps the roots of every polynomial met, so that outputs of one
 // network share them.
 type rootLibrary struct {
-	mu      sync.Mutex
-	factors []*rootFactor
+	mu       sync.Mutex
+	factors  []*rootFactor
+	families []*family
 }
 
 // factor returns the roots of a square-free primitive polynomial.

@@ -6,6 +6,7 @@ import (
 	"math/big"
 	"sync"
 
+	"portlight/analyze/exact"
 	"portlight/dialect/number"
 )
 
@@ -264,8 +265,12 @@ type Piece struct {
 	Until *number.Exact // nil: for ever
 	Terms []Term
 	// Impulses[k] is the weight of the k-th derivative of the unit impulse at
-	// From.
-	Impulses []number.Ball
+	// From; ExactImpulses holds the same where it is rational for sure, else nil.
+	Impulses      []number.Ball
+	ExactImpulses []*big.Rat
+	// Transform is the Laplace transform in τ = t − From of the piece, impulses
+	// included, as if nothing ended it, where it is rational for sure.
+	Transform *exact.Ratio
 }
 
 // Pieces lists the signal's closed form, the coefficients to so many digits.
@@ -296,16 +301,34 @@ func (s *Signal) Pieces(ctx context.Context, digits int) ([]Piece, error) {
 		}
 		for k, g := range impulses {
 			if g.At != nil && g.At.Cmp(c.from) == 0 {
-				p.Impulses = g.Weights
+				p.Impulses, p.ExactImpulses = g.Weights, g.Exact
 				impulses[k].At = nil // said once
 			}
 		}
+		p.Transform = s.transformLike(c)
 		if len(p.Terms) > 0 || len(p.Impulses) > 0 {
 			out = append(out, p)
 		}
 	}
 	sortPieces(out)
 	return out, nil
+}
+
+// transformLike adds the transforms of the components that begin and end with c,
+// nil where one is not rational.
+func (s *Signal) transformLike(like *component) *exact.Ratio {
+	sum := exact.PolyRatio(exact.Poly{})
+	for i := range s.comps {
+		c := &s.comps[i]
+		if c.from.Cmp(like.from) != 0 || !sameInstant(c.until, like.until) {
+			continue
+		}
+		if c.weight.at != nil || c.share != wholeShare {
+			return nil
+		}
+		sum = sum.Add(c.fraction.ratio)
+	}
+	return &sum
 }
 
 func sortPieces(list []Piece) {

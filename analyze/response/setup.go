@@ -64,12 +64,16 @@ func Solve(_ context.Context, setup Setup) (*Solution, error) {
 	}
 	var starts []*big.Rat
 	var plants []plant
+	known := map[*network.System]*networkPlant{}
 	for _, v := range setup.Intervals {
 		if v.System == nil {
 			return nil, ErrIntervals
 		}
+		if known[v.System] == nil {
+			known[v.System] = newNetworkPlant(v.System, sources, initial)
+		}
 		starts = append(starts, v.Start.Rat())
-		plants = append(plants, newNetworkPlant(v.System, sources, initial))
+		plants = append(plants, known[v.System])
 	}
 	s, err := newSolution(starts, plants, sources)
 	if err != nil {
@@ -93,17 +97,24 @@ func Solve(_ context.Context, setup Setup) (*Solution, error) {
 // the network of each interval, and in the one before t = 0.
 func (s *Solution) Signal(ctx context.Context, output func(*network.System) (network.Output, error)) (*Signal, error) {
 	var comps []component
+	known := map[*networkPlant]*row{} // from the second interval on
 	for k, st := range s.stretches {
 		p := st.plant.(*networkPlant)
-		out, err := output(p.system)
-		if err != nil {
-			return nil, err
+		r := known[p]
+		if k == 0 || r == nil {
+			out, err := output(p.system)
+			if err != nil {
+				return nil, err
+			}
+			rows, err := p.rows(ctx, []network.Output{out}, k == 0)
+			if err != nil {
+				return nil, err
+			}
+			if r = rows[0]; k > 0 {
+				known[p] = r
+			}
 		}
-		rows, err := p.rows(ctx, []network.Output{out}, k == 0)
-		if err != nil {
-			return nil, err
-		}
-		more, err := s.components(ctx, k, rows[0])
+		more, err := s.components(ctx, k, r)
 		if err != nil {
 			return nil, err
 		}
@@ -114,6 +125,16 @@ func (s *Solution) Signal(ctx context.Context, output func(*network.System) (net
 		before = nil
 	}
 	return newSignal(s, comps, before), nil
+}
+
+// Waveform returns a source's wave as a signal, for differences with answers.
+func (s *Solution) Waveform(w Wave) *Signal {
+	var comps []component
+	for _, d := range w.drives("waveform", new(big.Rat), nil) {
+		f := newFraction(d.transform, one, denominator(d.transform), d.factors...)
+		comps = append(comps, component{from: d.from, cause: noCause, weight: d.weight, fraction: f})
+	}
+	return newSignal(s, comps, nil)
 }
 
 // networkPlant is a network in one position of its switches.

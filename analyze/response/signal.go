@@ -319,18 +319,12 @@ func (s *Signal) prepared(ctx context.Context) (*family, []*expansion, error) {
 	if kin == nil {
 		kin = s.comps
 	}
-	f, err := newFamily(ctx, baseOf(kin), s.solution.library)
+	f, err := s.solution.library.family(ctx, baseOf(kin))
 	if err != nil {
 		return nil, nil, err
 	}
-	byFraction := map[*fraction]*expansion{}
 	for _, c := range s.comps {
-		e, ok := byFraction[c.fraction]
-		if !ok {
-			e = newExpansion(c.fraction, f)
-			byFraction[c.fraction] = e
-		}
-		s.expansions = append(s.expansions, e)
+		s.expansions = append(s.expansions, f.expand(c.fraction))
 	}
 	s.family = f
 	return f, s.expansions, nil

@@ -39,6 +39,30 @@ type row struct {
 	initial  exact.Ratio
 	memories []exact.Ratio
 	sources  map[int]exact.Ratio
+
+	mu    sync.Mutex
+	known []rowFraction
+}
+
+// rowFraction is a fraction made before from a transfer and a source transform.
+type rowFraction struct {
+	transfer, drive exact.Ratio
+	fraction        *fraction
+}
+
+// fraction returns the fraction of transfer h times a source transform u, the
+// same one for the same arguments, so that its expansion is shared.
+func (r *row) fraction(h, u exact.Ratio, splits []exact.Poly) *fraction {
+	r.mu.Lock()
+	defer r.mu.Unlock()
+	for _, k := range r.known {
+		if k.transfer.Equal(h) && k.drive.Equal(u) {
+			return k.fraction
+		}
+	}
+	f := newFraction(h.Mul(u), denominator(h), denominator(u), splits...)
+	r.known = append(r.known, rowFraction{h, u, f})
+	return f
 }
 
 // plant is what a network in one position of its switches has to tell.
@@ -63,6 +87,7 @@ type stretch struct {
 
 	mu    sync.Mutex
 	rows  [][]component            // per memory, once built
+	all   *Signal                  // the components of all of them, in one
 	state map[uint][][]number.Ball // at the end: [cause][memory], per precision
 }
 
@@ -127,7 +152,7 @@ func (s *Solution) components(ctx context.Context, k int, r *row) ([]component, 
 		}
 		wave, near := src.wave.tuned(h)
 		for _, d := range wave.drives(fmt.Sprintf("source %d", j), st.start, st.end) {
-			f := newFraction(h.Mul(d.transform), denominator(h), denominator(d.transform), d.factors...)
+			f := r.fraction(h, d.transform, d.factors)
 			out = append(out, component{from: d.from, until: st.end, cause: 1 + j, weight: d.weight, fraction: f, near: near})
 		}
 	}
@@ -162,7 +187,7 @@ func (s *Solution) carriedComponents(ctx context.Context, k int, r *row) ([]comp
 		if !ok || h.IsZero() {
 			continue
 		}
-		f := newFraction(h, denominator(h), one)
+		f := r.fraction(h, unitRatio, nil)
 		for cause := range s.causes() {
 			if !anyOf(rows[p], cause) {
 				continue
@@ -227,25 +252,35 @@ func (s *Solution) stateAtEnd(ctx context.Context, k int, prec uint) ([][]number
 	if x, ok := st.state[prec]; ok {
 		return x, nil
 	}
+	if st.all == nil {
+		st.all = &Signal{solution: s}
+		for _, comps := range rows {
+			st.all.comps = append(st.all.comps, comps...)
+		}
+	}
+	parts, err := st.all.partsAt(ctx, st.end, Left, prec)
+	if err != nil {
+		return nil, err
+	}
 	out := make([][]number.Ball, s.causes())
 	for c := range out {
 		out[c] = make([]number.Ball, len(rows))
 	}
+	next := 0
 	for i, comps := range rows {
-		sig := &Signal{solution: s, comps: comps}
-		parts, err := sig.partsAt(ctx, st.end, Left, prec)
-		if err != nil {
-			return nil, err
-		}
-		for j, v := range parts {
-			out[comps[j].cause][i] = out[comps[j].cause][i].Add(v.ball(prec))
+		for _, c := range comps {
+			out[c.cause][i] = out[c.cause][i].Add(parts[next].ball(prec))
+			next++
 		}
 	}
 	st.state[prec] = out
 	return out, nil
 }
 
-var one = exact.PolyFromInt64s(1)
+var (
+	one       = exact.PolyFromInt64s(1)
+	unitRatio = exact.PolyRatio(one)
+)
 
 // denominator reads the zero value's denominator as 1.
 func denominator(f exact.Ratio) exact.Poly {

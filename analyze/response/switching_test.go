@@ -1,6 +1,7 @@
 package response
 
 import (
+	"fmt"
 	"math"
 	"math/big"
 	"testing"
@@ -15,6 +16,7 @@ type circuit struct {
 	elements []network.Element
 	nodes    int
 	setup    Setup
+	systems  map[string]*network.System
 }
 
 func newCircuit(t testing.TB, nodes int) *circuit { return &circuit{t: t, nodes: nodes} }
@@ -56,7 +58,14 @@ func (c *circuit) system(closed map[int]bool) *network.System {
 }
 
 func (c *circuit) from(start string, closed map[int]bool) {
-	c.setup.Intervals = append(c.setup.Intervals, Interval{Start: num(c.t, start), System: c.system(closed)})
+	key := fmt.Sprint(closed)
+	if c.systems == nil {
+		c.systems = map[string]*network.System{}
+	}
+	if c.systems[key] == nil {
+		c.systems[key] = c.system(closed)
+	}
+	c.setup.Intervals = append(c.setup.Intervals, Interval{Start: num(c.t, start), System: c.systems[key]})
 }
 
 func (c *circuit) solve() *Solution {
