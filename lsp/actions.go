@@ -39,13 +39,15 @@ func codeActions(ctx context.Context, r *request, p *protocol.CodeActionParams) 
 	if err != nil {
 		return nil, err
 	}
-	var actions []*protocol.CodeAction
+	var actions, acceptances []*protocol.CodeAction
 	span := r.mapper.span(at.file.Lines, p.Range)
 	for _, f := range found {
 		if f.Origin.File == at.file && f.Origin.Span.Start <= span.End && f.Origin.Span.End >= span.Start {
-			actions = append(actions, r.repairs(at, f, p.Context.Diagnostics)...)
+			mend, accept := r.repairs(at, f, p.Context.Diagnostics)
+			actions, acceptances = append(actions, mend...), append(acceptances, accept...)
 		}
 	}
+	actions = append(actions, acceptances...) // the first one offered is a repair where there is one
 	if list := obvious(at.file, found); len(list) > 0 {
 		actions = append(actions, r.fixAll(at, list))
 	}
@@ -70,16 +72,15 @@ func wanted(kind protocol.CodeActionKind, only []protocol.CodeActionKind) bool {
 	})
 }
 
-// repairs are the actions that mend, or accept, a finding.
-func (r *request) repairs(at *place, f dialect.Finding, shown []protocol.Diagnostic) []*protocol.CodeAction {
+// repairs are the actions that mend a finding, and those that accept it.
+func (r *request) repairs(at *place, f dialect.Finding, shown []protocol.Diagnostic) (mend, accept []*protocol.CodeAction) {
 	diagnostic := r.diagnostic(f)
 	for _, d := range shown {
 		if d.Range == diagnostic.Range && d.Code == diagnostic.Code {
 			diagnostic = d // as the client knows it
 		}
 	}
-	var list []*protocol.CodeAction
-	add := func(title string, changes edits, preferred bool) {
+	action := func(title string, changes edits, preferred bool) *protocol.CodeAction {
 		a := &protocol.CodeAction{
 			Title: capital(title), Kind: ptr(protocol.CodeActionKindQuickFix),
 			Diagnostics: []protocol.Diagnostic{diagnostic}, Edit: r.workspaceEdit(changes),
@@ -87,22 +88,22 @@ func (r *request) repairs(at *place, f dialect.Finding, shown []protocol.Diagnos
 		if preferred && r.client.preferredActions {
 			a.IsPreferred = ptr(true)
 		}
-		list = append(list, a)
+		return a
 	}
 	for _, repair := range f.Repairs {
 		changes := edits{}
 		for _, e := range repair.Edits {
 			changes.add(e.File, e.Span, e.Text)
 		}
-		add(repair.Title, changes, repair.Preferred)
+		mend = append(mend, action(repair.Title, changes, repair.Preferred))
 	}
 	if f.Severity != dialect.Error {
 		changes := edits{}
 		offset := lineAbove(at.file, f.Origin.Span.Start)
 		changes.add(at.file, dialect.Span{Start: offset, End: offset}, fmt.Sprintf("allow %s because \"it is meant so\"\n", f.Code))
-		add(fmt.Sprintf("accept %s in this file, with a reason", f.Code), changes, false)
+		accept = append(accept, action(fmt.Sprintf("accept %s in this file, with a reason", f.Code), changes, false))
 	}
-	return list
+	return mend, accept
 }
 
 // lineAbove is the start of the line above which a statement about the place
