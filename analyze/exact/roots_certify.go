@@ -2,6 +2,7 @@ package exact
 
 import (
 	"math"
+	"math/big"
 	"math/cmplx"
 )
 
@@ -67,7 +68,7 @@ func (s *rootSolver) isolated() bool {
 			isolated = false
 			s.wantMore(i)
 			s.wantMore(j)
-			if s.roots[j].crowded++; s.roots[j].crowded%crowdedRounds == 0 {
+			if s.twice(i, j) {
 				s.displace(j)
 			}
 		}
@@ -75,14 +76,42 @@ func (s *rootSolver) isolated() bool {
 	return isolated
 }
 
-// crowdedRounds is the number of times that the goal of overlapping discs is
-// raised before it is thought that two points went for one root.
-const crowdedRounds = 4
+// twice tells whether two points with overlapping discs seem to have gone for the
+// same roots: on a circle around the discs, wide against them, z·p'/p is about
+// m over the relative radius if m roots are within. Fewer roots than points mean
+// that one point is too many. A guess, which decides about the way only.
+func (s *rootSolver) twice(i, j int) bool {
+	a := s.roots[i]
+	reach := int(math.Min(-a.log, -s.roots[j].log) / 2) // the circle's radius is 2^-reach
+	if reach < 20 {
+		return false
+	}
+	a.x, a.y = new(big.Int).Set(a.x), new(big.Int).Set(a.y)
+	a.x.Add(a.x, new(big.Int).Rsh(s.roots[i].y, uint(reach)))
+	a.y.Sub(a.y, new(big.Int).Rsh(s.roots[i].x, uint(reach))) // z·(1 − j·2^-reach)
+	a.normalise()
+	ev := s.value.evaluate(a.fixed(), a.work, &s.space)
+	if ev.logP < ev.logEP+10 || ev.logD < ev.logED+10 {
+		return false
+	}
+	within := math.Exp2(ev.logD - ev.logP - float64(reach))
+	points := 1.0
+	for k := range s.roots {
+		if k == i {
+			continue
+		}
+		if d, e := s.difference(i, k); math.Log2(cmplx.Abs(d))+float64(e) < -float64(reach)-4 || d == 0 {
+			points++
+		}
+	}
+	return within < points-0.6
+}
 
 // displace moves a point that may have gone for the root of another one away:
 // the repulsion sends it to a root that has none.
 func (s *rootSolver) displace(i int) {
-	s.place(i, s.value.rim.again(i, s.roots[i].crowded))
+	s.place(i, s.value.rim.again(i, s.roots[i].displaced))
+	s.roots[i].displaced++
 	s.roots[i].tries = 0
 	s.look(i)
 }

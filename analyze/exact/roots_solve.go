@@ -45,16 +45,16 @@ const slack = 0x1p-20
 // approximation is z = (x + j·y)·2^(k−64Z+1); the longer of x and y has 64Z−1
 // bits.
 type approximation struct {
-	x, y    *big.Int
-	words   int // Z
-	k       int
-	work    int     // W of the evaluations
-	log     float64 // the root is within 2^log·|z|; +Inf where nothing is known
-	goal    float64 // wanted: log ≤ −goal
-	step    float64 // size of the last correction, relative
-	tries   int     // corrections since the last change of plan
-	crowded int     // rounds in which the disc was not disjoint
-	link    int     // index of the mirror image that is kept in step, own index for a real point, −1 for none
+	x, y      *big.Int
+	words     int // Z
+	k         int
+	work      int     // W of the evaluations
+	log       float64 // the root is within 2^log·|z|; +Inf where nothing is known
+	goal      float64 // wanted: log ≤ −goal
+	step      float64 // size of the last correction, relative
+	tries     int     // corrections since the last change of plan
+	displaced int     // times that it was sent elsewhere
+	link      int     // index of the mirror image that is kept in step, own index for a real point, −1 for none
 }
 
 func newRootSolver(p Poly) *rootSolver {
