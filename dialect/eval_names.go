@@ -141,22 +141,18 @@ func (h contents) words() string {
 // constant works out a let or parameter in a setting. asker is who needs it,
 // for reporting a cycle.
 func (b *builder) constant(inst *instance, sym *Symbol, in setting, span Span, asker *evaluator) operand {
-	m := inst.memo[sym.index]
-	if m == nil {
-		m = &memo{}
-		inst.memo[sym.index] = m
-	}
-	if m.done[in] {
-		return m.value[in]
+	m := &inst.memo[sym.index]
+	if o, ok := m.known(in); ok {
+		return o
 	}
 	if m.busy {
 		b.reportCycle(asker, sym, span)
 		return operand{}
 	}
 	m.busy = true
-	m.value[in] = b.evaluateConstant(inst, sym, in)
-	m.busy, m.done[in] = false, true
-	return m.value[in]
+	o := b.evaluateConstant(inst, sym, in)
+	m.busy = false
+	return m.keep(in, o)
 }
 
 func (b *builder) evaluateConstant(inst *instance, sym *Symbol, in setting) operand {
@@ -293,22 +289,18 @@ func (e *evaluator) functionOf(x *NameExpr, inst *instance, sym *Symbol) operand
 
 // function works out a function statement, once.
 func (b *builder) function(inst *instance, sym *Symbol, span Span, asker *evaluator) operand {
-	m := inst.memo[sym.index]
-	if m == nil {
-		m = &memo{}
-		inst.memo[sym.index] = m
-	}
-	if m.done[inFunction] {
-		return m.value[inFunction]
+	m := &inst.memo[sym.index]
+	if o, ok := m.known(inFunction); ok {
+		return o
 	}
 	if m.busy {
 		b.reportCycle(asker, sym, span)
 		return operand{}
 	}
 	m.busy = true
-	m.value[inFunction] = b.evaluateFunction(inst, sym)
-	m.busy, m.done[inFunction] = false, true
-	return m.value[inFunction]
+	o := b.evaluateFunction(inst, sym)
+	m.busy = false
+	return m.keep(inFunction, o)
 }
 
 func (b *builder) evaluateFunction(inst *instance, sym *Symbol) operand {

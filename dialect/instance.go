@@ -15,18 +15,48 @@ type instance struct {
 	children map[int]*instance // by the use's symbol index
 	// arguments of the use, by the parameter's symbol index.
 	arguments map[int]*Parameter
-	memo      []*memo // of lets, parameters, functions and part values
+	memo      []memo // of lets, parameters, functions and part values
 
 	firstPart, lastPart int // the parts made by it, those inside it included
 	inflow              map[int][]PartEnd
 	unwired             []bool // per slot of scope.parts: no ends known
 }
 
-// memo is the value of a name that is being or has been worked out.
+// memo is the value of a name that is being or has been worked out, in each
+// setting it was needed in.
 type memo struct {
 	busy  bool
-	done  [contexts]bool
-	value [contexts]operand
+	first memoValue
+	more  []memoValue
+}
+
+type memoValue struct {
+	done    bool
+	in      setting
+	operand operand
+}
+
+// known is the value in a setting, if it has been worked out.
+func (m *memo) known(in setting) (operand, bool) {
+	if m.first.done && m.first.in == in {
+		return m.first.operand, true
+	}
+	for i := range m.more {
+		if m.more[i].in == in {
+			return m.more[i].operand, true
+		}
+	}
+	return operand{}, false
+}
+
+func (m *memo) keep(in setting, o operand) operand {
+	v := memoValue{true, in, o}
+	if m.first.done {
+		m.more = append(m.more, v)
+	} else {
+		m.first = v
+	}
+	return o
 }
 
 // builder makes a Description, or only checks a body when it is a trial.
@@ -89,7 +119,7 @@ func (b *builder) buildMain(u *unit) {
 func (b *builder) newInstance(s *scope, parent *instance, use []Origin, prefix string) *instance {
 	inst := &instance{
 		scope: s, parent: parent, use: use, prefix: prefix,
-		slots: make([]int, len(s.symbols)), memo: make([]*memo, len(s.symbols)),
+		slots: make([]int, len(s.symbols)), memo: make([]memo, len(s.symbols)),
 	}
 	for i := range inst.slots {
 		inst.slots[i] = -1

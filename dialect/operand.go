@@ -17,7 +17,6 @@ const (
 	inSource                  // a source: t, or quantities with coefficients in s
 	inFunction                // a function: responses over excitations
 	inSignal                  // tell and require
-	contexts
 )
 
 // contents is what occurs in an expression.

@@ -1,6 +1,7 @@
 package dialect
 
 import (
+	"math"
 	"math/big"
 	"sort"
 	"strconv"
@@ -63,33 +64,54 @@ var seriesCache = func() map[string][]int {
 	return cache
 }()
 
-// preferredIn tells whether a value is in a series, and its neighbours there.
-func preferredIn(series string, x number.Exact) (below, above number.Exact, in bool) {
-	values := seriesCache[series]
-	r := x.Rat()
-	if len(values) == 0 || r.Sign() <= 0 {
-		return x, x, true
+// powersOfTen holds the powers that values are compared with.
+var powersOfTen = func() (list [81]*big.Rat) {
+	for i := range list {
+		list[i] = powerOfTen(i - 40)
 	}
-	_, exponent := roundSignificant(r, 18)
-	for powerOfTen(exponent).Cmp(r) > 0 {
+	return list
+}()
+
+// inSeries tells whether a positive value is in a series; its float64 picks
+// the only candidate, which is then compared exactly.
+func inSeries(values []int, x number.Exact) bool {
+	f := x.Float()
+	exponent := int(math.Floor(math.Log10(f))) - 2
+	if !(f > 0) || exponent < -39 || exponent > 38 {
+		return false
+	}
+	scaled := f / math.Pow(10, float64(exponent))
+	if scaled >= 999.5 {
+		scaled, exponent = scaled/10, exponent+1
+	}
+	v := int(math.Round(scaled))
+	if i := sort.SearchInts(values, v); i == len(values) || values[i] != v || math.Abs(scaled-float64(v)) > 1e-6 {
+		return false
+	}
+	var candidate big.Rat
+	return candidate.Mul(candidate.SetInt64(int64(v)), powersOfTen[exponent+40]).Cmp(x.Rat()) == 0
+}
+
+// neighboursIn gives the values of a series next to one that is not in it.
+func neighboursIn(values []int, x number.Exact) (below, above number.Exact) {
+	_, exponent := roundSignificant(x.Rat(), 18)
+	for powerOfTen(exponent).Cmp(x.Rat()) > 0 {
 		exponent--
 	}
 	scale := powerOfTen(exponent - 2)
-	scaled := new(big.Rat).Quo(r, scale) // 100 ≤ scaled < 1000
-	at := func(i int) *big.Rat {
+	scaled := new(big.Rat).Quo(x.Rat(), scale) // 100 ≤ scaled < 1000
+	at := func(i int) number.Exact {
+		v := big.NewRat(1000, 1)
 		switch {
 		case i < 0:
-			return new(big.Rat).Mul(big.NewRat(int64(values[len(values)-1]), 10), scale)
-		case i >= len(values):
-			return new(big.Rat).Mul(big.NewRat(1000, 1), scale)
+			v = big.NewRat(int64(values[len(values)-1]), 10)
+		case i < len(values):
+			v = big.NewRat(int64(values[i]), 1)
 		}
-		return new(big.Rat).Mul(big.NewRat(int64(values[i]), 1), scale)
+		return number.FromRat(v.Mul(v, scale))
 	}
 	i := sort.Search(len(values), func(i int) bool { return big.NewRat(int64(values[i]), 1).Cmp(scaled) >= 0 })
-	if i < len(values) && big.NewRat(int64(values[i]), 1).Cmp(scaled) == 0 {
-		return x, x, true
-	}
-	return number.FromRat(at(i - 1)), number.FromRat(at(i)), false
+	return at(i - 1), at(i)
 }
 
 // preference is a prefer statement.
@@ -130,18 +152,14 @@ func (b *builder) seriesFor(kind Kind, t *Tolerance, value number.Exact) []strin
 	if t == nil || !strings.Contains(t.Text, "%") {
 		return nil
 	}
-	width, err := t.High.Sub(t.Low).Quo(value.Mul(number.FromInt(2)))
-	if err != nil {
-		return nil
-	}
 	// The tolerances that the series were made for; coarse tolerances are sold
 	// in E24 values too (common practice, no source).
-	w := width.Abs().Rat()
+	width := (t.High.Float() - t.Low.Float()) / (2 * value.Float())
 	for _, step := range [...]struct {
-		series   string
-		per1000s int64
-	}{{"E192", 5}, {"E96", 10}, {"E48", 20}} {
-		if w.Cmp(big.NewRat(step.per1000s, 1000)) <= 0 {
+		series string
+		width  float64
+	}{{"E192", 0.005}, {"E96", 0.01}, {"E48", 0.02}} {
+		if math.Abs(width) <= step.width*1.0001 {
 			return []string{step.series, "E24"}
 		}
 	}
@@ -155,29 +173,29 @@ func (b *builder) preferred(inst *instance, sym *Symbol, p *Part, st *PartStatem
 	default:
 		return
 	}
-	if sign, _ := p.Value.Sign(); sign <= 0 || !p.Value.IsExact() && b.prefer[p.Kind] == nil {
+	preference := b.prefer[p.Kind]
+	if preference == nil && (p.Tolerance == nil || !literalValue(st.Value)) {
+		return
+	}
+	if sign, _ := p.Value.Sign(); sign <= 0 {
 		return
 	}
 	list := b.seriesFor(p.Kind, p.Tolerance, p.Value)
-	if len(list) == 0 || b.prefer[p.Kind] == nil && (b.windingResistance(inst, sym) || !literalValue(st.Value)) {
-		return
-	}
-	var below, above number.Exact
-	for i, series := range list {
-		lower, upper, in := preferredIn(series, p.Value)
-		if in {
+	for _, series := range list {
+		if inSeries(seriesCache[series], p.Value) {
 			return
 		}
-		if i == 0 {
-			below, above = lower, upper
-		}
 	}
+	if len(list) == 0 || preference == nil && b.windingResistance(inst, sym) {
+		return
+	}
+	below, above := neighboursIn(seriesCache[list[0]], p.Value)
 	unit := kindDimension(p.Kind)
 	f := b.report(inst, st.Value.Extent(), "not-preferred", "%s is not a value of %s: its neighbours are %s and %s",
 		valueText(inst.scope.unit.file, st.Value.Extent()), list[0], FormatQuantity(below, unit), FormatQuantity(above, unit))
-	if preference := b.prefer[p.Kind]; preference == nil {
+	if preference == nil {
 		f.as(Hint)
-	} else if f.f != nil {
+	} else {
 		f.relate(b.instances[0].scope.unit.file, preference.at.Span, "the preferred series")
 	}
 	neighbours := []number.Exact{below, above}

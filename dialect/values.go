@@ -7,22 +7,18 @@ import (
 // nominal works out the value of a resistor, inductor or capacitor, once per
 // instance. asker is who needs it, for reporting a cycle.
 func (b *builder) nominal(inst *instance, sym *Symbol, span Span, asker *evaluator) operand {
-	m := inst.memo[sym.index]
-	if m == nil {
-		m = &memo{}
-		inst.memo[sym.index] = m
-	}
-	if m.done[inConstant] {
-		return m.value[inConstant]
+	m := &inst.memo[sym.index]
+	if o, ok := m.known(inConstant); ok {
+		return o
 	}
 	if m.busy {
 		b.reportCycle(asker, sym, span)
 		return operand{}
 	}
 	m.busy = true
-	m.value[inConstant] = b.evaluateNominal(inst, sym)
-	m.busy, m.done[inConstant] = false, true
-	return m.value[inConstant]
+	o := b.evaluateNominal(inst, sym)
+	m.busy = false
+	return m.keep(inConstant, o)
 }
 
 // kindDimension is the dimension of a kind's value.
