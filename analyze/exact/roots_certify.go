@@ -13,7 +13,7 @@ import (
 func (s *rootSolver) match() {
 	for i := range s.roots {
 		a := &s.roots[i]
-		if a.link >= 0 || a.step > 0.1 {
+		if a.link >= 0 || a.step > 0.01 {
 			continue
 		}
 		x, k := s.views[i].x, s.views[i].k
@@ -37,13 +37,13 @@ func (s *rootSolver) match() {
 			nearest = math.Min(nearest, cmplx.Abs(x-y))
 		}
 		switch {
-		case math.Abs(imag(x)) < nearest/100 && a.tries < 20:
+		case math.Abs(imag(x)) < nearest/100 && a.step < nearest/10 && a.tries < 20:
 			a.link = i
 			a.y.SetInt64(0)
 			a.normalise()
 			a.log, a.tries = math.Inf(1), 0
 			s.look(i)
-		case twin >= 0 && s.roots[twin].link < 0 && twinDistance < math.Min(nearest, second)/10 && imag(x) != 0:
+		case twin >= 0 && s.roots[twin].link < 0 && twinDistance < math.Min(nearest, second)/10 && a.step < math.Abs(imag(x))/8:
 			leader, follower := min(i, twin), max(i, twin)
 			s.roots[leader].link, s.roots[follower].link = follower, leader
 			s.roots[leader].tries, s.roots[follower].tries = 0, 0

@@ -160,9 +160,9 @@ func (e *evaluator) evaluate(z *fixedPoint, w int, s *scratch) evaluation {
 		if i < e.n-1 {
 			rotate(s.dr, s.di, z, before, real, s)
 		}
-		addWords(s.dr, s.re)
+		addFixed(s.dr, s.re)
 		if !real {
-			addWords(s.di, s.im)
+			addFixed(s.di, s.im)
 		}
 		rotate(s.re, s.im, z, shift, real, s)
 		e.addCoefficient(s.re, i, kappa-top+fraction, z.uneg && i&1 == 1)
@@ -336,8 +336,8 @@ func rotateLong(re, im []uint64, z *fixedPoint, shift int, real bool, s *scratch
 	mulSigned(s.t2, im, z.v)
 	mulSigned(s.t3, re, z.v)
 	mulSigned(s.t4, im, z.u)
-	subWords(s.t1, s.t2)
-	addWords(s.t3, s.t4)
+	subFixed(s.t1, s.t2)
+	addFixed(s.t3, s.t4)
 	shiftInto(re, s.t1, n-1, left)
 	shiftInto(im, s.t3, n-1, left)
 }
@@ -371,11 +371,11 @@ func mulSigned(t, a, u []uint64) {
 		row[w] = carry
 	}
 	if int64(a[w-1]) < 0 {
-		subWords(t[w:], u)
+		subFixed(t[w:], u)
 	}
 }
 
-func addWords(x, y []uint64) {
+func addFixed(x, y []uint64) {
 	var c uint64
 	y = y[:len(x)]
 	for i := range x {
@@ -383,7 +383,7 @@ func addWords(x, y []uint64) {
 	}
 }
 
-func subWords(x, y []uint64) {
+func subFixed(x, y []uint64) {
 	var c uint64
 	y = y[:len(x)]
 	for i := range x {

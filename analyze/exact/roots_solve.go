@@ -95,7 +95,7 @@ func (s *rootSolver) begin() {
 }
 
 func newApproximation(z start) approximation {
-	a := approximation{words: 1, k: z.k, work: 2, log: math.Inf(1), step: 0.05, link: -1}
+	a := approximation{words: 1, k: z.k, work: 2, log: math.Inf(1), step: 0x1p-10, link: -1}
 	a.x = scaleFloat(real(z.x), 63)
 	a.y = scaleFloat(imag(z.x), 63)
 	a.normalise()
@@ -344,7 +344,7 @@ func (s *rootSolver) place(i int, z start) {
 }
 
 // rethink undoes a guess that did not work out: that a point is real, or one of
-// a pair, or of the length to tell it from its neighbours.
+// a pair.
 func (s *rootSolver) rethink(i int) {
 	a := &s.roots[i]
 	a.tries = 0
@@ -363,7 +363,6 @@ func (s *rootSolver) rethink(i int) {
 		s.roots[a.link].link = -1
 		a.link = -1
 	}
-	a.work++
 }
 
 // repulsion is Σ z_i/(z_i − z_j), with exact differences where the views are

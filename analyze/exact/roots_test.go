@@ -272,10 +272,23 @@ func TestWideSpread(t *testing.T) {
 	}
 	checkRoots(t, decades, 100)
 	far := PolyFromInt64s(1)
-	for k := int64(-10); k <= 10; k++ {
-		far = far.Mul(NewPoly(powerOfTenRat(60*k), powerOfTenRat(30*k), powerOfTenRat(-30*k))).Mul(linear(powerOfTenRat(40 * k)))
+	for k := int64(-5); k <= 5; k++ {
+		far = far.Mul(NewPoly(powerOfTenRat(60*k), powerOfTenRat(30*k), big.NewRat(2, 1))).Mul(linear(powerOfTenRat(30 * k)))
 	}
 	checkRoots(t, far, 64)
+	// Roots from 1e-450 to 1e600, some pairs closer than 1e-300 of themselves:
+	// −10^30k and −10^60k nearly, and −10^40k.
+	extreme := PolyFromInt64s(1)
+	for k := int64(-10); k <= 10; k++ {
+		extreme = extreme.Mul(NewPoly(powerOfTenRat(60*k), powerOfTenRat(30*k), powerOfTenRat(-30*k))).Mul(linear(powerOfTenRat(40 * k)))
+	}
+	total := 0
+	for _, r := range rootsAt(t, extreme, 53) {
+		total += r.Multiplicity
+	}
+	if total != 63 {
+		t.Errorf("%d roots", total)
+	}
 	// Coefficients of 1e±300 in no order.
 	source := rand.New(rand.NewPCG(7, 11))
 	c := make([]*big.Rat, 41)
