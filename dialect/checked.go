@@ -3,9 +3,12 @@ package dialect
 import (
 	"errors"
 	"fmt"
+	"math/big"
 	"path/filepath"
 	"strings"
 	"sync"
+
+	"portlight/dialect/number"
 )
 
 // Reader hands in the file that a use statement names: from disk, from an
@@ -45,7 +48,9 @@ type checker struct {
 	seen         map[findingKey]bool
 	expectations map[*File][]Expectation
 	numbers      map[string]operand // numbers with their units, as evaluated before
-	suggested    int                // searches for misspelt names so far
+	tolerances   map[toleranceKey]*Tolerance
+	angular      map[*big.Rat]number.Exact // frequencies in hertz, times 2π
+	suggested    int                       // searches for misspelt names so far
 	faults       bool
 	harmless     bool // an error now leaves nothing out of the network
 }
@@ -58,6 +63,7 @@ func Check(main *File, read Reader) *Checked {
 		read: read, byFile: map[*File]*unit{}, byPath: map[string]*unit{},
 		table: &symbolTable{uses: map[*File][]SymbolUse{}}, seen: map[findingKey]bool{},
 		expectations: map[*File][]Expectation{}, numbers: map[string]operand{},
+		tolerances: map[toleranceKey]*Tolerance{}, angular: map[*big.Rat]number.Exact{},
 	}
 	first := c.load(main, filepath.Clean(main.Name))
 	first.main = true

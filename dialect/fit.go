@@ -235,5 +235,9 @@ func (b *builder) expect(inst *instance, span Span, want Dimension, what string)
 
 // valueText is the text of a value with one space between words.
 func valueText(f *File, span Span) string {
-	return strings.Join(strings.Fields(f.Text[span.Start:span.End]), " ")
+	text := f.Text[span.Start:span.End]
+	if !strings.Contains(text, "  ") && !strings.ContainsAny(text, "\t\r\n") {
+		return text
+	}
+	return strings.Join(strings.Fields(text), " ")
 }

@@ -69,7 +69,9 @@ type builder struct {
 	prefer     map[Kind]*preference
 	dependent  []bool // per part: a source that follows quantities
 	started    *StartStatement
-	coilJoints map[int]bool // joints that an inductor touches
+	prefixed   bool                // a resistor is in mΩ or MΩ
+	sound      map[*Tolerance]bool // values in the series of their tolerance
+	coilJoints map[int]bool        // joints that an inductor touches
 }
 
 // maxParts bounds the size of an expanded network, which nested uses could
@@ -142,6 +144,10 @@ func (b *builder) report(inst *instance, span Span, code Code, format string, ar
 // without values, and wires them. Terminals have their slots already.
 func (b *builder) structure(inst *instance) {
 	s := inst.scope
+	if b.d.Parts == nil {
+		b.d.Parts = make([]Part, 0, len(s.parts))
+		b.d.Nodes = make([]Node, 0, len(s.nodes))
+	}
 	inst.firstPart = len(b.d.Parts)
 	for _, sym := range s.symbols {
 		switch sym.Sort {

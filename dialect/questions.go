@@ -1,6 +1,11 @@
 package dialect
 
-import "strings"
+import (
+	"math/big"
+	"strings"
+
+	"portlight/dialect/number"
+)
 
 // trimQuestion is the text of a question or limit, comments left out, with
 // one space where lines were joined.
@@ -20,6 +25,7 @@ func (b *builder) question(main *unit, file *File, st *TellStatement) (*Question
 	c := &checker{
 		byFile: map[*File]*unit{}, table: &symbolTable{silent: true},
 		seen: map[findingKey]bool{}, expectations: map[*File][]Expectation{}, numbers: map[string]operand{}, harmless: true,
+		tolerances: map[toleranceKey]*Tolerance{}, angular: map[*big.Rat]number.Exact{},
 	}
 	// The names are looked up in the main file's scope; what is reported lies
 	// in the question's own text.
@@ -209,7 +215,7 @@ func (b *builder) qualifier(e *evaluator, item *Qualifier, whole *operand, sort 
 		if !o.ok || !inner.fits(x, &o, want, what) || !inner.mustBeConstant(x, &o) || !inner.notNegative(x, &o, what) {
 			return nil, false
 		}
-		return o.finish().(*Constant), true
+		return e.point(&o), true
 	}
 	var ok2 bool
 	switch item.Keyword.Text {
@@ -335,4 +341,18 @@ func (b *builder) without(e *evaluator, item *Qualifier, q *Qualifiers) bool {
 		}
 	}
 	return good
+}
+
+// point is a constant frequency or time; equal frequencies share their value
+// in rad/s.
+func (e *evaluator) point(o *operand) *Constant {
+	if !o.isHertz() {
+		return o.finish().(*Constant)
+	}
+	value, known := e.b.c.angular[o.value.Rat()]
+	if !known {
+		value = o.radians()
+		e.b.c.angular[o.value.Rat()] = value
+	}
+	return &Constant{Typed: Typed{Dimension: DimensionFrequency, Form: ShapeNumber, Span: o.span}, Value: value, Hertz: true}
 }

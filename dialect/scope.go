@@ -18,10 +18,16 @@ type scope struct {
 	imported   map[string]*Symbol // a file's: lets and subnetworks of used files
 	parts      []*Symbol          // part statements, inline ones too, in order of the text
 	uses       []*Symbol
-	folded     map[string]*Symbol // lower case name and sort, for case twins
-	ground     *Symbol            // the reference node
+	folded     map[foldedName]*Symbol // for case twins
+	ground     *Symbol                // the reference node
 	groundSeen *GroundStatement
 	bodies     []*scope
+}
+
+// foldedName is a name in lower case with its sort.
+type foldedName struct {
+	sort SymbolSort
+	name string
 }
 
 // unit is one file of the description.
@@ -39,7 +45,7 @@ type unit struct {
 func (c *checker) newScope(u *unit, statements []Statement) *scope {
 	return &scope{
 		unit: u, statements: statements,
-		nodes: map[string]*Symbol{}, names: map[string]*Symbol{}, folded: map[string]*Symbol{},
+		nodes: map[string]*Symbol{}, names: map[string]*Symbol{}, folded: map[foldedName]*Symbol{},
 	}
 }
 
@@ -150,7 +156,7 @@ func (c *checker) caseTwin(s *scope, sym *Symbol) {
 	if sort == UseSymbol {
 		sort = PartSymbol
 	}
-	key := string(rune('0'+sort)) + strings.ToLower(sym.Name)
+	key := foldedName{sort, strings.ToLower(sym.Name)}
 	twin := s.folded[key]
 	if twin == nil {
 		s.folded[key] = sym

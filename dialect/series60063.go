@@ -180,9 +180,16 @@ func (b *builder) preferred(inst *instance, sym *Symbol, p *Part, st *PartStatem
 	if sign, _ := p.Value.Sign(); sign <= 0 {
 		return
 	}
+	if b.sound == nil {
+		b.sound = map[*Tolerance]bool{}
+	}
+	if preference == nil && b.sound[p.Tolerance] {
+		return // the same value and tolerance as before
+	}
 	list := b.seriesFor(p.Kind, p.Tolerance, p.Value)
 	for _, series := range list {
 		if inSeries(seriesCache[series], p.Value) {
+			b.sound[p.Tolerance] = preference == nil
 			return
 		}
 	}

@@ -18,6 +18,10 @@ const (
 
 // suspectPrefix warns of values that no part has.
 func (b *builder) suspectPrefix(inst *instance, p *Part, st *PartStatement) {
+	if n, ok := st.Value.(*NumberExpr); ok && p.Kind == Resistor && n.Unit != nil && len(n.Unit.Factors) == 1 {
+		prefix := n.Unit.Factors[0].Prefix
+		b.prefixed = b.prefixed || prefix == "m" || prefix == "M"
+	}
 	x := p.Value.Float()
 	low, high := smallestPart, largestCapacitor
 	switch p.Kind {
@@ -55,6 +59,9 @@ func (b *builder) offerPrefixes(f *reported, inst *instance, v Value, large bool
 // neighbours warns of a resistor in mΩ or MΩ that is far from every resistor
 // it shares a node with, and would be near them with the other prefix.
 func (b *builder) neighbours() {
+	if !b.prefixed {
+		return
+	}
 	at := make([][]int, len(b.d.Nodes))
 	for i := range b.d.Parts {
 		p := &b.d.Parts[i]

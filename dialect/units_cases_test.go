@@ -33,11 +33,11 @@ var unitFrames = map[string]string{
 	"expression, expected dimension energy":    "let X = %s\nlet Y = X + 0 J",
 	"expression, expected dimension charge":    "let X = %s\nlet Y = X + 0 C",
 	"expression, expected dimension impedance": "impedance X = %s\na -[X]- g",
-	"expression":                               "let X = %s",
-	"frequency argument":                       "tell z[a] at %s",
-	"level":                                    "let X = %s",
-	"phase":                                    "voltage source X = 1 V * sin(50 Hz*2*pi*t + %s) * u(t)\na -[X]- g",
-	"single-pole op amp":                       "op amp X = %s, gain 1e5, + at a, - at o, output at o\no -[resistor Ro = 1 Ω]- g",
+	"expression":         "let X = %s",
+	"frequency argument": "tell z[a] at %s",
+	"level":              "let X = %s",
+	"phase":              "voltage source X = 1 V * sin(50 Hz*2*pi*t + %s) * u(t)\na -[X]- g",
+	"single-pole op amp": "op amp X = %s, gain 1e5, + at a, - at o, output at o\no -[resistor Ro = 1 Ω]- g",
 }
 
 const unitBase = `ground g

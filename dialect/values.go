@@ -203,6 +203,13 @@ func (b *builder) rated(inst *instance, p *Part, o *PartOption) {
 	}
 }
 
+// toleranceKey is a value and its tolerance as written: equal texts have equal
+// bounds.
+type toleranceKey struct {
+	kind             Kind
+	value, tolerance string
+}
+
 // tolerance works out the bounds of a value.
 func (b *builder) tolerance(inst *instance, p *Part, st *PartStatement) {
 	t := st.Tolerance
@@ -217,6 +224,12 @@ func (b *builder) tolerance(inst *instance, p *Part, st *PartStatement) {
 	}
 	if sign, _ := p.Value.Sign(); sign == 0 {
 		return // no value
+	}
+	text := valueText(inst.scope.unit.file, t.Span)
+	key := toleranceKey{p.Kind, p.ValueText, text}
+	if known := b.c.tolerances[key]; known != nil && literalValue(st.Value) {
+		p.Tolerance = known
+		return
 	}
 	low, high := p.Value, p.Value
 	for _, bound := range t.Bound {
@@ -238,7 +251,10 @@ func (b *builder) tolerance(inst *instance, p *Part, st *PartStatement) {
 		b.report(inst, t.Span, "tolerance", "with this tolerance the value can be zero or negative")
 		return
 	}
-	p.Tolerance = &Tolerance{Low: low, High: high, Text: valueText(inst.scope.unit.file, t.Span)}
+	p.Tolerance = &Tolerance{Low: low, High: high, Text: text}
+	if literalValue(st.Value) {
+		b.c.tolerances[key] = p.Tolerance
+	}
 }
 
 // deviation is one side of a tolerance, in the value's own unit.
