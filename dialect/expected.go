@@ -175,13 +175,13 @@ func statementStart(f *File, body *SubnetworkStatement, offset int) int {
 // goesOn says that a line without a word before the offset continues the
 // statement above it: it is deeper, and a comma or an open bracket came last.
 func goesOn(f *File, s Statement, begin, offset int) bool {
-	if strings.TrimSpace(f.Text[begin:wordStart(f.Text[:offset])]) != "" {
+	if trimSpaces(f.Text[begin:wordStart(f.Text[:offset])]) != "" {
 		return false
 	}
 	span := s.Extent()
 	for line := f.Lines.Line(span.End) + 1; line < f.Lines.Line(offset); line++ {
 		l := f.Lines.Span(line)
-		if !strings.HasPrefix(strings.TrimSpace(f.Text[l.Start:l.End]), "#") {
+		if !strings.HasPrefix(trimSpaces(f.Text[l.Start:l.End]), "#") {
 			return false
 		}
 	}

@@ -268,13 +268,13 @@ func (p *parser) looksLikeStatement(tokens []token) bool {
 // blank says that a line holds nothing.
 func (p *parser) blank(line int) bool {
 	span := p.file.Lines.Span(line)
-	return strings.TrimSpace(p.text[span.Start:span.End]) == ""
+	return trimSpaces(p.text[span.Start:span.End]) == ""
 }
 
 // commentOnly says that a line holds nothing but a comment.
 func (p *parser) commentOnly(line int) bool {
 	span := p.file.Lines.Span(line)
-	return strings.HasPrefix(strings.TrimSpace(p.text[span.Start:span.End]), "#")
+	return strings.HasPrefix(trimSpaces(p.text[span.Start:span.End]), "#")
 }
 
 // indent is the column of a line's first character that is no space.
@@ -285,9 +285,9 @@ func (p *parser) indent(line int) int {
 		switch {
 		case r == '\t':
 			column += tabWidth - column%tabWidth
+		case r == '\uFEFF':
 		case isSpace(r):
 			column++
-		case r == '\uFEFF':
 		default:
 			return column
 		}

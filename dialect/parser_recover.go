@@ -398,8 +398,9 @@ func (p *parser) sortFindings() {
 	sort.SliceStable(list, func(i, j int) bool { return list[i].Origin.Span.Start < list[j].Origin.Span.Start })
 }
 
-// isSpace says that a character is a space of the notation.
-func isSpace(r rune) bool { return unicode.IsSpace(r) || unicode.Is(unicode.Zs, r) }
+// isSpace says that a character is a space of the notation: any Unicode space,
+// and the no-break space of no width that also serves as byte order mark.
+func isSpace(r rune) bool { return unicode.IsSpace(r) || unicode.Is(unicode.Zs, r) || r == '\uFEFF' }
 
 // nearest finds the word of a list that a misspelling probably means, ""
 // if none is near: one slip in words of up to five letters, two in longer.
@@ -420,3 +421,6 @@ func nearest(word string, list []string) string {
 	}
 	return best
 }
+
+// trimSpaces removes the spaces around a text.
+func trimSpaces(s string) string { return strings.TrimFunc(s, isSpace) }

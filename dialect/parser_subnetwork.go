@@ -128,7 +128,7 @@ func (p *parser) bodyEnd(line int) (int, bool) {
 	shallow := -1
 	for i := p.line; i < p.file.Lines.Count(); i++ {
 		span := p.file.Lines.Span(i)
-		text := strings.TrimSpace(p.text[span.Start:span.End])
+		text := trimSpaces(p.text[span.Start:span.End])
 		if text == "" || text[0] == '#' {
 			continue
 		}

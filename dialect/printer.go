@@ -294,9 +294,9 @@ func indentOf(space string) int {
 
 // shifted moves a line by columns.
 func shifted(line string, by int) string {
-	body := strings.TrimLeftFunc(line, func(r rune) bool { return isSpace(r) || r == '\uFEFF' })
+	body := strings.TrimLeftFunc(line, isSpace)
 	if by == 0 || body == "" {
-		return strings.TrimPrefix(line, "\uFEFF")
+		return line
 	}
 	return strings.Repeat(" ", max(indentOf(line[:len(line)-len(body)])+by, 0)) + body
 }

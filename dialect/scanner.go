@@ -210,9 +210,7 @@ func scanWide(line string, at int) (token, int) {
 		return token{tPlusMinus, at, end}, end
 	case r == '°':
 		return token{tUnitMark, at, end}, end
-	case unicode.IsSpace(r) || unicode.Is(unicode.Zs, r):
-		return token{tEnd, at, end}, end
-	case r == '\uFEFF' && at == 0: // a byte order mark
+	case isSpace(r):
 		return token{tEnd, at, end}, end
 	}
 	if _, ok := foreignMarks[r]; ok {
@@ -250,5 +248,5 @@ func badRune(r rune, size int) bool {
 		return false
 	}
 	_, foreign := foreignMarks[r]
-	return !foreign && !unicode.IsLetter(r) && !unicode.IsSpace(r) && !unicode.Is(unicode.Zs, r)
+	return !foreign && !unicode.IsLetter(r) && !isSpace(r)
 }

@@ -28,6 +28,7 @@ func FuzzParse(f *testing.F) {
 	f.Add("0\r #000\r\n", 3)
 	f.Add("00\x8d00000  ", 27)
 	f.Add("##\f", -14)
+	f.Add("\n\ufeff", 1)
 	f.Fuzz(func(t *testing.T, text string, offset int) {
 		if len(text) > 1<<16 || countInvalid(text) >= maxInvalid { // tidying changes how large a part they are
 			return
