@@ -43,9 +43,10 @@ type unit struct {
 }
 
 func (c *checker) newScope(u *unit, statements []Statement) *scope {
+	n := len(statements)
 	return &scope{
-		unit: u, statements: statements,
-		nodes: map[string]*Symbol{}, names: map[string]*Symbol{}, folded: map[foldedName]*Symbol{},
+		unit: u, statements: statements, symbols: make([]*Symbol, 0, n+4),
+		nodes: make(map[string]*Symbol, n/2), names: make(map[string]*Symbol, n), folded: make(map[foldedName]*Symbol, n),
 	}
 }
 
@@ -74,10 +75,10 @@ func (s *scope) unwired() []*Symbol {
 
 // add makes a symbol and enters its name, reporting a name already taken.
 func (c *checker) add(s *scope, sort SymbolSort, name Word, st Statement) *Symbol {
-	sym := &Symbol{
-		Name: name.Text, Sort: sort, File: s.unit.file, Span: name.Span, Statement: st,
-		Inside: s.symbol, scope: s, index: len(s.symbols),
-	}
+	sym := c.table.symbol()
+	sym.Name, sym.Sort, sym.File, sym.Span, sym.Statement = name.Text, sort, s.unit.file, name.Span, st
+	sym.Inside, sym.scope, sym.index = s.symbol, s, len(s.symbols)
+	sym.boxes = sym.fewBox[:0]
 	s.symbols = append(s.symbols, sym)
 	if !name.Present() {
 		return sym

@@ -1,6 +1,7 @@
 package dialect
 
 import (
+	"slices"
 	"sort"
 )
 
@@ -47,6 +48,8 @@ type Symbol struct {
 	body    *scope   // of a subnetwork
 	boxes   []wiring // the boxes a part or use stands in
 	options wiring   // the statement that wires it with "at"
+	few     [2]Reference
+	fewBox  [1]wiring
 }
 
 // wiring is a place that wires a part.
@@ -79,7 +82,21 @@ type SymbolUse struct {
 // symbolTable records uses per file, sorted by place when first asked.
 type symbolTable struct {
 	uses   map[*File][]SymbolUse
+	last   *File       // whose list is at hand
+	list   []SymbolUse // the list at hand
+	slab   []Symbol    // room for symbols
 	silent bool // records nothing: names of a question from outside
+}
+
+// symbol makes a symbol. They are made many at a time, which is faster.
+func (t *symbolTable) symbol() *Symbol {
+	if len(t.slab) == 0 {
+		t.slab = make([]Symbol, 128)
+	}
+	s := &t.slab[0]
+	t.slab = t.slab[1:]
+	s.References = s.few[:0]
+	return s
 }
 
 // record notes that span in file names the symbol.
@@ -88,14 +105,24 @@ func (t *symbolTable) record(s *Symbol, file *File, span Span, definition bool) 
 		return
 	}
 	s.References = append(s.References, Reference{File: file, Span: span, Definition: definition})
-	t.uses[file] = append(t.uses[file], SymbolUse{Span: span, Symbol: s})
+	if file != t.last {
+		t.flush()
+		t.last, t.list = file, t.uses[file]
+	}
+	t.list = append(t.list, SymbolUse{Span: span, Symbol: s})
+}
+
+// flush puts the list at hand back.
+func (t *symbolTable) flush() {
+	if t.last != nil {
+		t.uses[t.last] = t.list
+	}
 }
 
 func (t *symbolTable) sort() {
+	t.flush()
 	for _, uses := range t.uses {
-		if !sort.SliceIsSorted(uses, func(i, j int) bool { return uses[i].Span.Start < uses[j].Span.Start }) {
-			sort.SliceStable(uses, func(i, j int) bool { return uses[i].Span.Start < uses[j].Span.Start })
-		}
+		slices.SortFunc(uses, func(a, b SymbolUse) int { return a.Span.Start - b.Span.Start })
 	}
 }
 
