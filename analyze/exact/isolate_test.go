@@ -132,3 +132,37 @@ func TestRefineRootManyDigits(t *testing.T) {
 		t.Error("the square root of two is not inside")
 	}
 }
+
+// What the limited arithmetic calls decided is what exact arithmetic finds.
+func TestNearVariations(t *testing.T) {
+	decided := 0
+	rapid.Check(t, func(t *rapid.T) {
+		p := PolyFromInt64s(1)
+		for range rapid.IntRange(1, 14).Draw(t, "factors") {
+			if f := drawRooted(t, "f"); !f.IsZero() {
+				p = p.Mul(f)
+			}
+		}
+		p = p.Radical()
+		p = p.Shift(-p.Order())
+		if p.Degree() < 1 {
+			return
+		}
+		lo := big.NewRat(rapid.Int64Range(1, 1<<20).Draw(t, "lo"), 1<<rapid.IntRange(0, 40).Draw(t, "over"))
+		width := new(big.Rat).Mul(lo, big.NewRat(rapid.Int64Range(1, 64).Draw(t, "width"), 64))
+		hi := new(big.Rat).Add(lo, width)
+		want := signVariations(onUnitInterval(p, lo, width))
+		guard := rapid.SampledFrom([]int{1, 20, nearGuard}).Draw(t, "guard")
+		got, ok := newNearVariations(p, guard).count(lo, hi)
+		if !ok {
+			return
+		}
+		decided++
+		if got != want {
+			t.Fatalf("%d variations of %v on [%v, %v], want %d", got, p, lo, hi, want)
+		}
+	})
+	if decided == 0 {
+		t.Error("nothing was decided")
+	}
+}
