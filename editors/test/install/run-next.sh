@@ -1,0 +1,18 @@
+#!/usr/bin/env bash
+# Runs a program of the unpacked release, with that release's own libraries.
+# Usage: run-next.sh nvim|hx ARGUMENT…
+set -euo pipefail
+here=$(cd "$(dirname "$0")" && pwd)
+root=$("$here/next.sh")/root
+program=$1
+shift
+case "$program" in
+nvim)
+  export VIMRUNTIME="$root/usr/share/nvim/runtime"
+  set -- --cmd "set runtimepath^=$root/usr/lib/nvim" "$@" # its parsers, which hovers need
+  ;;
+hx) export HELIX_RUNTIME="$root/usr/lib/hx/runtime" ;;
+*) echo "run-next.sh: $program is not one of nvim, hx" >&2; exit 2 ;;
+esac
+loader=$(ls "$root"/usr/lib/*/ld-linux-*.so.* | head -n 1)
+exec "$loader" --library-path "$(dirname "$loader")" "$root/usr/bin/$program" "$@"
