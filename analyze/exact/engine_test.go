@@ -4,6 +4,7 @@ import (
 	"context"
 	"errors"
 	"math/big"
+	"slices"
 	"testing"
 
 	"pgregory.net/rapid"
@@ -416,5 +417,51 @@ func TestSymmetricElimination(t *testing.T) {
 	})
 	if compared == 0 {
 		t.Error("nothing was compared")
+	}
+}
+
+// A large pencil that is singular by its values, not by its pattern: one
+// equation is the sum of two others.
+func TestLargeSingularPencil(t *testing.T) {
+	ctx := context.Background()
+	p, rhs, input, output := mesh(8)
+	n := p.Size()
+	a, b, sum := 9, n-4, n-1
+	p.rows[sum] = nil
+	for _, i := range []int{a, b} {
+		for _, e := range p.rows[i] {
+			p.Add(sum, e.Col, e.G, e.C)
+		}
+	}
+	f, err := p.Prepare(ctx)
+	if err != nil {
+		t.Fatal(err)
+	}
+	if f.form == nil {
+		t.Fatal("the pattern alone makes it singular")
+	}
+	if !f.Determinant().IsZero() {
+		t.Error("the determinant is not zero")
+	}
+	var singular *SingularError
+	if _, err := f.Responses(ctx, []Vector{rhs}, []Vector{output}); !errors.As(err, &singular) {
+		t.Fatalf("error %v", err)
+	}
+	if !slices.Equal(singular.Rows, []int{a, b, sum}) {
+		t.Errorf("equations %v are named, want %v", singular.Rows, []int{a, b, sum})
+	}
+	if len(singular.Cols) == 0 {
+		t.Error("no unknowns are named")
+	}
+	// The adjugate of a matrix of rank n−1 has rank one.
+	num, err := f.Numerators(ctx, []Vector{Unit(a), Unit(b)}, []Vector{input, output})
+	if err != nil {
+		t.Fatal(err)
+	}
+	if num[0][0].IsZero() || !num[0][0].Mul(num[1][1]).Equal(num[0][1].Mul(num[1][0])) {
+		t.Error("the adjugate does not have rank one")
+	}
+	if _, _, err := p.SolveAt(ctx, big.NewRat(1, 3), big.NewRat(1000, 7), rhs); !errors.As(err, &singular) {
+		t.Errorf("SolveAt: %v", err)
 	}
 }
