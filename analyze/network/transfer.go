@@ -35,7 +35,7 @@ func (s *System) Determinant(ctx context.Context) (exact.Poly, error) {
 	if err != nil {
 		return exact.Poly{}, err
 	}
-	return p.Determinant(), nil
+	return p.DeterminantContext(ctx)
 }
 
 // Transfer returns the exact responses of outputs to columns: num[i][j]/det is
@@ -47,7 +47,6 @@ func (s *System) Transfer(ctx context.Context, outs []Output, cols []Column) (nu
 	if err != nil {
 		return nil, exact.Poly{}, err
 	}
-	det = p.Determinant()
 	var rhs, vectors []exact.Vector
 	for _, c := range cols {
 		rhs = append(rhs, c.RHS)
@@ -64,6 +63,10 @@ func (s *System) Transfer(ctx context.Context, outs []Output, cols []Column) (nu
 	}
 	n, err := p.Numerators(ctx, rhs, vectors)
 	if err != nil {
+		return nil, exact.Poly{}, err
+	}
+	// After the numerators, which bring the determinant along.
+	if det, err = p.DeterminantContext(ctx); err != nil {
 		return nil, exact.Poly{}, err
 	}
 	num = make([][]exact.Poly, len(outs))
