@@ -1,6 +1,7 @@
 package exact
 
 import (
+	"context"
 	"math"
 	"math/cmplx"
 )
@@ -12,7 +13,7 @@ import (
 // 377–383; for the complex one J. Cullum and R. Willoughby, SIAM J. Matrix
 // Anal. Appl. 17 (1996) 83–109). It returns nil where that breaks down. The
 // values are starting points and nothing more.
-func (r *recurrence) eigenvalues() []complex128 {
+func (r *recurrence) eigenvalues(ctx context.Context) []complex128 {
 	n := len(r.alpha) - 1
 	symmetric := true
 	for m := 2; m <= n; m++ {
@@ -26,7 +27,7 @@ func (r *recurrence) eigenvalues() []complex128 {
 				e[i] = math.Sqrt(r.beta[i+2])
 			}
 		}
-		return realQL(d, e)
+		return realQL(ctx, d, e)
 	}
 	d, e := make([]complex128, n), make([]complex128, n)
 	for i := range n {
@@ -35,14 +36,14 @@ func (r *recurrence) eigenvalues() []complex128 {
 			e[i] = complexRoot(complex(r.beta[i+2], 0))
 		}
 	}
-	return complexQL(d, e)
+	return complexQL(ctx, d, e)
 }
 
 // mostQL is the number of QL steps for one eigenvalue after which it is given
 // up.
 const mostQL = 60
 
-func realQL(d, e []float64) []complex128 {
+func realQL(ctx context.Context, d, e []float64) []complex128 {
 	n := len(d)
 	for l := range n {
 		for tries := 0; ; tries++ {
@@ -55,7 +56,7 @@ func realQL(d, e []float64) []complex128 {
 			if m == l {
 				break
 			}
-			if tries == mostQL {
+			if tries == mostQL || ctx.Err() != nil {
 				return nil
 			}
 			g := (d[l+1] - d[l]) / (2 * e[l])
@@ -93,7 +94,7 @@ func realQL(d, e []float64) []complex128 {
 	return out
 }
 
-func complexQL(d, e []complex128) []complex128 {
+func complexQL(ctx context.Context, d, e []complex128) []complex128 {
 	n := len(d)
 	for l := range n {
 		for tries := 0; ; tries++ {
@@ -106,7 +107,7 @@ func complexQL(d, e []complex128) []complex128 {
 			if m == l {
 				break
 			}
-			if tries == mostQL {
+			if tries == mostQL || ctx.Err() != nil {
 				return nil
 			}
 			g := (d[l+1] - d[l]) / (2 * e[l])
@@ -175,10 +176,9 @@ func reciprocal(z complex128) complex128 {
 	return complex(real(z)*f, -imag(z)*f)
 }
 
-// begin returns the eigenvalues as starting points, each off the real axis a
-// little so that two equal ones part, or nil.
-func (r *recurrence) begin() []start {
-	values := r.eigenvalues()
+// begin returns the eigenvalues as starting points, or nil.
+func (r *recurrence) begin(ctx context.Context) []start {
+	values := r.eigenvalues(ctx)
 	if values == nil {
 		return nil
 	}

@@ -1,6 +1,7 @@
 package exact
 
 import (
+	"context"
 	"math"
 	"math/big"
 )
@@ -19,8 +20,8 @@ type recurrence struct {
 // where all its roots seem to be real, else the matrix of Schwarz from Routh's
 // array (H. R. Schwarz, Z. angew. Math. Phys. 7 (1956) 473–500), with
 // β_m < 0 where the roots are in the left half plane. It returns nil where
-// neither exists or the spread is beyond float64.
-func (e *evaluator) threeTerm() *recurrence {
+// neither exists, the spread is beyond float64 or the context has ended.
+func (e *evaluator) threeTerm(ctx context.Context) *recurrence {
 	if e.n < 3 {
 		return nil
 	}
@@ -30,11 +31,11 @@ func (e *evaluator) threeTerm() *recurrence {
 		return nil
 	}
 	if e.mayBeReal() {
-		if r := jacobi(c, scale, prec); r != nil {
+		if r := jacobi(ctx, c, scale, prec); r != nil {
 			return r
 		}
 	}
-	return schwarz(c, scale, prec)
+	return schwarz(ctx, c, scale, prec)
 }
 
 // balanced returns the coefficients of p(2^scale·s)/a_n, ascending, with the
@@ -94,7 +95,7 @@ func (e *evaluator) mayBeReal() bool {
 // jacobi runs Euclid's algorithm on p and p'/n, all made monic:
 // p_(k−1) = (s − α_k)·p_k − β_k·p_(k+1). Every β_k > 0 means that all roots are
 // real; nil is returned at the first that is not.
-func jacobi(c []*big.Float, scale int, prec uint) *recurrence {
+func jacobi(ctx context.Context, c []*big.Float, scale int, prec uint) *recurrence {
 	n := len(c) - 1
 	r := &recurrence{alpha: make([]float64, n+1), beta: make([]float64, n+1), scale: scale}
 	above, p := c, make([]*big.Float, n)
@@ -106,6 +107,9 @@ func jacobi(c []*big.Float, scale int, prec uint) *recurrence {
 	}
 	t, one := new(big.Float).SetPrec(prec), big.NewFloat(1)
 	for m := n; ; m-- { // above has degree m, p degree m−1
+		if ctx.Err() != nil {
+			return nil
+		}
 		// α = p[m−2] − above[m−1], from the second coefficients
 		alpha := new(big.Float).SetPrec(prec).Neg(above[m-1])
 		if m >= 2 {
@@ -140,7 +144,7 @@ func jacobi(c []*big.Float, scale int, prec uint) *recurrence {
 
 // schwarz runs Routh's scheme: with q_k the quotients of the leading entries of
 // successive rows, α at the last place is −1/q_1 and the β are −1/(q_(k−1)·q_k).
-func schwarz(c []*big.Float, scale int, prec uint) *recurrence {
+func schwarz(ctx context.Context, c []*big.Float, scale int, prec uint) *recurrence {
 	n := len(c) - 1
 	r := &recurrence{alpha: make([]float64, n+1), beta: make([]float64, n+1), scale: scale}
 	var first, second []*big.Float
@@ -154,7 +158,7 @@ func schwarz(c []*big.Float, scale int, prec uint) *recurrence {
 	t := new(big.Float).SetPrec(prec)
 	var before *big.Float
 	for k := 1; k <= n; k++ {
-		if second[0].Sign() == 0 {
+		if second[0].Sign() == 0 || ctx.Err() != nil {
 			return nil
 		}
 		q := new(big.Float).SetPrec(prec).Quo(first[0], second[0])

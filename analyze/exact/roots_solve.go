@@ -67,7 +67,9 @@ func (s *rootSolver) refine(ctx context.Context, goal int) error {
 		return nil // taken from the coefficients
 	}
 	if s.value == nil {
-		s.begin()
+		if err := s.begin(ctx); err != nil {
+			return err
+		}
 	}
 	for i := range s.roots {
 		s.roots[i].goal = max(s.roots[i].goal, float64(goal))
@@ -83,15 +85,21 @@ func (s *rootSolver) refine(ctx context.Context, goal int) error {
 	}
 }
 
-func (s *rootSolver) begin() {
-	s.value = newEvaluator(s.poly)
-	for _, z := range s.value.roughRoots() {
+func (s *rootSolver) begin(ctx context.Context) error {
+	value := newEvaluator(s.poly)
+	points := value.roughRoots(ctx)
+	if err := ctx.Err(); err != nil {
+		return err
+	}
+	s.value = value
+	for _, z := range points {
 		s.roots = append(s.roots, newApproximation(z))
 	}
 	s.views = make([]start, len(s.roots))
 	for i := range s.roots {
 		s.look(i)
 	}
+	return nil
 }
 
 func newApproximation(z start) approximation {

@@ -1,6 +1,7 @@
 package exact
 
 import (
+	"context"
 	"math"
 	"math/cmplx"
 	"slices"
@@ -178,12 +179,12 @@ func repulsion(z []start, i int) complex128 {
 // good as that arithmetic shows, which may be good or poor. The polynomial is
 // evaluated by a three-term recurrence where one is found, as its roots are far
 // better conditioned there than with the coefficients.
-func (e *evaluator) roughRoots() []start {
+func (e *evaluator) roughRoots(ctx context.Context) []start {
 	z := slices.Clone(e.rim.points)
 	evaluate := e.coefficientEvaluation()
-	if r := e.threeTerm(); r != nil {
+	if r := e.threeTerm(ctx); r != nil {
 		evaluate = r.evaluate
-		if points := r.begin(); points != nil {
+		if points := r.begin(ctx); points != nil {
 			for i, p := range points {
 				if !e.rim.outside(p) {
 					z[i] = p
@@ -196,6 +197,9 @@ func (e *evaluator) roughRoots() []start {
 		last[i] = 8
 	}
 	for sweep := range 60 {
+		if ctx.Err() != nil {
+			break // the caller sees to it
+		}
 		moving := 0
 		for i := range z {
 			if last[i] == 0 {

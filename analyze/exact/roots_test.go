@@ -420,12 +420,30 @@ func TestRootsOfDegenerates(t *testing.T) {
 	}
 }
 
-func TestRootsStopSoon(t *testing.T) {
-	p := unequalLadder(150)
-	ctx, cancel := context.WithTimeout(context.Background(), 5*time.Millisecond)
-	defer cancel()
-	if _, err := Roots(ctx, p); err != nil && !errors.Is(err, context.DeadlineExceeded) {
-		t.Error(err)
+// An ended context is noticed at every stage: the error comes, and what was begun
+// can be gone on with.
+func TestRootsStopAnywhere(t *testing.T) {
+	p := unequalLadder(60)
+	for _, wait := range []time.Duration{0, 100 * time.Microsecond, time.Millisecond, 3 * time.Millisecond, 6 * time.Millisecond} {
+		ctx, cancel := context.WithTimeout(context.Background(), wait)
+		set, err := Roots(ctx, p)
+		cancel()
+		if err != nil && (!errors.Is(err, context.DeadlineExceeded) || set != nil) {
+			t.Errorf("after %v: %v", wait, err)
+		}
+	}
+	set, err := Roots(context.Background(), p)
+	if err != nil {
+		t.Fatal(err)
+	}
+	ended, cancel := context.WithCancel(context.Background())
+	cancel()
+	if _, err := set.AtContext(ended, 200); !errors.Is(err, context.Canceled) {
+		t.Errorf("ended context: %v", err)
+	}
+	roots, err := set.At(200)
+	if err != nil || len(roots) != 120 {
+		t.Errorf("after a stop: %v, %d roots", err, len(roots))
 	}
 }
 
