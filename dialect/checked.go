@@ -242,6 +242,7 @@ func (c *checker) result(main *unit, b *builder) *Checked {
 		}
 	}
 	c.table.sort()
+	c.findings = c.withoutEchoes(c.findings)
 	for _, f := range c.sortFindings() {
 		if f.Severity == Error || !checked.Allowed(f.Code) {
 			checked.Findings = append(checked.Findings, f)

@@ -232,6 +232,7 @@ type Question struct {
 	Set        string     // AskMatrix: z y h g abcd s
 	Ports      [2]int     // AskMatrix; Ports[0] for Thévenin and Norton
 	Reference  *number.Exact
+	Unit       string // "Hz" or "rad/s" where the question ends in it ("in Hz")
 	Qualifiers Qualifiers
 	Origin     Origin
 }

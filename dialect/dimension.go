@@ -151,19 +151,23 @@ func namedUnitText(d Dimension) (string, bool) {
 	if d.Metre == 0 && d.Ampere == 0 {
 		return unitProduct([]unitPower{{"s", int(d.Second)}}), true
 	}
+	if exact, found := symbolOf(d); found {
+		return exact, true
+	}
+	best, least, factors := false, 0, []unitPower(nil)
 	for _, power := range [...]int{1, 2, -1, -2} {
 		for _, n := range namedDimensions {
 			p, _ := n.dimension.Power(power)
-			if p.Metre == d.Metre && p.Kilogram == d.Kilogram && p.Ampere == d.Ampere {
-				seconds := int(d.Second - p.Second)
-				if exact, found := symbolOf(d); found {
-					return exact, true
-				}
-				return unitProduct([]unitPower{{n.symbol, power}, {"s", seconds}}), true
+			if p.Metre != d.Metre || p.Kilogram != d.Kilogram || p.Ampere != d.Ampere {
+				continue
+			}
+			seconds := int(d.Second - p.Second)
+			if cost := 2*max(seconds, -seconds) + max(power, -power); !best || cost < least {
+				best, least, factors = true, cost, []unitPower{{n.symbol, power}, {"s", seconds}}
 			}
 		}
 	}
-	return "", false
+	return unitProduct(factors), best
 }
 
 func symbolOf(d Dimension) (string, bool) {

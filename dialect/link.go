@@ -47,6 +47,22 @@ func (c *checker) existingNode(s *scope, name Word, st Statement, format string)
 	return c.add(s, NodeSymbol, name, st)
 }
 
+// linkPort resolves the nodes of a port.
+func (c *checker) linkPort(s *scope, st *PortStatement) {
+	plus, minus := s.nodes[st.Plus.Text], s.nodes[st.Minus.Text]
+	if plus == nil && minus == nil && st.Plus.Present() && st.Minus.Present() {
+		span := Span{st.Plus.Span.Start, st.Minus.Span.End}
+		c.report(s.unit.file, span, "unknown-name", "no part is connected to %s or %s", st.Plus.Text, st.Minus.Text)
+		c.add(s, NodeSymbol, st.Plus, st)
+		if st.Minus.Text != st.Plus.Text {
+			c.add(s, NodeSymbol, st.Minus, st)
+		}
+		return
+	}
+	c.existingNode(s, st.Plus, st, "no part is connected to %s")
+	c.existingNode(s, st.Minus, st, "no part is connected to %s")
+}
+
 // offerNames adds the repair that a misspelt name suggests.
 func (c *checker) offerNames(f *reported, s *scope, name Word, fits func(*Symbol) bool) {
 	if f.f == nil || c.suggested > 200 {
@@ -73,10 +89,7 @@ func (c *checker) linkStatement(s *scope, st Statement) {
 	case *PathStatement:
 		c.linkPath(s, st)
 	case *PortStatement:
-		if s.body == nil {
-			c.existingNode(s, st.Plus, st, "no part is connected to %s")
-			c.existingNode(s, st.Minus, st, "no part is connected to %s")
-		}
+		c.linkPort(s, st)
 	case *UsePartStatement:
 		c.linkUse(s, st)
 	case *TellStatement:

@@ -75,6 +75,9 @@ func (b *builder) ask(e *evaluator, st *TellStatement) (*Question, bool) {
 			break
 		}
 		q.What = o.finish()
+		if convert, ok := what.(*ConvertExpr); ok {
+			q.Unit = convert.Unit.Text()
+		}
 	case *InitialQuestion:
 		q.Sort = AskInitial
 	case *RootsQuestion:

@@ -28,7 +28,7 @@ func (c *checker) reportAt(origin Origin, code Code, format string, args ...any)
 		c.faults = true
 	}
 	key := findingKey{origin.File, origin.Span, code}
-	if c.seen[key] || len(c.findings) >= maxReported || c.muted(origin) {
+	if c.seen[key] || len(c.findings) >= maxReported || c.muted(origin) || c.brokenAt(origin) {
 		return &reported{}
 	}
 	c.seen[key] = true
@@ -58,6 +58,89 @@ func (c *checker) muted(origin Origin) bool {
 		return false
 	}
 	return true
+}
+
+// brokenAt says that the parser has reported something in the statement that a
+// place lies in: one thing is told about a broken statement.
+func (c *checker) brokenAt(origin Origin) bool {
+	u := c.byFile[origin.File]
+	if u == nil || len(u.file.Findings) == 0 {
+		return false
+	}
+	if u.broken == nil {
+		u.broken = []Span{}
+		u.collectBroken(u.file.Statements)
+	}
+	for _, s := range u.broken {
+		if s.Start <= origin.Span.Start && origin.Span.End <= s.End {
+			return true
+		}
+	}
+	return false
+}
+
+// collectBroken lists the statements with a finding of the parser; of a
+// subnetwork, its head.
+func (u *unit) collectBroken(statements []Statement) {
+	for _, st := range statements {
+		span := st.Headline().Span
+		if sub, ok := st.(*SubnetworkStatement); ok {
+			u.collectBroken(sub.Statements)
+			span.End = max(span.Start, sub.BraceOpen.Start)
+		}
+		i := sort.Search(len(u.file.Findings), func(i int) bool { return u.file.Findings[i].Origin.Span.Start >= span.Start })
+		if i < len(u.file.Findings) && u.file.Findings[i].Origin.Span.Start <= span.End && u.file.Findings[i].Severity == Error {
+			u.broken = append(u.broken, span)
+		}
+	}
+}
+
+// withoutEchoes drops the warning that a part is not wired where something
+// graver is told about its statement.
+func (c *checker) withoutEchoes(findings []*Finding) []*Finding {
+	var errors []Origin
+	for _, f := range findings {
+		if f.Severity == Error {
+			errors = append(errors, f.Origin)
+		}
+	}
+	kept := findings[:0]
+	for _, f := range findings {
+		if f.Code == "never-wired" && c.echo(f.Origin, errors) {
+			continue
+		}
+		kept = append(kept, f)
+	}
+	return kept
+}
+
+func (c *checker) echo(at Origin, errors []Origin) bool {
+	for _, e := range errors {
+		if e.File == at.File && e.Span.Start >= at.Span.Start && c.sameStatement(at, e.Span.Start) {
+			return true
+		}
+	}
+	return false
+}
+
+// sameStatement says that an offset lies in the statement of a place.
+func (c *checker) sameStatement(at Origin, offset int) bool {
+	u := c.byFile[at.File]
+	if u == nil {
+		return false
+	}
+	statements := u.file.Statements
+	for {
+		i := sort.Search(len(statements), func(i int) bool { return statements[i].Headline().Span.Start > at.Span.Start }) - 1
+		if i < 0 {
+			return false
+		}
+		if sub, ok := statements[i].(*SubnetworkStatement); ok && len(sub.Statements) > 0 && at.Span.Start >= sub.BodyStart {
+			statements = sub.Statements
+			continue
+		}
+		return offset <= statements[i].Headline().Span.End
+	}
 }
 
 // reported is a finding under construction; its methods do nothing when the

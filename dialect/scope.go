@@ -40,6 +40,7 @@ type unit struct {
 	used   []*unit // by its use statements, nil where not read
 	doing  bool    // its use statements are being followed
 	static *instance
+	broken []Span // statements that the parser has told about; nil: not collected
 }
 
 func (c *checker) newScope(u *unit, statements []Statement) *scope {

@@ -85,7 +85,7 @@ type symbolTable struct {
 	last   *File       // whose list is at hand
 	list   []SymbolUse // the list at hand
 	slab   []Symbol    // room for symbols
-	silent bool // records nothing: names of a question from outside
+	silent bool        // records nothing: names of a question from outside
 }
 
 // symbol makes a symbol. They are made many at a time, which is faster.
