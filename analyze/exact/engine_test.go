@@ -5,6 +5,7 @@ import (
 	"errors"
 	"math/big"
 	"slices"
+	"sync"
 	"testing"
 
 	"pgregory.net/rapid"
@@ -463,5 +464,45 @@ func TestLargeSingularPencil(t *testing.T) {
 	}
 	if _, _, err := p.SolveAt(ctx, big.NewRat(1, 3), big.NewRat(1000, 7), rhs); !errors.As(err, &singular) {
 		t.Errorf("SolveAt: %v", err)
+	}
+}
+
+// One prepared pencil serves several goroutines, and large ones share their
+// primes among processors.
+func TestPreparedIsShared(t *testing.T) {
+	ctx := context.Background()
+	p, rhs, input, output := mesh(9)
+	f, err := p.Prepare(ctx)
+	if err != nil {
+		t.Fatal(err)
+	}
+	results := make([]Ratio, 4)
+	var wg sync.WaitGroup
+	for i := range results {
+		wg.Go(func() {
+			out := input
+			if i%2 == 1 {
+				out = output
+			}
+			h, err := f.Responses(ctx, []Vector{rhs}, []Vector{out})
+			if err != nil {
+				t.Error(err)
+				return
+			}
+			results[i] = h[0][0]
+			f.Determinant()
+		})
+	}
+	wg.Wait()
+	if !results[0].Equal(results[2]) || !results[1].Equal(results[3]) || results[0].Equal(results[1]) {
+		t.Error("the answers differ")
+	}
+	s := big.NewRat(-123, 7)
+	x, _, err := p.SolveAt(ctx, s, new(big.Rat), rhs)
+	if err != nil {
+		t.Fatal(err)
+	}
+	if v, ok := results[0].Eval(s); !ok || v.Cmp(x[0]) != 0 {
+		t.Error("the response is not the solution at a point")
 	}
 }
