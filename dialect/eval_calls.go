@@ -150,11 +150,14 @@ func (e *evaluator) transcendental(x *CallExpr, info *callInfo, a operand) opera
 		return o
 	}
 	if (e.in != inSource && e.in != inLet) || a.has&^hasT != 0 || info.Name == "log" {
-		why := "only a plain number has one"
+		code, why := Code("wrong-sort"), "only a plain number has one"
 		if info.Name != "log" {
 			why = "it takes a plain number, or in a waveform an expression linear in t"
 		}
-		e.report(x.Span, "wrong-sort", "%s of %s is not possible here: %s", info.Name, e.written(x.Args[0].Extent()), why)
+		if e.in == inSource {
+			code = "waveform"
+		}
+		e.report(x.Span, code, "%s of %s is not possible here: %s", info.Name, e.written(x.Args[0].Extent()), why)
 		return operand{}
 	}
 	o := operand{ok: true, shape: a.shape, has: a.has, size: a.size + 1, span: x.Span}
