@@ -260,6 +260,9 @@ func (s *RootSet) separate(ctx context.Context) error {
 			}
 		}
 		if apart {
+			for _, u := range s.units {
+				u.solver.settle()
+			}
 			s.arrange(all)
 			return nil
 		}

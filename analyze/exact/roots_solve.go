@@ -36,7 +36,8 @@ type rootSolver struct {
 	searched  map[int]int64    // bits of the ball in which none was found
 	essential []int            // after certification: the real roots and those of the upper half plane
 	space     scratch
-	usual     int // W of the last evaluation that met its goal
+	usual     int    // W of the last evaluation that met its goal
+	homes     []home // once the roots are numbered
 	views     []start
 }
 
@@ -78,11 +79,58 @@ func (s *rootSolver) refine(ctx context.Context, goal int) error {
 		if err := s.iterate(ctx); err != nil {
 			return err
 		}
-		if s.certified || (s.isolated() && s.pairUp()) {
+		switch {
+		case s.homes != nil:
+			return s.stayedHome()
+		case s.isolated() && s.pairUp():
 			s.certified = true
 			return nil
 		}
 	}
+}
+
+// home is the disc of a root after which the roots are numbered.
+type home struct {
+	approximation
+	view start
+}
+
+// settle keeps the discs as homes: from now on every finer disc must be the same
+// root's. The caller has seen to it that no other root is within four times
+// the radius.
+func (s *rootSolver) settle() {
+	s.homes = make([]home, len(s.roots))
+	for i := range s.roots {
+		s.homes[i] = s.homeOf(i)
+	}
+}
+
+func (s *rootSolver) homeOf(i int) home {
+	h := home{s.roots[i], s.views[i]}
+	h.x, h.y = new(big.Int).Set(h.x), new(big.Int).Set(h.y)
+	return h
+}
+
+// stayedHome checks that every disc lies within four times the radius of its
+// home. A disc that does not goes back there and is an error; it would be a
+// defect of the iteration.
+func (s *rootSolver) stayedHome() error {
+	for _, i := range s.essential {
+		h := s.homes[i]
+		if s.roots[i].log == h.log {
+			continue
+		}
+		d, e := s.difference(i, -1)
+		limit := h.log + math.Log2(cmplx.Abs(h.view.x)) + float64(h.view.k-s.views[i].k)
+		// |new − home| ≤ 3 radii of the home, and the new radius at most one
+		if math.Log2(cmplx.Abs(d))+float64(e)+slack > limit+math.Log2(3) || s.logRadius(i) > limit {
+			s.roots[i], s.views[i] = h.approximation, h.view
+			s.roots[i].x, s.roots[i].y = new(big.Int).Set(h.x), new(big.Int).Set(h.y)
+			s.look(i)
+			return errUnsettled
+		}
+	}
+	return nil
 }
 
 func (s *rootSolver) begin(ctx context.Context) error {
@@ -410,9 +458,16 @@ func (s *rootSolver) repulsion(i int) complex128 {
 }
 
 // difference returns (z_i − z_j)/2^k_i as a complex128 times a power of two; each
-// part is within 2^-52 of the exact difference, relative.
+// part is within 2^-52 of the exact difference, relative. With j = −1 the other
+// point is the home of i.
 func (s *rootSolver) difference(i, j int) (d complex128, exponent int) {
-	a, b := &s.roots[i], &s.roots[j]
+	a := &s.roots[i]
+	b := a
+	if j >= 0 {
+		b = &s.roots[j]
+	} else {
+		b = &s.homes[i].approximation
+	}
 	// Common unit: the finer of the two.
 	ea, eb := a.k-64*a.words+1, b.k-64*b.words+1
 	unit := min(ea, eb)
