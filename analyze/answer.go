@@ -196,5 +196,5 @@ type Verdict struct {
 	InTolerance               Decision
 	Corner                    string
 	CornerMargin, CornerWorst number.Ball
-	Why         string // for undecided and refused limits
+	Why                       string // for undecided and refused limits
 }

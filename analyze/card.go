@@ -133,7 +133,9 @@ func (a *Analysis) tellCard(ctx context.Context, t *dialect.TellStatement, file 
 	return Card{}, false, nil
 }
 
-func contains(outer, inner dialect.Span) bool { return outer.Start <= inner.Start && inner.End <= outer.End }
+func contains(outer, inner dialect.Span) bool {
+	return outer.Start <= inner.Start && inner.End <= outer.End
+}
 
 // limited keeps a card at about a dozen lines.
 func limited(lines []string, n int) []string {

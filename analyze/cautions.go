@@ -112,6 +112,9 @@ func (a *Analysis) touch(ctx context.Context, node int) (touched, bool, error) {
 	if err != nil {
 		return touched{}, false, err
 	}
+	if size, ok := crudeBound(ctx, s); ok && size < 30 {
+		return touched{}, false, nil // cannot reach any of the limits
+	}
 	peak, err := s.Curve().Abs().Peak(ctx, response.Range{})
 	if errors.Is(err, response.ErrUndefined) {
 		return touched{node, "has no bounded peak (" + err.Error() + ")", 1e300}, true, nil
@@ -127,6 +130,44 @@ func (a *Analysis) touch(ctx context.Context, node int) (touched, bool, error) {
 		return touched{}, false, err
 	}
 	return touched{node, "swings by " + figure(swing, "V") + " rms", swing.MidFloat64()}, true, nil
+}
+
+// crudeBound is a size that a signal never exceeds, found without searching:
+// the sum of the sizes of its terms, where none of them grows.
+func crudeBound(ctx context.Context, s *response.Signal) (float64, bool) {
+	pieces, err := s.Pieces(ctx, 6)
+	if err != nil {
+		return 0, false
+	}
+	sum := 0.0
+	for _, p := range pieces {
+		for _, t := range p.Terms {
+			if sign, sure := t.Pole.Re.Sign(); t.Power > 0 || sure && sign > 0 || !sure && !t.Pole.Re.ContainsZero() {
+				return 0, false
+			}
+			size, _ := t.Coefficient.Abs().Upper().Float64()
+			sum += size
+		}
+		if len(p.Impulses) > 0 {
+			return 0, false
+		}
+	}
+	return sum * 1.001, true
+}
+
+// cannotStore tells whether a part stays far below the hazardous energy.
+func (a *Analysis) cannotStore(ctx context.Context, part int) bool {
+	p := &a.description.Parts[part]
+	letter := byte('v')
+	if p.Kind == dialect.Inductor {
+		letter = 'i'
+	}
+	s, err := a.probeSignal(ctx, dialect.Probe{Letter: letter, Of: dialect.OfPart, Part: part}, configuration{})
+	if err != nil {
+		return true
+	}
+	size, ok := crudeBound(ctx, s)
+	return ok && p.Value.Float()*size*size/2 < 10
 }
 
 // alternating is the rms value of what remains about its mean in the long run.
@@ -157,6 +198,9 @@ func (a *Analysis) storedEnergy(ctx context.Context) (*dialect.Finding, error) {
 	for i := range a.description.Parts {
 		p := &a.description.Parts[i]
 		if !wired(p) || p.Kind != dialect.Capacitor && p.Kind != dialect.Inductor {
+			continue
+		}
+		if a.cannotStore(ctx, i) {
 			continue
 		}
 		c, err := a.storedCurve(ctx, i, configuration{})
@@ -213,6 +257,9 @@ func (a *Analysis) dischargeOf(ctx context.Context, part int) (float64, string, 
 	s, err := a.probeSignal(ctx, probe, configuration{})
 	if err != nil {
 		return 0, "", err
+	}
+	if size, ok := crudeBound(ctx, s); ok && size < 60 {
+		return 0, "", errSafe
 	}
 	peak, err := s.Curve().Abs().Peak(ctx, response.Range{})
 	if err != nil || !above(peak.Value, touchDC) {

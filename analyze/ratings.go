@@ -80,6 +80,9 @@ func (a *Analysis) stress(ctx context.Context, part int, r rating) (number.Ball,
 	if err != nil {
 		return number.Ball{}, err
 	}
+	if size, ok := crudeBound(ctx, s); ok && size < r.limit.Float()/2 {
+		return number.BallFromFloat64(size, figurePrecision), nil
+	}
 	x, err := s.Curve().Abs().Peak(ctx, response.Range{})
 	return x.Value, err
 }

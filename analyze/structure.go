@@ -31,8 +31,8 @@ func (a *Analysis) connectivity() []dialect.Finding {
 	inspect := func(n *network.Network, when string) {
 		for _, p := range n.Inspect() {
 			key := fmt.Sprint(p.Kind, sorted(p.Elements), sorted(p.Nodes))
-			if seen[key] || p.Kind == network.SelfLoop {
-				continue
+			if seen[key] || p.Kind == network.SelfLoop || p.Kind == network.InductorCutset && len(p.Elements) < 2 {
+				continue // a lone coil that a switch leaves open carries nothing
 			}
 			seen[key] = true
 			if f, ok := a.findingOf(p, when); ok {

@@ -165,7 +165,7 @@ func (a *Analysis) frequencyRow(ctx context.Context, e dialect.Expression, c con
 	}
 	row := []number.Ball{number.BallFromRat(f, 96)}
 	if complexValued {
-		return append(row, v.Abs(), degrees(v.Arg())), nil
+		return append(row, v.Abs(), degrees(angle(v))), nil
 	}
 	return append(row, v.Re), nil
 }

@@ -32,12 +32,21 @@ func (a *Analysis) valueAnswer(ctx context.Context, q *dialect.Question, head Qu
 		out.Complex, out.At = true, at.Where
 	}
 	if out.Complex {
-		out.Phase = degrees(v.Arg())
+		out.Phase = degrees(angle(v))
 		out.Remarks = append(out.Remarks, a.remarksOf(ctx, q.What, c)...)
 	} else {
 		out.Magnitude = v.Re.Abs()
 	}
 	return out, nil
+}
+
+// angle is the principal value of the angle, whole where a value lies on the
+// negative real axis to within its bound: there the two ends of the range meet.
+func angle(v number.ComplexBall) number.Ball {
+	if sign, sure := v.Re.Sign(); sure && sign < 0 && v.Im.ContainsZero() {
+		return v.Neg().Arg().Add(number.BallFromExact(number.Pi(), v.Prec()))
+	}
+	return v.Arg()
 }
 
 // remarksOf gives what a function's evaluation remarked.
