@@ -1,6 +1,6 @@
 ;; Prints, for every line of the files on the command line, the line and below
 ;; it one letter a character: the class in which portlight-mode colours it.
-;; README.md beside this file names the classes.
+;; ../README.md names the classes.
 ;; Usage: emacs --batch -Q -L FOLDER-OF-PORTLIGHT-MODE -l emacs.el FILE…
 (require 'portlight-mode)
 (set-language-environment "UTF-8")

@@ -1,6 +1,6 @@
 // Prints, for every line of the networks named, the line and below it one
 // letter a character: the class in which the TextMate grammar colours it.
-// README.md beside this file names the classes.
+// ../README.md names the classes.
 // Usage: node textmate.mjs MODULES GRAMMAR FILE…
 import { readFileSync } from "node:fs";
 import { createRequire } from "node:module";

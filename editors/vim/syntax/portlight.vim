@@ -8,10 +8,13 @@ set cpoptions&vim
 syntax case match
 syntax iskeyword @,48-57,_,192-255
 
-" A name, a node's name, and the ends of a word. A part begins a line or a box.
-let s:name   = '\d\@!\k\+'
-let s:before = '\%(\k\|\.\)\@1<!'
-let s:after  = '\k\@!'
+" A node's name, a name, and the ends of a word; letters beyond the basic plane
+" of Unicode are no keyword characters for Vim. A part begins a line or a box.
+let s:letter = '\%(\k\|[^\x00-\uffff]\)'
+let s:node   = s:letter . '\+'
+let s:name   = '\d\@!' . s:node
+let s:before = '\%(\k\|[^\x00-\uffff]\|\.\)\@4<!'
+let s:after  = s:letter . '\@!'
 let s:opens  = '\%(\%(^\|\[\|||\)\s*\)\@20<='
 let s:comma  = '\%(\%(^\|,\)\s*\)\@20<='
 let s:kinds  = '\%(resistor\|inductor\|capacitor\|impedance\|admittance\|voltage\s\+source\|current\s\+source\|op\s\+amp\|transformer\|coupling\|switch\|wire\)'
@@ -50,8 +53,8 @@ call s:match('plightWire', '\][-−]\[\@!', 'nextgroup=plightNode skipwhite')
 call s:match('plightPart', s:name . '\ze\s*\%(\]\||\|$\)', 'contained')
 call s:match('plightPartFirst', s:name, 'contained nextgroup=plightPartSecond skipwhite')
 call s:match('plightPartSecond', s:name, 'contained')
-call s:match('plightNode', '\k\+', 'contained')
-call s:match('plightNodeFirst', '\k\+', 'contained nextgroup=plightNode skipwhite')
+call s:match('plightNode', s:node, 'contained')
+call s:match('plightNodeFirst', s:node, 'contained nextgroup=plightNode skipwhite')
 
 " Parts and uses of subnetworks, as statements or in a box.
 call s:match('plightKind', s:opens . s:kinds . '\ze\s\+' . s:name, 'nextgroup=plightDefine skipwhite')
@@ -61,8 +64,8 @@ call s:match('plightDefineUse', s:name, 'contained nextgroup=plightEquals skipwh
 call s:match('plightEquals', '=', 'contained nextgroup=plightDefine skipwhite')
 
 " Terminals: + at mid, primary at in hull, plus at out.
-call s:match('plightTerminal', s:comma . '\%([-+−]\|' . s:name . '\)\ze\s\+at\s\+\k\+\s*\%([],|#]\|$\)', 'nextgroup=plightKeywordAt skipwhite')
-call s:match('plightKeyword', s:comma . 'output\ze\s\+at\s\+\k\+\s*\%([],|#]\|$\)', 'nextgroup=plightKeywordAt skipwhite')
+call s:match('plightTerminal', s:comma . '\%([-+−]\|' . s:name . '\)\ze\s\+at\s\+' . s:node . '\s*\%([],|#]\|$\)', 'nextgroup=plightKeywordAt skipwhite')
+call s:match('plightKeyword', s:comma . 'output\ze\s\+at\s\+' . s:node . '\s*\%([],|#]\|$\)', 'nextgroup=plightKeywordAt skipwhite')
 call s:match('plightKeyword', s:comma . '\%(primary\|secondary\)\ze\s\+at\s', 'nextgroup=plightKeywordAtPair skipwhite')
 call s:match('plightKeywordAt', 'at\ze\s', 'contained nextgroup=plightNode skipwhite')
 call s:match('plightKeywordAtPair', 'at\ze\s', 'contained nextgroup=plightNodeFirst skipwhite')
@@ -89,7 +92,7 @@ call s:match('plightKeyword', '^\s*\zsallow\ze\%(\s\|$\)', 'nextgroup=plightCode
 call s:match('plightCode', '\l[a-z-]*', 'contained')
 
 " A line is a path if its first word stands before -[, whatever the word.
-call s:match('plightNode', '^\s*\zs\k\+\ze\s*[-−]\[')
+call s:match('plightNode', '^\s*\zs' . s:node . '\ze\s*[-−]\[')
 
 call s:match('plightString', '"[^"]*\%("\|$\)')
 call s:match('plightComment', '#.*$')
