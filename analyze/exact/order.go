@@ -1,5 +1,7 @@
 package exact
 
+import "math"
+
 // elimination is the order in which a system is eliminated, with the products
 // that make up every entry of its triangular factors. It depends on the
 // pattern alone; that the pivots are not zero was tested at one random point.
@@ -139,7 +141,7 @@ func (z *eliminator) block(b int) bool {
 // row and column.
 func (z *eliminator) choose(rows []int, start, end int) (at, col int) {
 	at, col = -1, -1
-	best := 1 << 62
+	best := math.MaxInt
 	for k, i := range rows {
 		r := len(z.row[i]) - 1
 		if r > best { // even a column with one other entry costs more

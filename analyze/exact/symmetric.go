@@ -1,5 +1,7 @@
 package exact
 
+import "math"
+
 // Networks of resistors, inductors, capacitors, couplings and transformers
 // are reciprocal: up to positive or negative factors of the rows their
 // matrices are symmetric, and one triangular factor gives the other.
@@ -177,7 +179,7 @@ func (z *eliminator) addMirrored(i, j int, e factorEntry, v uint64) int32 {
 // chooseDiagonal returns the place in the list of the row with the fewest
 // entries among those whose diagonal value is not zero, or −1.
 func (z *eliminator) chooseDiagonal(list []int) int {
-	best, bestCount := -1, 1<<62
+	best, bestCount := -1, math.MaxInt
 	for k, i := range list {
 		count := len(z.row[i]) + len(z.col[i])
 		if count >= bestCount {
