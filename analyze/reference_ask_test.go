@@ -329,7 +329,7 @@ var refusalCodes = map[string][]dialect.Code{
 	"DANGLING_NODE":      {"floating-node"},
 	"VOLTAGE_LOOP":       {"voltage-loop"},
 	"CURRENT_CUTSET":     {"current-cutset"},
-	"OPAMP_NO_FEEDBACK":  {"singular"},
+	"OPAMP_NO_FEEDBACK":  {"no-feedback"},
 	"COUPLING_GT_1":      {"coupling-range"},
 	"INDUCTANCE_NOT_PSD": {"coupling-range"},
 	"NONPOSITIVE_VALUE":  {"value-range", "not-positive"},
@@ -340,7 +340,7 @@ var refusalCodes = map[string][]dialect.Code{
 	"UNKNOWN_NODE":       {"unknown-name"},
 	"UNKNOWN_ELEMENT":    {"unknown-name"},
 	"SELF_LOOP":          {"self-loop", "short-circuited"},
-	"WRONG_KIND":         {"wrong-kind"},
+	"WRONG_KIND":         {"wrong-sort"},
 }
 
 func (a *asker) reject(q *caseQuestion) outcome {
@@ -357,7 +357,8 @@ func (a *asker) reject(q *caseQuestion) outcome {
 		return outcome{err: err}
 	}
 	for _, f := range findings {
-		message := f.Message
+		// The line at fault is shown with the message and may do the naming.
+		message := f.Message + " / " + lineOf(f.Origin)
 		for _, r := range f.Related {
 			message += " / " + r.Message
 		}
@@ -389,6 +390,15 @@ func (a *asker) reject(q *caseQuestion) outcome {
 		}
 	}
 	return wrong("nothing says %s about %s; told: %s", want.Reason, strings.Join(want.Names, ", "), strings.Join(told, " | "))
+}
+
+// lineOf is the line of the text that an origin begins in.
+func lineOf(o dialect.Origin) string {
+	if o.File == nil {
+		return ""
+	}
+	span := o.File.Lines.Span(o.File.Lines.Line(o.Span.Start))
+	return o.File.Text[span.Start:span.End]
 }
 
 // sameRefusal tells whether a message has a code that means the reason and

@@ -9,7 +9,6 @@ import (
 
 // metricStatements are the functions that a case's figures of merit need.
 var metricStatements = map[string][]string{
-	"a06_parallel_rlc_q":         {"function flank = z[a]/R1*sqrt(2)"},
 	"c19_instrumentation_amp":    {"function common = v[out]/Va + v[out]/Vb", "function difference = (v[out]/Vb - v[out]/Va)/2"},
 	"f11_complex_line_impedance": {"function reflection = (z[a] - 600 Ω)/(z[a] + 600 Ω)"},
 	"f20_complex_line_impedance_uk": {
@@ -31,8 +30,8 @@ var metrics = map[string]metricAsker{
 	"peak_time":                      nil, // by case, below
 	"overshoot_percent":              scaled(measure("overshoot(v[out])"), 100),
 	"settling_time_2_percent":        measure("settle(v[out], 2 %)"),
-	"half_power_omega_lower":         measure("crossover(flank) to 1e6 rad/s"),
-	"half_power_omega_upper":         measure("crossover(flank) from 1e6 rad/s"),
+	"half_power_omega_lower":         halfPower(-1),
+	"half_power_omega_upper":         halfPower(1),
 	"Q":                              measure("quality(H_1)"),
 	"energy_lost":                    energyLost,
 	"bandwidth_3dB_omega":            measure("bandwidth(H_1)"),
@@ -114,6 +113,19 @@ func scaled(ask metricAsker, factor float64) metricAsker {
 	return func(a *asker) (float64, error) {
 		x, err := ask(a)
 		return x * factor, err
+	}
+}
+
+// halfPower is an edge of a tuned circuit's band from its width B and its
+// natural frequency ω0: √(ω0² + B²/4) ± B/2.
+func halfPower(side float64) metricAsker {
+	return func(a *asker) (float64, error) {
+		width, err := measure("bandwidth(H_1)")(a)
+		if err != nil {
+			return 0, err
+		}
+		natural, err := measure("natural_frequency(H_1)")(a)
+		return math.Hypot(natural, width/2) + side*width/2, err
 	}
 }
 

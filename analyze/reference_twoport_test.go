@@ -26,8 +26,8 @@ func (a *asker) twoPort(q *caseQuestion) outcome {
 func judgeMatrix(q *caseQuestion, v *view) outcome {
 	var missing struct{ Exists *bool }
 	if json.Unmarshal(q.Expect, &missing) == nil && missing.Exists != nil {
-		if v.Exists == nil || *v.Exists || v.Why == "" {
-			return wrong("the set does not exist, the answer is %+v", v)
+		if v.Exists == nil || *v.Exists != *missing.Exists || (v.Why == "") != *v.Exists {
+			return wrong("whether the set exists, and why not: the answer is %+v", v)
 		}
 		return outcome{}
 	}
