@@ -506,34 +506,55 @@ func checkEvaluation(t *testing.T, p Poly, e *evaluator, a *approximation, w int
 	y, _ := dyadic(a.y, unit).Rat(nil)
 	z := a.fixed()
 	ev := e.evaluate(z, w, space)
-	// M is not part of the answer: compare logarithms of p/zp' and its bound.
 	pr, pi := p.EvalGaussian(x, y)
-	dr, di := p.Mul(PolyFromInt64s(1)).Derivative().Shift(1).EvalGaussian(x, y)
-	logAbs := func(re, im *big.Rat) float64 {
-		sum := new(big.Rat).Add(new(big.Rat).Mul(re, re), new(big.Rat).Mul(im, im))
-		f := new(big.Float).SetPrec(64).SetRat(sum)
-		if f.Sign() == 0 {
-			return math.Inf(-1)
+	dr, di := p.Derivative().Shift(1).EvalGaussian(x, y)
+	if z.uneg != z.vneg { // evaluated in the first quadrant
+		pi.Neg(pi)
+		di.Neg(di)
+	}
+	m := e.top(z.k+int(math.Floor(z.log)), phaseStep(z.log))
+	within := func(name string, re, im []uint64, wantRe, wantIm *big.Rat, bound float64) {
+		t.Helper()
+		sum := new(big.Rat)
+		for i, words := range [][]uint64{re, im} {
+			d := twoPower(ev.fraction - m)
+			d.Mul(d, []*big.Rat{wantRe, wantIm}[i])
+			d.Sub(d, new(big.Rat).SetInt(signedWords(words)))
+			sum.Add(sum, d.Mul(d, d))
 		}
-		m := new(big.Float)
-		k := f.MantExp(m)
-		v, _ := m.Float64()
-		return (math.Log2(v) + float64(k)) / 2
-	}
-	base := int(math.Floor(z.log))
-	m := float64(e.top(z.k+base, phaseStep(z.log)))
-	exactP, exactD := logAbs(pr, pi)-m, logAbs(dr, di)-m
-	within := func(name string, got, want, bound float64) {
-		// |2^got − 2^want| ≤ 2^bound
-		if math.Abs(math.Exp2(got-bound)-math.Exp2(want-bound)) > 1+1e-6*math.Exp2(math.Max(got, want)-bound) {
-			t.Errorf("%s of degree %d at 2^%d, W = %d: 2^%v, exactly 2^%v, bound 2^%v", name, p.Degree(), a.k, w, got, want, bound)
+		units := math.Exp2(bound + float64(ev.fraction))
+		if f, _ := sum.Float64(); math.Sqrt(f) > units {
+			t.Errorf("%s of degree %d at 2^%d, W = %d: off by %v units, bound %v", name, p.Degree(), a.k, w, math.Sqrt(f), units)
 		}
 	}
-	within("p", ev.logP, exactP, ev.logEP)
-	within("zp'", ev.logD, exactD, ev.logED)
-	if b := bound(&ev); !math.IsInf(b, 1) && exactP-exactD > b {
-		t.Errorf("p/zp' is 2^%v, bound 2^%v", exactP-exactD, b)
+	within("p", ev.pr, ev.pi, pr, pi, ev.logEP)
+	within("zp'", ev.dr, ev.di, dr, di, ev.logED)
+	// |p| ≤ 2^bound·|zp'|
+	if b := bound(&ev); !math.IsInf(b, 1) {
+		square := func(re, im *big.Rat) *big.Rat {
+			return new(big.Rat).Add(new(big.Rat).Mul(re, re), new(big.Rat).Mul(im, im))
+		}
+		right := square(dr, di)
+		if right.Mul(right, twoPower(int(math.Ceil(2*b)))).Cmp(square(pr, pi)) < 0 {
+			t.Errorf("p/zp' is beyond its bound 2^%v", b)
+		}
 	}
+}
+
+func twoPower(e int) *big.Rat {
+	r := new(big.Rat).SetInt(new(big.Int).Lsh(big.NewInt(1), uint(max(e, -e))))
+	if e < 0 {
+		r.Inv(r)
+	}
+	return r
+}
+
+func signedWords(words []uint64) *big.Int {
+	n := fromWords(words)
+	if int64(words[len(words)-1]) < 0 {
+		n.Sub(n, new(big.Int).Lsh(big.NewInt(1), uint(64*len(words))))
+	}
+	return n
 }
 
 func ExampleRoots() {
