@@ -197,8 +197,11 @@ func (a *Analysis) judgePlaces(ctx context.Context, l *dialect.Limit, places []f
 		}
 		if p.Unbounded || !margin.IsFinite() {
 			if d := unboundedDecision(l, p); d == Broken {
-				return Verdict{Decision: Broken, Proved: true, HasWhere: !p.Infinite, Where: p.Omega, Dimension: v.Dimension,
-					Why: "the magnitude grows without bound there"}, nil
+				why := "the magnitude grows without bound there"
+				if falls(p) {
+					why = "the magnitude falls to zero there, its level without bound"
+				}
+				return Verdict{Decision: Broken, Proved: true, HasWhere: !p.Infinite, Where: p.Omega, Dimension: v.Dimension, Why: why}, nil
 			}
 			continue
 		}
@@ -247,11 +250,15 @@ func unboundedDecision(l *dialect.Limit, p frequency.Point) Decision {
 	if _, ok := l.Left.(*dialect.Constant); ok {
 		upper = !upper
 	}
-	if upper {
+	if upper != falls(p) {
 		return Broken
 	}
 	return Holds
 }
+
+// falls tells a magnitude of zero, whose level has no lower bound, from one
+// that grows without bound.
+func falls(p frequency.Point) bool { return !p.Unbounded && p.Value.ContainsZero() }
 
 // marginAt evaluates both sides at a candidate. The curve's own value there is
 // what its polynomial gives; the sides are evaluated afresh from it.

@@ -130,7 +130,11 @@ func meets(_ context.Context, answer analyze.Answer, expectation string) error {
 	case "roots", "poles", "zeros":
 		return meetsRoots(&v, field, wanted, tolerance)
 	case "numerator", "denominator":
-		return meetsList(map[string][]string{"numerator": v.Numerator, "denominator": v.Denominator}[field], wanted)
+		return meetsList(side(&v, field), wanted, tolerance)
+	}
+	if place, of, ok := strings.Cut(field, "."); ok && len(place) == 2 && len(v.Entries) == 2 {
+		// 12.numerator: an entry of a matrix
+		return meetsList(side(&v.Entries[(place[0]-'1')&1][(place[1]-'1')&1], of), wanted, tolerance)
 	}
 	var fields map[string]any
 	if err := json.Unmarshal(data, &fields); err != nil {
@@ -160,14 +164,23 @@ func sameRat(a, b string) bool {
 	return err == nil && x.Cmp(y) == 0
 }
 
-// meetsList compares exact coefficients.
-func meetsList(got []string, wanted string) error {
+// side is one polynomial of a function, scaled so that the lowest coefficient
+// of the denominator is 1, as the JSON form has it.
+func side(v *view, name string) []string {
+	if name == "numerator" {
+		return v.Numerator
+	}
+	return v.Denominator
+}
+
+// meetsList compares coefficients, exactly without a tolerance.
+func meetsList(got []string, wanted string, tolerance float64) error {
 	want := strings.Fields(wanted)
 	if len(got) != len(want) {
 		return fmt.Errorf("it is %v, want %v", got, want)
 	}
 	for i := range got {
-		if !sameRat(got[i], want[i]) {
+		if !sameRat(got[i], want[i]) && !(math.Abs(float(got[i])-float(want[i])) <= tolerance && tolerance > 0) {
 			return fmt.Errorf("it is %v, want %v", got, want)
 		}
 	}
