@@ -23,6 +23,12 @@ var (
 	hazardousEnergy = number.FromInt(20)
 )
 
+// quickDischarge is the time, in s, within which what is left after a
+// disconnection has to be below the limits: 2 s after withdrawal of a
+// connector (IEC 62368-1, 5.5.2.2; from memory). A faster discharge is told
+// without a warning.
+const quickDischarge = 2.0
+
 // mostCautioned is up to how many nodes the cautions look at each node.
 const mostCautioned = 200
 
@@ -244,6 +250,9 @@ func (a *Analysis) remainingVoltage(ctx context.Context) (*dialect.Finding, erro
 		}
 		longest = seconds
 		worst = &dialect.Finding{Code: "stored-energy", Severity: dialect.Warning, Origin: partOrigin(p), Message: text + deferral}
+		if seconds < quickDischarge {
+			worst.Severity = dialect.Information
+		}
 	}
 	return worst, nil
 }

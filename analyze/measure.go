@@ -130,7 +130,7 @@ func rangeOf(at spot) response.Range {
 // timeMeasure computes a figure of merit of a signal over a range.
 func timeMeasure(ctx context.Context, e *dialect.Call, c *response.Curve, r response.Range) (measured, error) {
 	instant := func(t number.Ball, err error) (measured, error) {
-		return measured{value: t, hasWhere: true, inTime: true, where: t}, err
+		return measured{value: t}, err
 	}
 	extreme := func(x response.Extreme, err error) (measured, error) {
 		return measured{value: x.Value, hasWhere: x.HasAt, inTime: true, where: x.At}, err

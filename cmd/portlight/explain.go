@@ -51,3 +51,52 @@ func similarCode(asked string) string {
 	}
 	return "; did you mean " + orList(near) + "?"
 }
+
+// lineWidth is how wide explanations are set.
+const lineWidth = 78
+
+// explanation gives the page of a code.
+func explanation(code dialect.Code) (page, bool) {
+	e, ok := dialect.Explain(code)
+	if !ok {
+		return page{}, false
+	}
+	var b strings.Builder
+	fmt.Fprintf(&b, "%s  (%s)\n%s\n\n", e.Code, e.Severity, e.Title)
+	b.WriteString(wrapped(e.Meaning, lineWidth))
+	if e.Mend != "" {
+		b.WriteString("\nTo mend it: " + strings.TrimLeft(wrapped(e.Mend, lineWidth), " "))
+	}
+	if e.Example != "" {
+		b.WriteString("\nA file that has it:\n\n")
+		for _, l := range strings.Split(strings.TrimRight(e.Example, "\n"), "\n") {
+			b.WriteString(strings.TrimRight("    "+l, " ") + "\n")
+		}
+	}
+	if e.Question != "" {
+		fmt.Fprintf(&b, "\nasked: %s\n", e.Question)
+	}
+	return page{e.Title, b.String()}, true
+}
+
+// wrapped sets a paragraph in lines of at most a width, where words allow.
+func wrapped(text string, width int) string {
+	var b strings.Builder
+	at := 0
+	for _, word := range strings.Fields(text) {
+		n := len([]rune(word))
+		switch {
+		case at == 0:
+		case at+1+n > width:
+			b.WriteString("\n")
+			at = 0
+		default:
+			b.WriteString(" ")
+			at++
+		}
+		b.WriteString(word)
+		at += n
+	}
+	b.WriteString("\n")
+	return b.String()
+}
