@@ -9,7 +9,7 @@ var networkExplanations = []Explanation{
 		Mend:    "Connect it, correct its name, or say with a port that the node is meant to be open.",
 		Example: `ground hull
 port source at supply hull
-supply -[resistor Rfeed = 47 Ω]- rail -[capacitor Crail = 10 µF]- hull
+supply -[resistor Rfeed = 47 Ω]- rail -[capacitor Crail = 10 µF || resistor Rload = 1 kΩ]- hull
 rail -[resistor Rprobe = 1 kΩ]- probe
 `,
 	},
@@ -25,7 +25,7 @@ lamp -[resistor Rlamp = 100 Ω || capacitor Clamp = 1 µF]- lamp_return
 `,
 	},
 	{
-		Code: "no-dc-path", Severity: Warning, Analysis: true,
+		Code: "no-dc-path", Severity: Information, Analysis: true,
 		Title:   "A node without a path for direct current",
 		Meaning: "Only capacitors and current sources lead to this part of the network, so its voltage at rest depends on the charge it happens to hold.",
 		Mend:    "Add a resistor to the reference, or give the initial voltages of the capacitors.",
@@ -82,7 +82,7 @@ hull -[Iled]- node -[Ibias]- far -[resistor Rload = 100 Ω]- hull
 port source at supply hull
 supply -[resistor Rfeed = 47 Ω]- rail
 rail -[capacitor C1 = 1 µF]- mid -[capacitor C2 = 2.2 µF]- hull
-rail -[capacitor C3 = 3.3 µF]- hull
+rail -[capacitor C3 = 3.3 µF || resistor Rload = 1 kΩ]- hull
 mid -[resistor Rmid = 100 Ω]- hull
 `,
 	},
@@ -142,6 +142,7 @@ out -[resistor Rload = 1 kΩ]- hull
 		Meaning: "A natural frequency has a positive real part, or a repeated one lies on the imaginary axis: a disturbance grows without limit.",
 		Mend:    "Check the signs of feedback and of dependent sources.",
 		Example: `ground hull
+allow touch-voltage because "the supplies bound the output"
 voltage source Vsense = 1 V * u(t)
 in -[Vsense]- hull
 in -[resistor Rin = 10 kΩ]- tap -[resistor Rback = 10 kΩ]- out
@@ -199,7 +200,7 @@ mast -[resistor Rheater = 2.2 kΩ]- hull
 `,
 	},
 	{
-		Code: "limit-broken", Severity: Warning, Analysis: true,
+		Code: "limit-broken", Severity: Error, Analysis: true,
 		Title:   "A limit does not hold",
 		Meaning: "The require line is not met by the nominal values. The message says where it is broken worst, and by how much.",
 		Mend:    "Change the network, or the limit.",
@@ -223,9 +224,16 @@ require final(v[rail]) <= 6.1 V
 `,
 	},
 	{
-		Code: "limit-undecided", Severity: Warning, Analysis: true,
+		Code: "limit-undecided", Severity: Information, Analysis: true,
 		Title:   "A limit could not be decided",
 		Meaning: "The limit is met or missed by less than what the answer is known to, or it could not be worked out in the time allowed. The margin is given.",
 		Mend:    "Leave more room in the limit, or ask about a shorter range.",
+		Example: `ground hull
+voltage source Vcal = 1 V * u(t)
+cal -[Vcal]- hull
+cal -[resistor R1 = 1 kΩ]- out -[capacitor C1 = 1 µF]- hull
+function H = v[out]/Vcal
+require gain(H) <= sqrt(0.5) at 1000 rad/s
+`,
 	},
 }

@@ -29,7 +29,7 @@ func TestExamplesOfFindings(t *testing.T) {
 			t.Errorf("%s is not explained in full", e.Code)
 		}
 		if e.Example == "" {
-			if !e.Analysis {
+			if !e.Analysis && e.Question == "" {
 				t.Errorf("%s has no example", e.Code)
 			}
 			continue

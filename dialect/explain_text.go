@@ -18,8 +18,8 @@ supply -[capacitor Cfeed = 1,5 nF]- hull
 		Meaning: "No part, node, port, function or constant of this name is defined where the name is used. Nodes come into being by being wired; everything else by its own statement. A subnetwork sees the constants of its file, but neither its nodes nor its parts.",
 		Mend:    "Correct the spelling (the nearest name is offered), or define what is missing.",
 		Example: `ground hull
-supply -[resistor Rfeed = 47 Ω]- rail -[capacitor Crail = 10 µF]- hull
-port rail_port at rail hull
+supply -[resistor Rfeed = 47 Ω]- rail -[capacitor Crail = 10 µF || resistor Rload = 1 kΩ]- hull
+port source at supply hull
 tell z[rial] at 1 kHz
 `,
 	},
@@ -77,7 +77,7 @@ supply -[resistor Rfeed = 47 Ω]- hull
 		Example: `ground hull
 port source at supply hull
 resistor Rfeed = 47 Ω
-supply -[Rfeed]- rail -[capacitor Crail = 10 µF]- hull
+supply -[Rfeed]- rail -[resistor Rload = 1 kΩ]- hull
 supply -[Rfeed]- hull
 `,
 	},
@@ -112,7 +112,7 @@ supply -[resistor Rload = 1 kΩ]- hull
 		Mend:    "The message says what it is and what is needed; often v[…], i[…] or a function is missing around it.",
 		Example: `ground hull
 port source at supply hull
-supply -[resistor Rfeed = 47 Ω]- rail -[capacitor Crail = 10 µF]- hull
+supply -[resistor Rfeed = 47 Ω]- rail -[resistor Rload = 1 kΩ]- hull
 tell rail
 `,
 	},
@@ -183,6 +183,7 @@ supply -[resistor Rfeed = 47 Ω]- hull
 port source at sense hull
 op amp U1 = ideal, + at sense, output at out
 sense -[resistor Rin = 1 MΩ]- hull
+out -[resistor Rback = 1 kΩ]- tap -[resistor Rtap = 1 kΩ]- hull
 out -[resistor Rload = 1 kΩ]- hull
 `,
 	},

@@ -9,7 +9,7 @@ var valueExplanations = []Explanation{
 		Mend:    "Correct the unit or the formula. Conductance to resistance is 1/(10 mS); a level to a ratio is 10^(G/(20 dB)).",
 		Example: `ground hull
 port source at supply hull
-supply -[capacitor Crail = 10 mH]- hull
+supply -[capacitor Crail = 10 mH || resistor Rload = 1 kΩ]- hull
 `,
 	},
 	{
@@ -39,7 +39,7 @@ supply -[resistor Rfeed = 47 Kohm]- hull
 		Mend:    "Write the prefix that is meant. If the value is right, accept the finding: allow prefix-suspect because \"…\".",
 		Example: `ground hull
 port source at supply hull
-supply -[resistor Rfeed = 47 Ω]- rail -[capacitor Crail = 10 PF]- hull
+supply -[resistor Rfeed = 47 Ω]- rail -[capacitor Crail = 10 PF || resistor Rload = 1 kΩ]- hull
 `,
 	},
 	{
@@ -136,6 +136,7 @@ coupling core = 1.2, between Lp Ls
 		Mend:    "Put them in order of time and leave out what changes nothing.",
 		Example: `ground hull
 port source at supply hull
+supply -[resistor Rfeed = 47 Ω]- hull
 supply -[switch S1 = closes at 2 ms, opens at 1 ms]- rail -[resistor Rload = 1 kΩ]- hull
 `,
 	},
