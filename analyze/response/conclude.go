@@ -295,7 +295,7 @@ func (s *search) resolveTail(st *stage, t float64) (*sum, bool) {
 			}
 		}
 	}
-	signs, _, rest, ok := s.curve.branch(leaves, 1)
+	signs, _, rest, ok := s.curve.branch(leaves, 1, 0)
 	if !ok || len(rest) != 0 {
 		return nil, false
 	}
@@ -303,7 +303,9 @@ func (s *search) resolveTail(st *stage, t float64) (*sum, bool) {
 }
 
 // branch tells with which sign each leaf counts, given enclosures of the leaves.
-func (c *Curve) branch(leaves []enclosure, sign int) (signs []int, value enclosure, rest []enclosure, ok bool) {
+// Where it does not matter by more than twice near for any operation, either
+// side will do.
+func (c *Curve) branch(leaves []enclosure, sign int, near float64) (signs []int, value enclosure, rest []enclosure, ok bool) {
 	if c.op == opLeaf {
 		return []int{sign}, leaves[0], leaves[1:], true
 	}
@@ -311,7 +313,7 @@ func (c *Curve) branch(leaves []enclosure, sign int) (signs []int, value enclosu
 	if c.op == opNegate {
 		first = -sign
 	}
-	signs, value, rest, ok = c.args[0].branch(leaves, first)
+	signs, value, rest, ok = c.args[0].branch(leaves, first, near)
 	if !ok {
 		return nil, value, rest, false
 	}
@@ -320,27 +322,28 @@ func (c *Curve) branch(leaves []enclosure, sign int) (signs []int, value enclosu
 		return signs, value.negated(), rest, true
 	case opAbs:
 		switch {
-		case value.lo >= 0:
-			return signs, value, rest, true
-		case value.hi <= 0:
+		case value.lo >= -near:
+			return signs, value.abs(), rest, true
+		case value.hi <= near:
 			for i := range signs {
 				signs[i] = -signs[i]
 			}
-			return signs, value.negated(), rest, true
+			return signs, value.abs(), rest, true
 		}
 		return nil, value, rest, false
 	}
-	more, other, rest, ok := c.args[1].branch(rest, sign)
+	more, other, rest, ok := c.args[1].branch(rest, sign, near)
 	if !ok {
 		return nil, value, rest, false
 	}
+	if c.op == opAdd {
+		return append(signs, more...), enclosure{interval: value.add(other.interval)}, rest, true
+	}
+	less, greater := value.hi <= other.lo+near, value.lo >= other.hi-near
 	switch {
-	case c.op == opAdd:
-		sum := enclosure{interval: value.add(other.interval)}
-		return append(signs, more...), sum, rest, true
-	case value.hi < other.lo && c.op == opLeast || value.lo > other.hi && c.op == opGreatest:
+	case less && c.op == opLeast || greater && c.op == opGreatest:
 		return append(signs, make([]int, len(more))...), value, rest, true
-	case other.hi < value.lo && c.op == opLeast || other.lo > value.hi && c.op == opGreatest:
+	case greater && c.op == opLeast || less && c.op == opGreatest:
 		return append(make([]int, len(signs)), more...), other, rest, true
 	}
 	return nil, value, rest, false

@@ -274,11 +274,18 @@ func (s *search) addPart(b *box, u, v float64) {
 func down(x, m float64) float64 { return x - 4*unit*(math.Abs(x)+m) }
 func up(x, m float64) float64   { return x + 4*unit*(math.Abs(x)+m) }
 
-// evaluate encloses the curve on a part of a panel.
+// evaluate encloses the curve on a part of a panel. Where it is one sum of its
+// leaves there, their models are added first: added enclosures would know nothing
+// of slopes that cancel.
 func (s *search) evaluate(models []model, u, v float64) enclosure {
 	leaves := make([]enclosure, len(models))
 	for i := range models {
 		leaves[i] = models[i].on(u, v)
+	}
+	if len(models) > 1 {
+		if signs, _, _, ok := s.curve.branch(leaves, 1, 0); ok {
+			return combineModels(models, signs).on(u, v)
+		}
 	}
 	return s.curve.enclose(leaves)
 }

@@ -14,14 +14,20 @@ type stretchOf struct {
 	sum    *sum
 	a, b   float64
 	toEnd  bool // b stands for the end of the stage
+	whole  bool // the curve is one sum everywhere
 	bounds enclosure
 }
+
+// nearBranch is the part of the size of a curve by which it may be off where an
+// absolute value or the like is hard to tell; integrals account for it. It is more
+// than the models' own errors, so that every box can be told in the end.
+const nearBranch = 1e-13
 
 // stretches cuts a stage of finite length where the curve changes from one sum
 // to another (the zeros under an absolute value).
 func (s *search) stretches(ctx context.Context, st *stage) ([]stretchOf, error) {
 	if signs, ok := s.curve.linear(); ok {
-		return []stretchOf{{sum: combineSums(st.sums, signs), b: st.length, toEnd: true}}, nil
+		return []stretchOf{{sum: combineSums(st.sums, signs), b: st.length, toEnd: true, whole: true}}, nil
 	}
 	type part struct {
 		box   *box
@@ -40,7 +46,7 @@ func (s *search) stretches(ctx context.Context, st *stage) ([]stretchOf, error) 
 		}
 		x := stack[len(stack)-1]
 		stack = stack[:len(stack)-1]
-		signs, ok := s.boxBranch(x)
+		signs, ok := s.boxBranchNear(x, nearBranch*s.scale)
 		switch {
 		case ok:
 			parts = append(parts, part{x, signs})
@@ -105,7 +111,10 @@ func sameSigns(a, b []int) bool {
 }
 
 // boxBranch tells which sum the curve is in a box, when its bounds decide.
-func (s *search) boxBranch(x *box) ([]int, bool) {
+func (s *search) boxBranch(x *box) ([]int, bool) { return s.boxBranchNear(x, 0) }
+
+// boxBranchNear is boxBranch where differences below near do not matter.
+func (s *search) boxBranchNear(x *box, near float64) ([]int, bool) {
 	leaves := make([]enclosure, len(x.stage.floats))
 	for i, f := range x.stage.floats {
 		if x.models != nil {
@@ -114,7 +123,7 @@ func (s *search) boxBranch(x *box) ([]int, bool) {
 			leaves[i] = f.crude(x.a, x.b)
 		}
 	}
-	signs, _, rest, ok := s.curve.branch(leaves, 1)
+	signs, _, rest, ok := s.curve.branch(leaves, 1, near)
 	return signs, ok && len(rest) == 0
 }
 
@@ -209,7 +218,33 @@ func (s *search) integrateStage(ctx context.Context, st *stage, square bool, pre
 		}
 		total = total.Add(x.integral(a, b, prec))
 	}
+	if len(parts) > 0 && !parts[0].whole {
+		total = total.WithBound(s.nearError(st, square).Mul(end))
+	}
 	return total, nil
+}
+
+// nearError bounds what nearBranch changes in the curve, or in its square: twice
+// it for each operation, and for the square twice the greatest size as well.
+func (s *search) nearError(st *stage, square bool) number.Ball {
+	off := 2 * float64(s.curve.operations()) * nearBranch * s.scale
+	if square {
+		e := st.crude(s.curve, 0, st.length)
+		off *= 2*math.Max(math.Abs(e.lo), math.Abs(e.hi)) + off
+	}
+	return number.BallFromFloat64(off*(1+8*unit), refinePrecision)
+}
+
+// operations counts the operations that have branches.
+func (c *Curve) operations() int {
+	n := 0
+	if c.op == opAbs || c.op == opLeast || c.op == opGreatest {
+		n++
+	}
+	for _, a := range c.args {
+		n += a.operations()
+	}
+	return n
 }
 
 // integral is ∫ from a to b of the sum.

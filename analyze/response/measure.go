@@ -110,18 +110,27 @@ func (c *Curve) Integral(ctx context.Context, r Range) (number.Ball, error) {
 	return c.refined(ctx, func(prec uint) (number.Ball, error) { return c.integrate(ctx, r, false, prec) })
 }
 
-// refined raises the precision until 20 digits are decided, or gives what the
-// greatest precision gave.
+// refined raises the precision until 20 digits are decided or nothing is gained
+// by it.
 func (c *Curve) refined(ctx context.Context, f func(prec uint) (number.Ball, error)) (number.Ball, error) {
-	for prec := uint(refinePrecision); ; prec *= 2 {
+	v, err := f(refinePrecision)
+	if _, linear := c.linear(); !linear {
+		return v, err // roundings of float64 limit it
+	}
+	for prec := uint(2 * refinePrecision); err == nil && prec <= 8*refinePrecision && v.RelativeBits() <= 66; prec *= 2 {
 		if err := ctx.Err(); err != nil {
 			return number.Ball{}, err
 		}
-		v, err := f(prec)
-		if err != nil || v.RelativeBits() > 66 || prec >= 8*refinePrecision {
-			return v, err
+		better, err := f(prec)
+		if err != nil {
+			return better, err
 		}
+		if better.MulPow2(8).Rad().Cmp(v.Rad()) > 0 {
+			return better, nil
+		}
+		v = better
 	}
+	return v, err
 }
 
 // length is To − From of a range that ends.

@@ -189,6 +189,9 @@ type enclosure struct {
 // shift are below 2·panelOrder units of Σ|a|, because |c|+w ≤ 1, and those of
 // the sums below panelOrder more.
 func (p *model) on(u, v float64) enclosure {
+	if p.err == 0 && p.a == [panelOrder + 1]float64{} {
+		return enclosure{} // nothing is there at all
+	}
 	c, w := (u+v)/2, (v-u)/2
 	b := p.a
 	n := panelOrder
@@ -228,6 +231,33 @@ func (p *model) on(u, v float64) enclosure {
 	bend += p.bend + 4*panelOrder*unit*second
 	around := func(mid, rad float64) interval { return interval{mid - rad, mid + rad}.outward() }
 	return enclosure{around(b[0], spread+rest), around(b[1], slope), around(2*b[2], bend), 2 * rest}
+}
+
+// combineModels is Σ signs[i]·models[i]. The additions are exact to a unit of the
+// coefficients each, which the bounds take up.
+func combineModels(models []model, signs []int) *model {
+	var out model
+	var total, first, second float64
+	for i := range models {
+		if signs[i] == 0 {
+			continue
+		}
+		p := &models[i]
+		for k, a := range p.a {
+			out.a[k] += float64(signs[i]) * a
+			total += math.Abs(a)
+			first += float64(k) * math.Abs(a)
+			second += float64(k*(k-1)) * math.Abs(a)
+		}
+		out.err += p.err
+		out.slope += p.slope
+		out.bend += p.bend
+	}
+	roundings := 2 * float64(len(models)) * unit
+	out.err += roundings * total
+	out.slope += roundings * first
+	out.bend += roundings * second
+	return &out
 }
 
 // weighted is Σ k·|a[k]| and Σ k(k−1)·|a[k]|.

@@ -78,6 +78,9 @@ func (p *product) valueAt(ctx context.Context, t *big.Rat, side Side, prec uint)
 
 // sumFrom implements form: terms multiply, poles add.
 func (p *product) sumFrom(ctx context.Context, origin *big.Rat, prec uint) (*sum, error) {
+	if p.factor.Sign() == 0 {
+		return &sum{}, nil
+	}
 	x, err := p.a.sumFrom(ctx, origin, prec)
 	if err != nil {
 		return nil, err

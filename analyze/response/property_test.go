@@ -274,3 +274,35 @@ func TestConcurrentUse(t *testing.T) {
 	}
 	wg.Wait()
 }
+
+// Roots are narrowed to any precision, real ones, pairs and those on the
+// imaginary axis; a finer ball lies in a coarser one.
+func TestRootsToAnyPrecision(t *testing.T) {
+	r := rand.New(rand.NewSource(4))
+	for k := range 12 {
+		p := randomTransfer(t, r, 3+r.Intn(5)).Den.Mul(poly(7, 0, 3)).Radical().Primitive()
+		f, err := certifiedFactor(background, p)
+		if err != nil {
+			t.Fatal(err)
+		}
+		coarse, err := f.at(background, 200)
+		if err != nil {
+			t.Fatal(err)
+		}
+		for _, prec := range []uint{960, 2048, 5000} {
+			fine, err := f.at(background, prec)
+			if err != nil {
+				t.Fatalf("%d: %v", k, err)
+			}
+			for i, z := range fine {
+				if !complexDecided(z, int64(prec)) || !coarse[i].Overlaps(z) {
+					t.Errorf("%d: root %d to %d bits: %v, coarse %v", k, i, prec, z, coarse[i])
+				}
+				value := taylor(complexCoefficients(p, prec), z, 1)[0]
+				if !value.ContainsZero() {
+					t.Errorf("%d: %v is no root", k, z)
+				}
+			}
+		}
+	}
+}
