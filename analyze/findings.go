@@ -75,6 +75,9 @@ func hasCode(found []dialect.Finding, codes ...dialect.Code) bool {
 // soundness reports what only the equations show: no unique solution, or no
 // steady state to start from.
 func (a *Analysis) soundness(ctx context.Context) ([]dialect.Finding, error) {
+	if a.plainlyPassive() {
+		return a.startFindings(ctx)
+	}
 	var found []dialect.Finding
 	for i, iv := range a.intervals(configuration{}) {
 		sys, problems := network.Assemble(iv.network)
@@ -128,6 +131,9 @@ func (a *Analysis) startPlace(r *refusal) dialect.Origin {
 
 // stability warns of natural frequencies in the right half-plane.
 func (a *Analysis) stability(ctx context.Context) ([]dialect.Finding, error) {
+	if a.plainlyPassive() {
+		return nil, nil
+	}
 	det, _, err := a.determinant(ctx, configuration{})
 	if err != nil || frequency.Decide(det) != frequency.Unstable {
 		return nil, err
