@@ -1,0 +1,341 @@
+package float
+
+import (
+	"context"
+	"errors"
+	"math"
+	"math/big"
+	"sync"
+
+	"portlight/analyze/network"
+)
+
+// ErrSingular tells that the equations have no unique solution at a frequency,
+// or that in double precision they cannot be told from equations that have
+// none.
+var ErrSingular = errors.New("the equations are singular at this frequency in double precision")
+
+// Solver solves the equations of one network at given frequencies. It is safe
+// for concurrent use. What depends on the structure alone is found once and
+// used for every frequency.
+type Solver struct {
+	m *matrix
+
+	mu      sync.Mutex
+	pattern *luPattern // of the last fresh factorisation
+	spare   []*workspace
+}
+
+// Result is what outputs show at one frequency for right-hand sides: the
+// voltage or current Values[i][j] of output i driven by column j, as a complex
+// amplitude, in the output's unit. Its true value is within Radius[i][j]:
+// the residual was evaluated to about 100 bits, and with the solution of the
+// transposed equations the error of the value itself follows from it, to
+// first order as a correction that has been applied, to second order as part
+// of the radius. Condition is an estimate of the condition number in the
+// 1-norm of the matrix with rows and columns scaled.
+type Result struct {
+	Values    [][]complex128
+	Radius    [][]float64
+	Condition float64
+	// Method is "LU" or "LDLᵀ".
+	Method string
+}
+
+// New prepares the equations of a system. The error is ErrRange.
+func New(sys *network.System) (*Solver, error) {
+	m, err := newMatrix(sys)
+	if err != nil {
+		return nil, err
+	}
+	return &Solver{m: m}, nil
+}
+
+// At returns what the outputs show at the angular frequency omega (rad/s, 0
+// for direct current) for the columns. The error is ErrSingular, ErrRange or
+// the context's.
+func (s *Solver) At(ctx context.Context, omega float64, outs []network.Output, cols []network.Column) (*Result, error) {
+	if math.IsNaN(omega) || math.Abs(omega) > largest {
+		return nil, ErrRange
+	}
+	return s.at(ctx, double{omega, 0}, outs, cols)
+}
+
+// AtRat is At for a frequency that is not a float64: with a sharp resonance
+// its rounding alone would be seen in the answer.
+func (s *Solver) AtRat(ctx context.Context, omega *big.Rat, outs []network.Output, cols []network.Column) (*Result, error) {
+	w, ok := doubleOf(omega)
+	if !ok {
+		return nil, ErrRange
+	}
+	return s.at(ctx, w, outs, cols)
+}
+
+// workspace is what one solution needs besides the pattern.
+type workspace struct {
+	a, scaled, x, y []complex128
+	w               []double
+	factor          *luFactor
+}
+
+func (s *Solver) workspace() *workspace {
+	s.mu.Lock()
+	defer s.mu.Unlock()
+	if k := len(s.spare); k > 0 {
+		w := s.spare[k-1]
+		s.spare = s.spare[:k-1]
+		return w
+	}
+	n, e := s.m.n, len(s.m.row)
+	return &workspace{
+		a: make([]complex128, e), scaled: make([]complex128, e), x: make([]complex128, n), y: make([]complex128, n),
+		w: make([]double, e),
+	}
+}
+
+func (s *Solver) release(w *workspace) {
+	s.mu.Lock()
+	defer s.mu.Unlock()
+	if len(s.spare) < 4 {
+		s.spare = append(s.spare, w)
+	}
+}
+
+func (s *Solver) at(ctx context.Context, omega double, outs []network.Output, cols []network.Column) (*Result, error) {
+	if err := ctx.Err(); err != nil {
+		return nil, err
+	}
+	q := &query{Solver: s, omega: omega, workspace: s.workspace(), residue: newResidue(s.m.n)}
+	defer s.release(q.workspace)
+	s.m.values(omega.hi, q.a)
+	for k, c := range s.m.c {
+		q.w[k] = c.times(omega)
+	}
+	if err := q.factorise(ctx, false); err != nil {
+		return nil, err
+	}
+	r, err := q.answer(ctx, outs, cols)
+	if errors.Is(err, ErrSingular) && !q.fresh {
+		if err = q.factorise(ctx, true); err == nil {
+			r, err = q.answer(ctx, outs, cols)
+		}
+	}
+	return r, err
+}
+
+// query is the solution at one frequency.
+type query struct {
+	*Solver
+	*workspace
+	omega   double
+	residue *residue
+	fresh   bool // the pivots were chosen at this very frequency
+}
+
+// factorise factorises the matrix, in the order used before if that is there
+// and good; anew says to choose another.
+func (q *query) factorise(ctx context.Context, anew bool) error {
+	q.mu.Lock()
+	p := q.pattern
+	q.mu.Unlock()
+	if p != nil && !anew {
+		if q.factor == nil || q.factor.luPattern != p {
+			q.factor = &luFactor{p, make([]complex128, len(p.lindex)), make([]complex128, len(p.uindex)), make([]complex128, p.m.n)}
+		}
+		copy(q.scaled, q.a)
+		p.scale.apply(q.m, q.scaled)
+		clear(q.x)
+		err := p.refactorise(ctx, q.scaled, q.factor, q.x)
+		if !errors.Is(err, errPivot) {
+			return err
+		}
+	}
+	q.fresh = true
+	scale := q.m.equilibrate(q.a, false)
+	copy(q.scaled, q.a)
+	scale.apply(q.m, q.scaled)
+	cols, preferred, err := q.m.luPreorder(ctx, q.scaled)
+	if err == nil {
+		q.factor, err = q.m.factorise(ctx, q.scaled, scale, cols, preferred)
+	}
+	if errors.Is(err, errPivot) {
+		return ErrSingular
+	}
+	if err != nil {
+		return err
+	}
+	q.mu.Lock()
+	q.pattern = q.factor.luPattern
+	q.mu.Unlock()
+	return nil
+}
+
+// solution is a refined solution of A·x = b or Aᵀ·x = b.
+type solution struct {
+	x     []complex128
+	r     []complex128 // the residual, of a relative error of about 2^-53
+	slack []float64    // an absolute bound of the error of r
+	next  []complex128 // the correction that r asks for, not applied
+}
+
+// refine solves and corrects the solution until that gains nothing. Where the
+// corrections do not shrink, the factors do not belong to the matrix in any
+// digit: ErrSingular.
+func (q *query) refine(ctx context.Context, b *vector, transposed bool) (*solution, error) {
+	n := q.m.n
+	s := &solution{x: make([]complex128, n), r: make([]complex128, n), slack: make([]float64, n), next: make([]complex128, n)}
+	weight := q.factor.scale.col
+	if transposed {
+		weight = q.factor.scale.row
+	}
+	q.residue.start(b, q.omega)
+	before := math.Inf(1)
+	for round := range 8 {
+		if err := ctx.Err(); err != nil {
+			return nil, err
+		}
+		q.residue.round(s.r)
+		copy(s.next, s.r)
+		if transposed {
+			q.factor.solveTransposed(s.next, q.y)
+		} else {
+			q.factor.solve(s.next, q.y)
+		}
+		step, size := 0.0, 0.0
+		for i, d := range s.next {
+			step = max(step, norm1(d)/weight[i])
+			size = max(size, norm1(s.x[i])/weight[i])
+		}
+		if !(step < 1e200) {
+			return nil, ErrSingular
+		}
+		if round > 0 && step > 0.1*before {
+			if step > 1e-8*size {
+				return nil, ErrSingular
+			}
+			break
+		}
+		if round > 1 && step <= unit*size {
+			break
+		}
+		before = step
+		for i, d := range s.next {
+			s.x[i] += d
+		}
+		q.residue.start(b, q.omega)
+		q.residue.subtract(q.m, q.w, s.x, transposed)
+	}
+	for i := range n {
+		s.slack[i] = 256*unit2*q.residue.size[i] + 2*unit*norm1(s.r[i]) + floor
+	}
+	return s, nil
+}
+
+// answer solves for the columns, and the transposed equations for the
+// outputs.
+func (q *query) answer(ctx context.Context, outs []network.Output, cols []network.Column) (*Result, error) {
+	out := &Result{Values: make([][]complex128, len(outs)), Radius: make([][]float64, len(outs)), Method: "LU"}
+	sols := make([]*solution, len(cols))
+	for j, c := range cols {
+		b, err := columnVector(c)
+		if err != nil {
+			return nil, err
+		}
+		if sols[j], err = q.refine(ctx, b, false); err != nil {
+			return nil, err
+		}
+	}
+	for i, o := range outs {
+		out.Values[i], out.Radius[i] = make([]complex128, len(cols)), make([]float64, len(cols))
+		v, err := outputVector(o)
+		if err != nil {
+			return nil, err
+		}
+		dual, err := q.refine(ctx, v, true)
+		if err != nil {
+			return nil, err
+		}
+		for j, c := range cols {
+			out.Values[i][j], out.Radius[i][j] = q.value(v, dual, sols[j], direct(o, c))
+			if !(out.Radius[i][j] < largest) {
+				return nil, ErrRange
+			}
+		}
+	}
+	var err error
+	out.Condition, err = q.condition(ctx)
+	return out, err
+}
+
+func columnVector(c network.Column) (*vector, error) {
+	v := &vector{}
+	for _, x := range c.RHS {
+		if err := v.add(x.Index, x.Value, false); err != nil {
+			return nil, err
+		}
+	}
+	return v, nil
+}
+
+func outputVector(o network.Output) (*vector, error) {
+	v := &vector{}
+	for _, x := range o.G {
+		if err := v.add(x.Index, x.Value, false); err != nil {
+			return nil, err
+		}
+	}
+	for _, x := range o.C {
+		if err := v.add(x.Index, x.Value, true); err != nil {
+			return nil, err
+		}
+	}
+	return v, nil
+}
+
+// direct is what an output holds of a column without the network's doing.
+func direct(o network.Output, c network.Column) *big.Rat {
+	sum := new(big.Rat)
+	for _, pair := range [][2]map[int]*big.Rat{{o.Input, c.Input}, {o.State, c.State}} {
+		for k, v := range pair[0] {
+			if w := pair[1][k]; w != nil {
+				sum.Add(sum, new(big.Rat).Mul(v, w))
+			}
+		}
+	}
+	return sum
+}
+
+// value returns oᵀ·A⁻¹·b + d with a bound of its error. For the solutions y of
+// Aᵀ·y = o and x̂ ≈ x, with the residual r of x̂,
+//
+//	oᵀ·x − oᵀ·x̂ = yᵀ·r = ŷᵀ·r + (y − ŷ)ᵀ·r, and (y − ŷ)ᵀ·r = ρᵀ·(x − x̂)
+//
+// with the residual ρ of ŷ. The first term is added, the second bounded with
+// the correction that r asks for in place of x − x̂, taken twice.
+func (q *query) value(o *vector, y, x *solution, d *big.Rat) (complex128, float64) {
+	var re, im double
+	radius := floor
+	for k, i := range o.index {
+		g, c := o.at(k, q.omega)
+		a, b := real(x.x[i]), imag(x.x[i])
+		re = re.plus(g.scaled(a)).plus(c.scaled(-b))
+		im = im.plus(g.scaled(b)).plus(c.scaled(a))
+		radius += 64 * unit2 * norm1(complex(g.hi, c.hi)) * norm1(x.x[i])
+	}
+	direct, _ := doubleOf(d)
+	re = re.plus(direct)
+	radius += 64 * unit2 * math.Abs(direct.hi)
+	var first complex128
+	size, rest := 0.0, 0.0
+	for i, v := range y.x {
+		first += v * x.r[i]
+		size += norm1(v) * norm1(x.r[i])
+		rest += norm1(v) * x.slack[i]
+		rest += 2 * (norm1(y.r[i]) + y.slack[i]) * (norm1(x.next[i]) + unit*norm1(x.x[i]))
+	}
+	re, im = re.plus(double{real(first), 0}), im.plus(double{imag(first), 0})
+	radius += rest + float64(q.m.n+8)*2*unit*size
+	v := complex(re.value(), im.value())
+	radius += unit*norm1(v) + 8*unit*radius
+	return v, radius
+}
