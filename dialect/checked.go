@@ -71,9 +71,10 @@ func Check(main *File, read Reader) *Checked {
 		c.importNames(u)
 	}
 	for _, u := range c.units {
+		c.harmless = !u.main
 		c.link(u.scope)
 	}
-	c.syntaxFaults()
+	c.harmless = false
 	for _, u := range c.units {
 		c.checkBodies(u)
 	}
@@ -90,13 +91,16 @@ func (c *checker) load(f *File, path string) *unit {
 	u.scope = c.newScope(u, f.Statements)
 	u.scope.imported = map[string]*Symbol{}
 	u.doing = true
+	c.harmless = true // what a missing file leaves out is told where it is used
 	for _, st := range f.Statements {
 		if use, ok := st.(*UseFileStatement); ok {
 			c.follow(u, use)
 		}
 	}
 	u.doing = false
+	c.harmless = !u.main
 	c.declare(u.scope)
+	c.harmless = false
 	return u
 }
 
@@ -194,34 +198,6 @@ func (c *checker) importName(u *unit, use *UseFileStatement, sym *Symbol) {
 	if _, taken := u.scope.imported[sym.Name]; !taken {
 		u.scope.imported[sym.Name] = sym
 	}
-}
-
-// syntaxFaults says whether a broken statement has left something out of the
-// network.
-func (c *checker) syntaxFaults() {
-	for _, u := range c.units {
-		for _, st := range u.file.Statements {
-			c.statementFault(u, st)
-		}
-		if u.main && len(u.file.Statements) == 0 && len(u.file.Findings) > 0 {
-			c.faults = true
-		}
-	}
-}
-
-func (c *checker) statementFault(u *unit, st Statement) {
-	if s, ok := st.(*SubnetworkStatement); ok && s.Broken {
-		c.faults = true
-		return
-	}
-	if !u.main || !st.Headline().Broken {
-		return
-	}
-	switch st.(type) {
-	case *LetStatement, *FunctionStatement, *TellStatement, *RequireStatement, *PreferStatement, *AllowStatement:
-		return // missed only by those who name it
-	}
-	c.faults = true
 }
 
 // result puts everything together.

@@ -109,7 +109,14 @@ func (e *evaluator) constantOf(x *NameExpr, inst *instance, sym *Symbol) operand
 	if at == nil {
 		return operand{}
 	}
-	o := e.b.constant(at, sym, inLet, x.Span, e)
+	o := at.b.constant(at, sym, inLet, x.Span, e)
+	if o.ok && at.b != e.b && o.has&hasQuantity != 0 {
+		if at.scope.unit != e.inst.scope.unit {
+			r := e.report(x.Span, "wrong-sort", "%s depends on quantities of the network in its own file, which has no part in this one", sym.Name)
+			r.relate(sym.File, sym.Span, "%s is defined here", sym.Name)
+		}
+		return operand{}
+	}
 	if !o.ok || o.constant || e.in == inLet {
 		return o
 	}
@@ -119,7 +126,7 @@ func (e *evaluator) constantOf(x *NameExpr, inst *instance, sym *Symbol) operand
 		r.relate(sym.File, sym.Span, "%s is defined here", sym.Name)
 		return operand{}
 	}
-	return e.b.constant(at, sym, e.in, x.Span, e)
+	return at.b.constant(at, sym, e.in, x.Span, e)
 }
 
 func (h contents) words() string {

@@ -5,6 +5,7 @@ import "strconv"
 // instance is a scope as it stands in a network: the main file, or one use of
 // a subnetwork.
 type instance struct {
+	b      *builder // that makes it
 	scope  *scope
 	parent *instance // the instance that uses it, nil for a file
 	use    []Origin  // the chain of uses
@@ -87,7 +88,19 @@ func newBuilder(c *checker) *builder {
 
 // checkBodies checks each subnetwork of a file on its own, with its default
 // parameters and its terminals open, and the constants of a used file.
+// What is wrong there leaves nothing out of the network: a use that meets it
+// again does.
 func (c *checker) checkBodies(u *unit) {
+	c.harmless = true
+	defer func() { c.harmless = false }()
+	b := newBuilder(c)
+	b.trial = true
+	u.static = b.newInstance(u.scope, nil, nil, "")
+	if !u.main {
+		b.structure(u.static)
+		b.values()
+		b.constants(u.static)
+	}
 	for _, s := range u.scope.bodies {
 		b := newBuilder(c)
 		b.trial = true
@@ -96,19 +109,14 @@ func (c *checker) checkBodies(u *unit) {
 		b.values()
 		b.statements(inst)
 	}
-	if !u.main {
-		b := newBuilder(c)
-		b.trial = true
-		u.static = b.newInstance(u.scope, nil, nil, "")
-		b.structure(u.static)
-		b.values()
-	}
 }
 
 // buildMain makes the Description of the main file.
 func (b *builder) buildMain(u *unit) {
 	u.static = b.newInstance(u.scope, nil, nil, "")
+	b.c.harmless = true
 	b.preferences(u.static)
+	b.c.harmless = false
 	b.structure(u.static)
 	b.values()
 	b.couplings()
@@ -120,7 +128,7 @@ func (b *builder) buildMain(u *unit) {
 
 func (b *builder) newInstance(s *scope, parent *instance, use []Origin, prefix string) *instance {
 	inst := &instance{
-		scope: s, parent: parent, use: use, prefix: prefix,
+		b: b, scope: s, parent: parent, use: use, prefix: prefix,
 		slots: make([]int, len(s.symbols)), memo: make([]memo, len(s.symbols)),
 	}
 	for i := range inst.slots {
@@ -149,6 +157,7 @@ func (b *builder) structure(inst *instance) {
 		b.d.Nodes = make([]Node, 0, len(s.nodes))
 	}
 	inst.firstPart = len(b.d.Parts)
+	b.leftOut(inst)
 	for _, sym := range s.symbols {
 		switch sym.Sort {
 		case NodeSymbol:
@@ -178,6 +187,22 @@ func (b *builder) structure(inst *instance) {
 	inst.lastPart = len(b.d.Parts)
 }
 
+// leftOut notes the statements of which the parser could make nothing whole.
+func (b *builder) leftOut(inst *instance) {
+	for _, st := range inst.scope.statements {
+		if head := st.Headline(); !head.Broken || head.Misplaced {
+			continue
+		}
+		switch st.(type) {
+		case *LetStatement, *FunctionStatement, *TellStatement, *RequireStatement, *PreferStatement,
+			*AllowStatement, *PortStatement, *UseFileStatement, *SubnetworkStatement:
+			// missed only by those who name it
+		default:
+			b.c.fault()
+		}
+	}
+}
+
 func (b *builder) makeNode(inst *instance, sym *Symbol) {
 	inst.slots[sym.index] = len(b.d.Nodes)
 	places := make([]Origin, len(sym.References))
@@ -191,6 +216,9 @@ func (b *builder) makeNode(inst *instance, sym *Symbol) {
 
 func (b *builder) makePart(inst *instance, sym *Symbol) {
 	st := sym.Statement.(*PartStatement)
+	if inst.scope.names[sym.Name] != sym {
+		b.c.fault() // its name was taken
+	}
 	inst.slots[sym.index] = len(b.d.Parts)
 	b.d.Parts = append(b.d.Parts, Part{
 		Name: inst.prefix + sym.Name, Kind: sym.Kind, From: -1, To: -1,
@@ -280,6 +308,7 @@ func (b *builder) wireBox(inst *instance, box Box, left, right end, terminals ma
 	}
 	switch {
 	case sym == nil:
+		b.c.fault() // unknown, or a hole
 	case sym.Sort == UseSymbol:
 		if terminals[sym.index] == nil && sym.Of != nil && len(sym.Of.Terminals) == 2 {
 			terminals[sym.index] = []end{left, right}
@@ -287,6 +316,7 @@ func (b *builder) wireBox(inst *instance, box Box, left, right end, terminals ma
 	case sym.Sort == PartSymbol:
 		p := &b.d.Parts[inst.slots[sym.index]]
 		if p.From >= 0 || p.To >= 0 || !p.Kind.twoTerminal() {
+			b.c.fault() // wired twice, or not to be wired so
 			return
 		}
 		p.From, p.To, p.Wired = left.node, right.node, inst.origin(box.Extent())
@@ -384,8 +414,11 @@ func (b *builder) wirePorts(inst *instance) {
 			}
 		}
 		if p.Plus == p.Minus && p.Plus >= 0 {
+			harmless := b.c.harmless
+			b.c.harmless = true
 			b.report(inst, Span{st.Plus.Span.Start, st.Minus.Span.End}, "port-shorted",
 				"both ends of port %s are at %s", sym.Name, st.Plus.Text)
+			b.c.harmless = harmless
 		}
 	}
 }

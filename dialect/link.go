@@ -19,10 +19,13 @@ func (c *checker) link(s *scope) {
 	for _, st := range s.statements {
 		c.linkStatement(s, st)
 	}
+	c.checkWired(s)
+	harmless := c.harmless
+	c.harmless = true
 	for _, b := range s.bodies {
 		c.link(b)
 	}
-	c.checkWired(s)
+	c.harmless = harmless
 }
 
 func (c *checker) linkGround(s *scope) {
@@ -80,18 +83,26 @@ func (c *checker) linkStatement(s *scope, st Statement) {
 		return
 	}
 	switch st := st.(type) {
+	case *PartStatement:
+		c.linkPart(s, st)
+		return
+	case *PathStatement:
+		c.linkPath(s, st)
+		return
+	case *UsePartStatement:
+		c.linkUse(s, st)
+		return
+	}
+	harmless := c.harmless
+	c.harmless = true // missed only by those who name it
+	defer func() { c.harmless = harmless }()
+	switch st := st.(type) {
 	case *LetStatement:
 		c.linkExpr(s, st.Value, 0)
 	case *FunctionStatement:
 		c.linkExpr(s, st.Value, 0)
-	case *PartStatement:
-		c.linkPart(s, st)
-	case *PathStatement:
-		c.linkPath(s, st)
 	case *PortStatement:
 		c.linkPort(s, st)
-	case *UsePartStatement:
-		c.linkUse(s, st)
 	case *TellStatement:
 		c.linkAsked(s, st.What)
 		c.linkQualifiers(s, st.Qualifiers)

@@ -33,10 +33,11 @@ func (b *builder) question(main *unit, file *File, st *TellStatement) (*Question
 	outside.unit = &unit{file: file, main: true, scope: main.scope}
 	c.linkAsked(&outside, st.What)
 	c.linkQualifiers(&outside, st.Qualifiers)
-	copied := *b
-	copied.c = c
-	e := &evaluator{b: &copied, inst: main.static, in: inSignal, what: "a question", file: file}
-	q, _ := copied.ask(e, st)
+	own := b.c
+	b.c = c
+	defer func() { b.c = own }()
+	e := &evaluator{b: b, inst: main.static, in: inSignal, what: "a question", file: file}
+	q, _ := b.ask(e, st)
 	var findings []Finding
 	for _, f := range c.findings {
 		findings = append(findings, *f)

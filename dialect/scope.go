@@ -292,7 +292,10 @@ func (c *checker) declareSubnetwork(s *scope, st *SubnetworkStatement) {
 	sym.body = c.newScope(s.unit, st.Statements)
 	sym.body.body, sym.body.symbol = st, sym
 	s.bodies = append(s.bodies, sym.body)
+	harmless := c.harmless
+	c.harmless = true
 	c.declare(sym.body)
+	c.harmless = harmless
 }
 
 // node finds or makes the node that a connecting place names.
