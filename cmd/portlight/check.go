@@ -17,7 +17,7 @@ func newCheck(std streams) *cobra.Command {
 		Long: `Reads every file, tells all findings and decides every "require" line.
 
 Exit status: 0 no finding of severity error, 1 some, 2 not run.`,
-		Args: cobra.MinimumNArgs(1),
+		Args: takes(1, -1),
 	}
 	as := asFlag(c, "text", "json", "sarif")
 	c.RunE = func(c *cobra.Command, paths []string) error {
@@ -57,14 +57,16 @@ func check(ctx context.Context, std streams, paths []string, form string) error 
 	}
 	p.stop()
 	all = onceEach(all)
-	if err := report(std.out, src, all, form); err != nil {
-		return err
+	if len(names) == 0 && readable {
+		return fmt.Errorf("no .plight file in %s", orList(paths))
+	}
+	if len(all) > 0 || form != "text" {
+		if err := report(std.out, src, all, form); err != nil {
+			return err
+		}
 	}
 	if !readable {
 		return status(exitNotRun)
-	}
-	if len(names) == 0 {
-		return fmt.Errorf("no .plight file in %s", orList(paths))
 	}
 	for _, c := range all {
 		for _, f := range c.findings {

@@ -11,9 +11,9 @@ import (
 
 func newExplain(std streams) *cobra.Command {
 	return &cobra.Command{
-		Use:   "explain CODE",
+		Use:   "explain [CODE]",
 		Short: "What a finding means, and how to mend it",
-		Args:  cobra.MaximumNArgs(1),
+		Args:  takes(0, 1),
 		RunE: func(_ *cobra.Command, args []string) error {
 			if len(args) == 0 {
 				fmt.Fprintln(std.out, "The codes are:")
@@ -65,7 +65,7 @@ func explanation(code dialect.Code) (page, bool) {
 	fmt.Fprintf(&b, "%s  (%s)\n%s\n\n", e.Code, e.Severity, e.Title)
 	b.WriteString(wrapped(e.Meaning, lineWidth))
 	if e.Mend != "" {
-		b.WriteString("\nTo mend it: " + strings.TrimLeft(wrapped(e.Mend, lineWidth), " "))
+		b.WriteString("\n" + wrapped("To mend it: "+e.Mend, lineWidth))
 	}
 	if e.Example != "" {
 		b.WriteString("\nA file that has it:\n\n")

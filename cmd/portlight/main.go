@@ -11,6 +11,7 @@ import (
 	"os"
 	"os/signal"
 	"runtime/debug"
+	"strings"
 	"syscall"
 
 	"github.com/spf13/cobra"
@@ -79,7 +80,7 @@ func newRoot(std streams) *cobra.Command {
 		Long:          rootHelp,
 		SilenceErrors: true,
 		SilenceUsage:  true,
-		Args:          cobra.NoArgs,
+		Args:          noSuchCommand,
 		RunE:          func(c *cobra.Command, _ []string) error { return c.Help() },
 		Version:       version(),
 	}
@@ -100,6 +101,33 @@ standard input. A QUESTION is what may follow "tell" in a file:
 'z[valve] at 1 kHz', 'v[coil] at 2 ms', 'poles of H'.
 
 Exit status: 0 fine, 1 something is wrong in a text or has no answer, 2 not run.`
+
+// noSuchCommand refuses a word that is no command.
+func noSuchCommand(c *cobra.Command, args []string) error {
+	if len(args) == 0 {
+		return nil
+	}
+	var names []string
+	for _, sub := range c.Commands() {
+		if !sub.Hidden && sub.Name() != "help" {
+			names = append(names, sub.Name())
+		}
+	}
+	return fmt.Errorf("there is no command %q; the commands are %s", args[0], list(names))
+}
+
+// takes checks how many words follow a command; most is -1 for any number.
+func takes(least, most int) cobra.PositionalArgs {
+	return func(c *cobra.Command, args []string) error {
+		switch n := len(args); {
+		case n < least:
+			return fmt.Errorf("something is missing: portlight %s", c.Use)
+		case most >= 0 && n > most:
+			return fmt.Errorf("%q is too much: portlight %s", args[most], c.Use)
+		}
+		return nil
+	}
+}
 
 // version is what the build says about itself.
 func version() string {
@@ -139,13 +167,14 @@ func asFlag(c *cobra.Command, allowed ...string) *formats {
 	return f
 }
 
-func orList(words []string) string {
-	if len(words) == 1 {
-		return words[0]
+// orList and list join words as prose does.
+func orList(words []string) string { return joined(words, " or ") }
+func list(words []string) string   { return joined(words, " and ") }
+
+func joined(words []string, last string) string {
+	n := len(words)
+	if n < 2 {
+		return strings.Join(words, "")
 	}
-	text := words[0]
-	for _, w := range words[1 : len(words)-1] {
-		text += ", " + w
-	}
-	return text + " or " + words[len(words)-1]
+	return strings.Join(words[:n-1], ", ") + last + words[n-1]
 }

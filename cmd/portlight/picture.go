@@ -27,7 +27,7 @@ func newPicture(std streams) *cobra.Command {
 	c := &cobra.Command{
 		Use:   "picture FILE QUESTION -o FILE.svg|FILE.png",
 		Short: "Draw a function, a signal, a range or roots",
-		Args:  cobra.ExactArgs(2),
+		Args:  takes(2, 2),
 		RunE: func(c *cobra.Command, args []string) error {
 			return picture(c.Context(), std, args[0], args[1], output, size)
 		},
@@ -35,13 +35,13 @@ func newPicture(std streams) *cobra.Command {
 	c.Flags().StringVarP(&output, "output", "o", "", "the picture's file, ending .svg or .png")
 	c.Flags().IntVar(&size.width, "width", size.width, "width in pixels")
 	c.Flags().IntVar(&size.height, "height", size.height, "height in pixels")
-	if err := c.MarkFlagRequired("output"); err != nil {
-		panic(err) // the flag is defined three lines above
-	}
 	return c
 }
 
 func picture(ctx context.Context, std streams, path, question, output string, size pictureSize) error {
+	if output == "" {
+		return fmt.Errorf("where to? Name the picture's file: -o FILE.svg or -o FILE.png")
+	}
 	form := strings.ToLower(filepath.Ext(output))
 	if form != ".svg" && form != ".png" {
 		return fmt.Errorf("%s: the name of a picture ends in .svg or .png", output)
@@ -69,7 +69,9 @@ func picture(ctx context.Context, std streams, path, question, output string, si
 		return err
 	}
 	if refused, ok := answer.(*analyze.RefusedAnswer); ok {
-		warnAboutFaults(std.err, src, name, analysis)
+		if err := warnAboutFaults(ctx, std.err, src, name, analysis); err != nil {
+			return err
+		}
 		fmt.Fprintln(std.err, "portlight: no answer: "+refused.Why)
 		return status(exitFaults)
 	}

@@ -15,7 +15,7 @@ func newServe(std streams) *cobra.Command {
 	c := &cobra.Command{
 		Use:   "serve",
 		Short: "Be a language server on standard input and output",
-		Args:  cobra.NoArgs,
+		Args:  takes(0, 0),
 		RunE: func(c *cobra.Command, _ []string) error {
 			return serve(c.Context(), std, verbose)
 		},

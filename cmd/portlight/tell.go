@@ -19,7 +19,7 @@ func newTell(std streams) *cobra.Command {
 		Long: `Answers the "tell" lines of a file, or the questions given instead.
 
 Exit status: 0 all answered, 1 a question has no answer, 2 not run.`,
-		Args: cobra.MinimumNArgs(1),
+		Args: takes(1, -1),
 	}
 	as := asFlag(c, "text", "json", "markdown")
 	c.RunE = func(c *cobra.Command, args []string) error {
@@ -46,7 +46,9 @@ func tell(ctx context.Context, std streams, path string, questions []string, for
 	if err != nil {
 		return err
 	}
-	warnAboutFaults(std.err, src, name, analysis)
+	if err := warnAboutFaults(ctx, std.err, src, name, analysis); err != nil {
+		return err
+	}
 	if len(answers) == 0 {
 		fmt.Fprintf(std.err, "portlight: %s asks nothing; write tell lines in it, or questions after its name\n", src.shown(name))
 	}
@@ -90,9 +92,13 @@ func ask(ctx context.Context, analysis *analyze.Analysis, questions []string, p 
 
 // warnAboutFaults says on standard error that the file has errors, which may
 // be why a question has no answer.
-func warnAboutFaults(to io.Writer, src *sources, name string, analysis *analyze.Analysis) {
+func warnAboutFaults(ctx context.Context, to io.Writer, src *sources, name string, analysis *analyze.Analysis) error {
+	findings, err := analysis.Structure(ctx)
+	if err != nil {
+		return err
+	}
 	n := 0
-	for _, f := range analysis.Checked().Findings {
+	for _, f := range findings {
 		if f.Severity == dialect.Error {
 			n++
 		}
@@ -100,6 +106,7 @@ func warnAboutFaults(to io.Writer, src *sources, name string, analysis *analyze.
 	if n > 0 {
 		fmt.Fprintf(to, "portlight: %s in %s; `portlight check` tells them\n", plural(n, "error", "errors"), src.shown(name))
 	}
+	return nil
 }
 
 // writeAnswers writes answers in the form asked for.

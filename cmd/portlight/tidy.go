@@ -18,7 +18,7 @@ func newTidy(std streams) *cobra.Command {
 		Short: "Show files in canonical form, or write them so",
 		Long: `Prints each file in canonical form; with -w writes it back where it differs.
 Comments and blank lines stay; a statement that cannot be read stays as it is.`,
-		Args: cobra.MinimumNArgs(1),
+		Args: takes(1, -1),
 		RunE: func(_ *cobra.Command, paths []string) error {
 			return tidy(std, paths, write)
 		},

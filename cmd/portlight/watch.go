@@ -15,7 +15,7 @@ func newWatch(std streams) *cobra.Command {
 	return &cobra.Command{
 		Use:   "watch PATH…",
 		Short: "Check again at every change, until interrupted",
-		Args:  cobra.MinimumNArgs(1),
+		Args:  takes(1, -1),
 		RunE: func(c *cobra.Command, paths []string) error {
 			return watch(c.Context(), std, paths)
 		},
