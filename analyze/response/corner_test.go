@@ -135,3 +135,31 @@ func TestWideSpread(t *testing.T) {
 	wantOutcome(t, c, "<", "1", Range{}, Holds)
 	wantOutcome(t, c, ">", "0", Range{From: rat(t, "1e-12")}, Holds)
 }
+
+// A burst of one whole period of a sine, its phase a stand-in: after it the two
+// sines cancel, and what remains is the transient alone.
+func TestBurst(t *testing.T) {
+	omega := number.Pi().Mul(number.FromInt(100))
+	burst := func(sign int64, from string) WavePiece {
+		return WavePiece{From: num(t, from), Terms: []WaveTerm{{Omega: omega, Sine: number.FromInt(sign)}}}
+	}
+	w := Wave{Pieces: []WavePiece{burst(1, "0"), burst(-1, "1/50")}}
+	s := transferSignal(t, ratio(t, poly(100), poly(100, 1)), w)
+	final, exactly, err := s.Curve().Final(background)
+	ballNear(t, "final", final, err, 0)
+	if exactly != nil {
+		t.Error("a final value that hinges on a stand-in is not exact")
+	}
+	// ∫ sin ωτ·100·e^{−100(t−τ)} dτ over the period is 100ω(1 − e^{2})/(100²+ω²)·e^{−100t}.
+	x := 100 * math.Pi
+	c := 100 * x * (1 - math.Exp(2)) / (1e4 + x*x)
+	near(t, "after the burst", valueOf(t, s, "1/20"), c*math.Exp(-5), 1e-13)
+	v, err := s.Curve().LastBelow(background, num(t, "-1/10"), Range{})
+	ballNear(t, "last below", v, err, math.Log(-c*10)/100)
+	direct := transferSignal(t, ratio(t, poly(1), poly(1)), w)
+	b, err := direct.Value(background, rat(t, "10"), Right, 17)
+	if err != nil || !b.ContainsZero() || b.Abs().Upper().Cmp(big.NewFloat(1e-50)) > 0 {
+		t.Errorf("the burst itself, later: %s %v", b, err)
+	}
+	wantOutcome(t, direct.Curve(), "<=", "1000001/1000000", Range{}, Holds)
+}

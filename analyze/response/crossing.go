@@ -134,7 +134,7 @@ func (e *edgeSearch) within(ctx context.Context, st *stage, i int, a, b float64)
 		if e.steps++; e.steps > searchBudget {
 			return number.Ball{}, false, undecided("the curve is near the level for too long")
 		}
-		if e.steps%256 == 0 {
+		if e.steps%8 == 0 {
 			if err := ctx.Err(); err != nil {
 				return number.Ball{}, false, err
 			}

@@ -397,9 +397,26 @@ func (c *Curve) Value(ctx context.Context, t *big.Rat, side Side, digits int) (n
 		}
 		return number.BallFromRat(v, startPrecision(digits)), nil
 	}
-	return refine(ctx, digits, func(prec uint) (value, size number.Ball, err error) {
+	return refine(ctx, digits, c.loose(), func(prec uint) (value, size number.Ball, err error) {
 		return c.valueAt(ctx, t, side, prec)
 	})
+}
+
+// loose tells whether stand-ins for irrational values went into a leaf.
+func (c *Curve) loose() bool {
+	for _, l := range c.leaves() {
+		switch f := l.(type) {
+		case *Signal:
+			if f.loose() {
+				return true
+			}
+		case *product:
+			if f.a.loose() || f.b.loose() {
+				return true
+			}
+		}
+	}
+	return false
 }
 
 // valueAt evaluates at a working precision, with the size of the parts.

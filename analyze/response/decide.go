@@ -3,7 +3,6 @@ package response
 import (
 	"context"
 	"errors"
-	"math/big"
 
 	"portlight/dialect/number"
 )
@@ -54,25 +53,29 @@ func (c *Curve) Decide(ctx context.Context, relation string, level number.Exact,
 	if d.Margin = bound.Sub(worst.Value); !upper {
 		d.Margin = d.Margin.Neg()
 	}
-	d.Outcome = d.judge(level, strict)
+	d.Outcome = d.judge(level, strict, c.loose())
 	if d.Outcome == Undecided {
 		d.Why = "the worst value cannot be told from the limit"
 	}
 	return d, nil
 }
 
-// judge tells the outcome from the margin, exactly where both sides are exact.
-func (d *Decision) judge(level number.Exact, strict bool) Outcome {
-	if d.Worst.Exact != nil && level.IsExact() {
-		m := new(big.Rat).Sub(level.Rat(), d.Worst.Exact)
-		if m.Sign() == 0 {
-			d.Margin = number.Ball{}
-			// A limit that is only approached never reaches the level.
-			if strict && d.Worst.Attained {
-				return Broken
-			}
-			return Holds
+// judge tells the outcome from the margin, exactly where both sides are rational.
+// With loose, or a level that is a stand-in, equality holds to within the bounds
+// of stand-ins only.
+func (d *Decision) judge(level number.Exact, strict, loose bool) Outcome {
+	loose = loose || !level.IsExact()
+	if d.Worst.Exact != nil && level.Rat().Cmp(d.Worst.Exact) == 0 {
+		d.Margin = number.Ball{}
+		switch {
+		case loose && strict:
+			return Undecided
+		case loose:
+			d.Why = "the worst value equals the limit to within the bounds of irrational values"
+		case strict && d.Worst.Attained:
+			return Broken // a value that is only approached keeps a strict limit
 		}
+		return Holds
 	}
 	switch sign, decided := d.Margin.Sign(); {
 	case decided && sign > 0:

@@ -20,7 +20,7 @@ const (
 	// narrowest is the width in x at which a panel is cut no further.
 	narrowest = 1.0 / (1 << 46)
 	// searchBudget is how many boxes a search may look at: seconds of work.
-	searchBudget = 4_000_000
+	searchBudget = 2_000_000
 	// clusterBudget is how many places may compete for the maximum in the end.
 	clusterBudget = 200_000
 	// refinePrecision is the working precision of the last refinement.
@@ -30,7 +30,7 @@ const (
 // Extreme is a greatest value, or a least one.
 type Extreme struct {
 	Value number.Ball
-	Exact *big.Rat // the value, when it is rational for sure
+	Exact *big.Rat // the value, when it is rational for sure (of stand-ins, where there are any)
 	// At is the first instant where it is taken; HasAt is false where it is only
 	// approached in the limit. Left tells that it is the left limit there.
 	At    number.Ball
@@ -110,7 +110,7 @@ func (s *search) run(ctx context.Context) error {
 		if s.steps++; s.steps > searchBudget {
 			return undecided("the curve has too many nearly equal peaks in the range")
 		}
-		if s.steps%256 == 0 {
+		if s.steps%8 == 0 {
 			if err := ctx.Err(); err != nil {
 				return err
 			}

@@ -39,7 +39,7 @@ func (s *search) stretches(ctx context.Context, st *stage) ([]stretchOf, error) 
 		if s.steps++; s.steps > searchBudget {
 			return nil, undecided("the curve changes its form too often")
 		}
-		if s.steps%256 == 0 {
+		if s.steps%8 == 0 {
 			if err := ctx.Err(); err != nil {
 				return nil, err
 			}

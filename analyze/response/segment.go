@@ -96,6 +96,7 @@ func (s *Signal) collect(ctx context.Context, chosen func(*component) bool, orig
 		return nil, err
 	}
 	acc := newGathering(fam, poles, prec)
+	acc.loose = s.loose()
 	for i := range s.comps {
 		c := &s.comps[i]
 		if !chosen(c) {
@@ -118,6 +119,7 @@ type gathering struct {
 	size     [][]number.Ball // sums of absolute values
 	constant []*big.Rat
 	exact    bool // constant holds everything at s = 0
+	loose    bool // stand-ins for irrational values are among the numbers
 }
 
 func newGathering(fam *family, poles []number.ComplexBall, prec uint) *gathering {
@@ -192,7 +194,7 @@ func (g *gathering) sum() *sum {
 			}
 		}
 		n := len(c)
-		for n > 0 && negligibleComplex(c[n-1], size[n-1]) {
+		for n > 0 && negligibleComplex(c[n-1], size[n-1], g.loose) {
 			out.dropped = out.dropped || size[n-1].Upper().Sign() != 0
 			n--
 		}
@@ -216,11 +218,11 @@ func (f *family) termPole(j int, p number.ComplexBall) termPole {
 	return termPole{p: p, real: k.real, axis: k.axis, zero: k.zero, omega: k.omega, id: id, index: j}
 }
 
-func negligibleComplex(c number.ComplexBall, size number.Ball) bool {
+func negligibleComplex(c number.ComplexBall, size number.Ball, loose bool) bool {
 	if size.IsExact() && size.Upper().Sign() == 0 {
 		return true
 	}
-	return negligible(c.Re, size) && negligible(c.Im, size)
+	return negligible(c.Re, size, loose) && negligible(c.Im, size, loose)
 }
 
 // shiftPowers turns Σ c[m](τ+δ)^m into powers of τ.

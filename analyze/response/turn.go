@@ -67,7 +67,7 @@ func (s *search) turnsIn(ctx context.Context, i, most int) ([]float64, error) {
 		if s.steps++; s.steps > searchBudget {
 			return nil, undecided("the curve turns too often")
 		}
-		if s.steps%256 == 0 {
+		if s.steps%8 == 0 {
 			if err := ctx.Err(); err != nil {
 				return nil, err
 			}

@@ -18,7 +18,8 @@ const negligibleBits = 190
 type contribution struct {
 	exact *big.Rat // nil is zero
 	rest  number.Ball
-	some  bool // rest is not the exact zero
+	some  bool        // rest is not the exact zero
+	size  number.Ball // sum of the terms' absolute values, amplitudes for pairs
 }
 
 // ball is the whole contribution.
@@ -72,7 +73,8 @@ func (s *Signal) partsAt(ctx context.Context, t *big.Rat, side Side, prec uint) 
 func (s *Signal) partAt(ctx context.Context, c *component, e *expansion, exps *exponentials, tau *big.Rat, prec uint) (contribution, error) {
 	rational := c.weight.at == nil
 	if tau.Sign() == 0 && rational && c.share == wholeShare {
-		return contribution{exact: new(big.Rat).Mul(c.weight.rational, e.initialValue())}, nil
+		v := new(big.Rat).Mul(c.weight.rational, e.initialValue())
+		return contribution{exact: v, size: number.BallFromRat(v, prec).Abs()}, nil
 	}
 	coefficients, err := e.coefficients(ctx, prec)
 	if err != nil {
@@ -93,14 +95,17 @@ func (s *Signal) partAt(ctx context.Context, c *component, e *expansion, exps *e
 			continue
 		}
 		sum := hornerAt(coefficients[j], tau, prec).Mul(exps.at(j, tau))
-		re := sum.Re
 		if !p.real {
-			re = re.MulPow2(1)
+			sum = sum.MulPow2(1)
 		}
-		out.rest = out.rest.Add(re)
+		out.rest = out.rest.Add(sum.Re)
+		out.size = out.size.Add(sum.Abs())
 		out.some = true
 	}
-	out.rest = out.rest.Mul(w)
+	out.rest, out.size = out.rest.Mul(w), out.size.Mul(w).Abs()
+	if out.exact != nil {
+		out.size = out.size.Add(number.BallFromRat(out.exact, prec).Abs())
+	}
 	return out, nil
 }
 
@@ -162,7 +167,7 @@ func (s *Signal) ValueAt(ctx context.Context, t *big.Rat, side Side, prec uint) 
 	return v, err
 }
 
-// valueAt also bounds the sum of the components' sizes.
+// valueAt also gives the sum of the terms' sizes.
 func (s *Signal) valueAt(ctx context.Context, t *big.Rat, side Side, prec uint) (value, size number.Ball, err error) {
 	parts, err := s.partsAt(ctx, t, side, prec)
 	if err != nil {
@@ -174,7 +179,7 @@ func (s *Signal) valueAt(ctx context.Context, t *big.Rat, side Side, prec uint) 
 			sum.Add(sum, c.exact)
 		}
 		value = value.Add(c.rest)
-		size = size.Add(c.ball(prec).Abs())
+		size = size.Add(c.size)
 	}
 	return value.Add(number.BallFromRat(sum, prec)), size, nil
 }
@@ -235,7 +240,7 @@ func (s *Signal) Value(ctx context.Context, t *big.Rat, side Side, digits int) (
 		}
 		return number.BallFromExact(x, start), err
 	}
-	return refine(ctx, digits, func(prec uint) (number.Ball, number.Ball, error) {
+	return refine(ctx, digits, s.loose(), func(prec uint) (number.Ball, number.Ball, error) {
 		return s.valueAt(ctx, t, side, prec)
 	})
 }
@@ -244,8 +249,8 @@ func (s *Signal) Value(ctx context.Context, t *big.Rat, side Side, digits int) (
 func startPrecision(digits int) uint { return uint(max(digits, 1))*10/3 + 64 }
 
 // refine raises the precision until the digits are decided, or the value is
-// negligible beside its size.
-func refine(ctx context.Context, digits int, f func(prec uint) (value, size number.Ball, err error)) (number.Ball, error) {
+// negligible beside its size; it is then zero as far as can be told.
+func refine(ctx context.Context, digits int, loose bool, f func(prec uint) (value, size number.Ball, err error)) (number.Ball, error) {
 	bits := int64(max(digits, 1))*10/3 + 4
 	prec := startPrecision(digits)
 	for {
@@ -256,7 +261,10 @@ func refine(ctx context.Context, digits int, f func(prec uint) (value, size numb
 		if err != nil {
 			return value, err
 		}
-		if value.RelativeBits() >= bits || negligible(value, size) {
+		if negligible(value, size, loose) {
+			return number.Ball{}.WithPrecision(prec).WithBound(size.MulPow2(-negligibleBits)), nil
+		}
+		if value.RelativeBits() >= bits {
 			return value, nil
 		}
 		if prec *= 2; prec > maxPrecision {
@@ -266,11 +274,15 @@ func refine(ctx context.Context, digits int, f func(prec uint) (value, size numb
 }
 
 // negligible tells whether every number in value is below 2^-negligibleBits of
-// size, and none of them need be anything but zero.
-func negligible(value, size number.Ball) bool {
+// size and none of them need be anything but zero: the ball holds zero, or the
+// numbers it was made from are loose, stand-ins for irrational values.
+func negligible(value, size number.Ball, loose bool) bool {
 	limit := size.MulPow2(-negligibleBits)
-	return value.ContainsZero() && value.IsFinite() && value.Abs().Upper().Cmp(limit.Lower()) <= 0
+	return (loose || value.ContainsZero()) && value.IsFinite() && value.Abs().Upper().Cmp(limit.Lower()) <= 0
 }
+
+// loose tells whether stand-ins for irrational values went into the signal.
+func (s *Signal) loose() bool { return !s.solution.exact }
 
 // InitialValue is the value at 0+, which is rational for signals that begin at 0.
 func (s *Signal) InitialValue(ctx context.Context) (number.Exact, error) {
@@ -335,7 +347,7 @@ func (s *Signal) impulse(ctx context.Context, t *big.Rat, k, digits int) (number
 	if allExact {
 		return number.BallFromRat(exactSum, startPrecision(digits)), exactSum, nil
 	}
-	v, err := refine(ctx, digits, func(prec uint) (value, size number.Ball, err error) {
+	v, err := refine(ctx, digits, s.loose(), func(prec uint) (value, size number.Ball, err error) {
 		value = number.BallFromRat(exactSum, prec)
 		size = value.Abs()
 		for i := range s.comps {
