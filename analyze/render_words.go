@@ -66,6 +66,9 @@ func valueWords(a *ValueAnswer) []string {
 		if a.Dimension.Frequency && !a.Hertz {
 			text = figure(a.Value.Re, "rad/s")
 		}
+		if sign, ok := a.Value.Re.Sign(); ok && sign > 0 && a.Dimension == dialect.DimensionNumber && strings.HasPrefix(a.Text, "gain(") {
+			text += ", " + figure(decibels(a.Value.Re), "dB")
+		}
 		return unproved([]string{text}, a.Proved)
 	}
 	unit := a.Dimension.Unit()
@@ -314,17 +317,13 @@ func matrixWords(a *MatrixAnswer) []string {
 	if a.Set == "abcd" {
 		names = [2][2]string{{"A", "B"}, {"C", "D"}}
 	}
+	var shared corners // entries mostly have the same poles
 	for i := range 2 {
 		for j := range 2 {
-			entry := functionWords(&a.Entries[i][j])
-			lines = append(lines, names[i][j]+" = "+entry[0])
-			for _, l := range entry[1:] {
-				if strings.HasPrefix(l, "with ") {
-					lines = append(lines, "  "+l)
-				}
-			}
+			lines = append(lines, names[i][j]+" = "+shared.factored(&a.Entries[i][j]))
 		}
 	}
+	lines = append(lines, shared.lines...)
 	if facts := factList(a.Facts); facts != "" {
 		lines = append(lines, facts)
 	}
@@ -360,7 +359,6 @@ func initialWords(a *InitialAnswer) []string {
 func VerdictWords(v Verdict) string {
 	var b strings.Builder
 	b.WriteString(v.Decision.String())
-	// A frequency's margin and worst case are shown in hertz.
 	if v.HasMargin {
 		switch v.Decision {
 		case Holds:
@@ -378,6 +376,9 @@ func VerdictWords(v Verdict) string {
 	}
 	if v.Decision == Holds && v.InTolerance == Broken {
 		b.WriteString("; broken within the tolerances")
+		if sign, ok := v.CornerMargin.Sign(); ok && sign < 0 {
+			b.WriteString(" by " + quantity(v.CornerMargin.Abs(), v.Dimension) + " (" + quantity(v.CornerWorst, v.Dimension) + ")")
+		}
 		if v.Corner != "" {
 			b.WriteString(", with " + v.Corner)
 		}

@@ -17,9 +17,9 @@ func functionWords(a *FunctionAnswer) []string {
 	if a.Formula != "" {
 		lines = append(lines, a.Formula)
 	}
-	body, corners := factored(a)
-	lines = append(lines, body)
-	lines = append(lines, corners...)
+	var c corners
+	lines = append(lines, c.factored(a))
+	lines = append(lines, c.lines...)
 	if !a.Ratio.IsConstant() {
 		lines = append(lines, limitsOf(a))
 	}
@@ -37,32 +37,32 @@ func functionWords(a *FunctionAnswer) []string {
 // alone are listed.
 const factorLimit = 8
 
-// corners collects what the symbols in a function's factors mean.
-type corners struct{ lines []string }
+// corners collects what the symbols in the factors of functions mean.
+type corners struct {
+	lines []string
+	index map[[2]string]string // of a root, by its figures
+}
 
-// factored writes K·sⁿ·Π(1 + s/ω)… / Π…, and what every ω is.
-func factored(a *FunctionAnswer) (body string, lines []string) {
+// factored writes K·sⁿ·Π(1 + s/ω)… / Π…
+func (c *corners) factored(a *FunctionAnswer) string {
 	f := a.Ratio
 	if f.IsZero() {
-		return "0", nil
+		return "0"
 	}
 	n, d := f.Num.Order(), f.Den.Order()
 	k := new(big.Rat).Quo(f.Num.Coeff(n), f.Den.Coeff(d))
-	power := n - d
-	var c corners
 	top := c.factors(a.Zeros)
 	bottom := c.factors(a.Poles)
-	constant := constantFactor(k, power, a.Dimension)
+	constant := constantFactor(k, n-d, a.Dimension)
 	if len(top)+len(bottom) > factorLimit {
-		body = fmt.Sprintf("a ratio of degree %d over %d", f.Num.Degree(), f.Den.Degree())
-		return body, append([]string{"lowest term " + constant}, c.lines...)
+		return fmt.Sprintf("a ratio of degree %d over %d, lowest term %s", f.Num.Degree(), f.Den.Degree(), constant)
 	}
 	// A constant 1 goes without saying before other factors.
 	over := append([]string{constant}, top...)
 	if constant == "1" && len(top) > 0 {
 		over = top
 	}
-	body = strings.Join(over, "·")
+	body := strings.Join(over, "·")
 	switch len(bottom) {
 	case 0:
 	case 1:
@@ -70,7 +70,7 @@ func factored(a *FunctionAnswer) (body string, lines []string) {
 	default:
 		body += " / (" + strings.Join(bottom, "·") + ")"
 	}
-	return body, c.lines
+	return body
 }
 
 // constantFactor writes k·s^power with the unit that makes it the dimension
@@ -143,7 +143,15 @@ func (c *corners) factors(roots []exact.Root) []string {
 
 // symbol numbers a root, notes what its symbol means and gives the index.
 func (c *corners) symbol(r exact.Root) string {
+	key := [2]string{decimal(r.Re), decimal(r.Im)}
+	if known, ok := c.index[key]; ok {
+		return known
+	}
+	if c.index == nil {
+		c.index = map[[2]string]string{}
+	}
 	index := subscript(len(c.lines) + 1)
+	c.index[key] = index
 	c.lines = append(c.lines, "with ω"+index+" = 2π·"+cornerFigure(r, index))
 	return index
 }
