@@ -17,7 +17,8 @@
 //
 //	wave.go       what a source does in time, and its transform
 //	base.go       coprime factors that several denominators share
-//	pole.go       poles to any precision
+//	pole.go roots.go
+//	              poles to any precision
 //	fraction.go   partial fractions of one transform
 //	coincide.go   frequencies that cannot be told apart
 //	solve.go      from interval to interval: the state at each switching
