@@ -51,6 +51,8 @@ func TestFindings(t *testing.T) {
 		{"let x = dB(2 V)", "not-dimensionless", ""},
 		{"let x = min(1 V, 2 A)", "unit-mismatch", ""},
 		{"let x = x + 1", "cycle", ""},
+		{"let x = 30° + 2", "unit-missing", "2°"},
+		{"require phase(H) + 10 >= 3°", "unit-missing", "angle"},
 		{"let x = nothing", "unknown-name", ""},
 		{"let x = out", "wrong-sort", "v[out]"},
 		{"let x = sqrt(1, 2)", "arguments", "sqrt(X)"},

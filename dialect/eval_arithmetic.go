@@ -66,7 +66,7 @@ func (e *evaluator) sum(x *BinaryExpr, a, b operand) operand {
 			return operand{}
 		}
 	}
-	if !e.alike(x.X, x.Y, &a, &b, "added") {
+	if !e.alike(x.X, x.Y, &a, &b, "added") || !e.angles(x, &a, &b) {
 		return operand{}
 	}
 	o := joined(&a, &b, x.Span)
@@ -89,6 +89,22 @@ func (e *evaluator) sum(x *BinaryExpr, a, b operand) operand {
 	}
 	o.x = &Binary{Typed: o.typed(), Op: x.Op, X: a.expression(), Y: b.expression()}
 	return o
+}
+
+// angles reports a bare number beside an angle such as 30° or a phase, which
+// could be meant in degrees or in radians.
+func (e *evaluator) angles(x *BinaryExpr, a, b *operand) bool {
+	for i, o := range [...]*operand{a, b} {
+		other := [...]*operand{b, a}[i]
+		if !o.plainNumber() || o.rad != 1 || o.has&hasT != 0 || o.has&hasS != 0 && !o.real || !other.constant || !other.bare {
+			continue
+		}
+		at := pick(i == 0, x.Y, x.X)
+		r := e.report(at.Extent(), "unit-missing", "%s has no unit, but is added to an angle: is it in ° or in rad?", e.written(at.Extent()))
+		e.offerUnits(r, at, DimensionAngle)
+		return false
+	}
+	return true
 }
 
 // meetLevel makes a level of the operand that is none; reports when it has a

@@ -334,11 +334,8 @@ func (e *evaluator) portCurrent(x *SubscriptExpr, o operand, p Probe) operand {
 // not depend on the network.
 func (b *builder) sourcesAcross(plus, minus int) []int {
 	var found []int
-	for i := range b.d.Parts {
+	for _, i := range b.sources {
 		p := &b.d.Parts[i]
-		if p.Kind != VoltageSource && p.Kind != CurrentSource || b.dependent[i] {
-			continue
-		}
 		if p.From == plus && p.To == minus || p.From == minus && p.To == plus {
 			found = append(found, i)
 		}

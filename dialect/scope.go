@@ -21,6 +21,8 @@ type scope struct {
 	folded     map[foldedName]*Symbol // for case twins
 	ground     *Symbol                // the reference node
 	groundSeen *GroundStatement
+	groundName string                // the word after ground, "" while it was not looked for
+	taken      map[Statement]*Symbol // parts and uses whose names were taken
 	bodies     []*scope
 }
 
@@ -82,6 +84,7 @@ func (c *checker) add(s *scope, sort SymbolSort, name Word, st Statement) *Symbo
 	sym.boxes = sym.fewBox[:0]
 	s.symbols = append(s.symbols, sym)
 	if !name.Present() {
+		s.hide(sym)
 		return sym
 	}
 	c.table.record(sym, s.unit.file, name.Span, true)
@@ -90,8 +93,18 @@ func (c *checker) add(s *scope, sort SymbolSort, name Word, st Statement) *Symbo
 		s.nodes[name.Text] = sym
 	} else if _, taken := s.names[name.Text]; !taken {
 		s.names[name.Text] = sym
+	} else {
+		s.hide(sym)
 	}
 	return sym
+}
+
+// hide keeps a symbol that cannot be found by its name.
+func (s *scope) hide(sym *Symbol) {
+	if s.taken == nil {
+		s.taken = map[Statement]*Symbol{}
+	}
+	s.taken[sym.Statement] = sym
 }
 
 // reserve reports a name that is taken. Nodes and the rest are kept apart, so that a quantity still finds both.
@@ -144,12 +157,16 @@ func (c *checker) bearsNodeName(s *scope, p *PortStatement) bool {
 	if p.Name.Text != p.Plus.Text {
 		return false
 	}
-	for _, st := range s.statements {
-		if g, ok := st.(*GroundStatement); ok {
-			return g.Node.Text == p.Minus.Text
+	if s.groundName == "" {
+		s.groundName = "?" // no node's name
+		for _, st := range s.statements {
+			if g, ok := st.(*GroundStatement); ok {
+				s.groundName = g.Node.Text
+				break
+			}
 		}
 	}
-	return false
+	return s.groundName == p.Minus.Text
 }
 
 // caseTwin warns of two names of one sort that differ by case alone.

@@ -79,7 +79,13 @@ func (b *builder) values() {
 	b.dependent = make([]bool, len(b.d.Parts))
 	for _, inst := range b.instances {
 		for _, sym := range inst.scope.parts {
-			b.dependent[inst.slots[sym.index]] = b.isDependent(inst, sym)
+			if sym.Kind != VoltageSource && sym.Kind != CurrentSource {
+				continue
+			}
+			i := inst.slots[sym.index]
+			if b.dependent[i] = b.isDependent(inst, sym); !b.dependent[i] {
+				b.sources = append(b.sources, i)
+			}
 		}
 	}
 	for _, inst := range b.instances {
@@ -294,9 +300,6 @@ func (b *builder) deviation(inst *instance, p *Part, st *PartStatement, bound To
 // isDependent says that a source follows quantities of the network, looking
 // into the constants it names.
 func (b *builder) isDependent(inst *instance, sym *Symbol) bool {
-	if sym.Kind != VoltageSource && sym.Kind != CurrentSource {
-		return false
-	}
 	st := sym.Statement.(*PartStatement)
 	x, ok := st.Value.(Expr)
 	return ok && mentionsQuantity(inst.scope, x, 0, 0)
