@@ -132,8 +132,9 @@ func (s *RootSet) Count() int {
 }
 
 // At returns the roots in balls whose radius is at most 2^-prec of the root's
-// magnitude. The order is by real part, then by imaginary part, with conjugates
-// side by side, and does not depend on prec.
+// magnitude. The order is by real part, where these agree to about 2^-50 of the
+// magnitudes by the imaginary part's magnitude, with conjugates side by side, and
+// does not depend on prec.
 func (s *RootSet) At(prec uint) ([]Root, error) { return s.AtContext(context.Background(), prec) }
 
 // AtContext is At with a way to stop it; the error is the context's.

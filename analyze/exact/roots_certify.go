@@ -29,27 +29,50 @@ func (s *rootSolver) match() {
 				continue
 			}
 			y := s.views[j].x * complex(math.Ldexp(1, shift), 0)
-			if d := cmplx.Abs(mirror - y); d < twinDistance {
-				twin, twinDistance, second = j, d, twinDistance
-			} else {
-				second = math.Min(second, d)
+			to, across := cmplx.Abs(x-y), cmplx.Abs(mirror-y)
+			if math.Min(to, across) < 0x1p-40 {
+				to, across = s.distances(i, j)
 			}
-			nearest = math.Min(nearest, cmplx.Abs(x-y))
+			if across < twinDistance {
+				twin, twinDistance, second = j, across, twinDistance
+			} else {
+				second = math.Min(second, across)
+			}
+			nearest = math.Min(nearest, to)
 		}
 		switch {
-		case math.Abs(imag(x)) < nearest/100 && a.step < nearest/10 && a.tries < 20:
+		case math.Abs(imag(x)) < nearest/100 && a.step < nearest/10 && a.guesses < mostGuesses:
+			a.guesses++
 			a.link = i
 			a.y.SetInt64(0)
 			a.normalise()
 			a.log, a.tries = math.Inf(1), 0
 			s.look(i)
-		case twin >= 0 && s.roots[twin].link < 0 && twinDistance < math.Min(nearest, second)/10 && a.step < math.Abs(imag(x))/8:
+		case twin >= 0 && s.roots[twin].link < 0 && twinDistance < math.Min(nearest, second)/10 && a.step < math.Abs(imag(x))/8 && a.guesses < mostGuesses:
+			a.guesses++
 			leader, follower := min(i, twin), max(i, twin)
 			s.roots[leader].link, s.roots[follower].link = follower, leader
 			s.roots[leader].tries, s.roots[follower].tries = 0, 0
 			s.look(leader)
 		}
 	}
+}
+
+// mostGuesses is how often a point is tried on the axis or as one of a pair.
+const mostGuesses = 4
+
+// distances returns |z_i − z_j| and |conj z_i − z_j| in units of 2^k_i.
+func (s *rootSolver) distances(i, j int) (to, across float64) {
+	d, e := s.difference(i, j)
+	to = math.Ldexp(cmplx.Abs(d), e)
+	if s.roots[i].y.Sign() == 0 {
+		return to, to
+	}
+	a := &s.roots[i]
+	a.y.Neg(a.y)
+	d, e = s.difference(i, j)
+	a.y.Neg(a.y)
+	return to, math.Ldexp(cmplx.Abs(d), e)
 }
 
 // isolated tells whether the discs are disjoint; where they are not, it sets
@@ -178,11 +201,12 @@ func (s *rootSolver) pairUp() bool {
 			upper = append(upper, i)
 		case off:
 			lower = append(lower, i)
-		case a.link >= 0:
-			sure = false // a pair of images about the axis: tell them from it
+		case a.link >= 0 || a.guesses >= mostGuesses:
+			sure = false // a pair about the axis, it seems: tell it from it
 			s.wantMore(i)
 		default:
 			sure = false
+			a.guesses++
 			a.link = i
 			a.y.SetInt64(0)
 			a.normalise()

@@ -55,6 +55,7 @@ type approximation struct {
 	step      float64 // size of the last correction, relative
 	tries     int     // corrections since the last change of plan
 	displaced int     // times that it was sent elsewhere
+	guesses   int     // times that match took it for real or for one of a pair
 	link      int     // index of the mirror image that is kept in step, own index for a real point, −1 for none
 }
 
@@ -404,28 +405,37 @@ func (s *rootSolver) place(i int, z start) {
 func (s *rootSolver) rethink(i int) {
 	a := &s.roots[i]
 	a.tries = 0
-	switch {
-	case a.link == i:
-		a.link = -1
-		a.y.Rsh(a.x, uint(10+a.words))
-		if a.y.Sign() == 0 {
-			a.y.SetInt64(1)
-		}
-		if i%2 == 1 {
-			a.y.Neg(a.y)
-		}
-		a.normalise()
-	case a.link >= 0:
+	if a.link >= 0 && a.link != i {
 		s.roots[a.link].link = -1
-		a.link = -1
 	}
+	a.link = -1
+	if a.y.Sign() == 0 {
+		s.leaveAxis(i)
+	}
+}
+
+// leaveAxis moves a point off the real axis by the size of its last step: points
+// on it stay there by symmetry, which does not do where a pair of complex roots
+// is close to it.
+func (s *rootSolver) leaveAxis(i int) {
+	a := &s.roots[i]
+	_, e := math.Frexp(math.Min(a.step, 0x1p-10))
+	a.y.Rsh(a.x, uint(min(-e, 64*a.words-2)))
+	if a.y.Sign() == 0 {
+		a.y.SetInt64(1)
+	}
+	if (a.y.Sign() < 0) != (i%2 == 0) {
+		a.y.Neg(a.y)
+	}
+	a.normalise()
+	a.log = math.Inf(1)
 }
 
 // repulsion is Σ z_i/(z_i − z_j), with exact differences where the views are
 // too close to tell.
 func (s *rootSolver) repulsion(i int) complex128 {
-	sum := repulsion(s.views, i)
-	if cmplx.Abs(sum) < 1<<26 {
+	sum, close := repulsion(s.views, i)
+	if !close {
 		return sum
 	}
 	sum = 0

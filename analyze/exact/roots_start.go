@@ -144,9 +144,9 @@ func (z start) normal() start {
 	return start{complex(real(z.x)*scale, imag(z.x)*scale), z.k + e}
 }
 
-// repulsion returns Σ z_i/(z_i − z_j) over j ≠ i.
-func repulsion(z []start, i int) complex128 {
-	var sum complex128
+// repulsion returns Σ z_i/(z_i − z_j) over j ≠ i, and whether some z_j is so close
+// that these numbers do not tell the difference well.
+func repulsion(z []start, i int) (sum complex128, close bool) {
 	x, k := z[i].x, z[i].k
 	xr, xi := real(x), imag(x)
 	for j := range z {
@@ -164,14 +164,16 @@ func repulsion(z []start, i int) complex128 {
 		scale := math.Float64frombits(uint64(1023+shift) << 52)
 		dr, di := xr-real(z[j].x)*scale, xi-imag(z[j].x)*scale
 		size := dr*dr + di*di
-		if size < 1e-280 {
-			continue
+		if size < 0x1p-50 {
+			if close = true; size < 1e-280 {
+				continue
+			}
 		}
 		inverse := 1 / size
 		// x·conj(d)/|d|²
 		sum += complex((xr*dr+xi*di)*inverse, (xi*dr-xr*di)*inverse)
 	}
-	return sum
+	return sum, close
 }
 
 // roughRoots moves the starting points by the iteration of Aberth and Ehrlich
@@ -211,7 +213,8 @@ func (e *evaluator) roughRoots(ctx context.Context) []start {
 				continue
 			}
 			moving++
-			step := 1 / (ratio - repulsion(z, i))
+			push, _ := repulsion(z, i)
+			step := 1 / (ratio - push)
 			size := cmplx.Abs(step)
 			switch {
 			case size < 0x1p-40, size < 0x1p-8 && size > last[i]/2:

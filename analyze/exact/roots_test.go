@@ -82,7 +82,9 @@ func checkRoots(t reporter, p Poly, prec uint) []Root {
 
 func checkOrder(t reporter, a, b Root) {
 	t.Helper()
-	order, decided := a.Re.Cmp(b.Re)
+	// Real parts closer than about 2^-50 of the roots count as one.
+	least := a.Ball().Abs().Add(b.Ball().Abs()).MulPow2(-46)
+	order, decided := a.Re.Cmp(b.Re.Add(least))
 	switch {
 	case decided && order > 0:
 		t.Errorf("out of order: %v before %v", a.Re, b.Re)
@@ -350,6 +352,33 @@ func TestRandomProducts(t *testing.T) {
 		}
 		checkRoots(t, p, uint(rapid.IntRange(50, 300).Draw(t, "prec")))
 	})
+}
+
+// Products of quadratics and near copies of them: clusters of real roots, of
+// pairs and of pairs about the real axis, down to 1e-60 apart.
+func TestRandomClusters(t *testing.T) {
+	source := rand.New(rand.NewPCG(21, 5))
+	for range 100 {
+		p := PolyFromInt64s(1)
+		for range 1 + source.IntN(6) {
+			a, b := big.NewRat(source.Int64N(2001)-1000, 7), big.NewRat(source.Int64N(2001)-1000, 3)
+			off, leading := powerOfTenRat(-source.Int64N(60)), powerOfTenRat(source.Int64N(20)-10)
+			f, g := NewPoly(new(big.Rat).Add(a, off), b, leading), NewPoly(a, b, leading)
+			switch source.IntN(4) {
+			case 0:
+				p = p.Mul(f)
+			case 1:
+				p = p.Mul(f).Mul(g)
+			case 2:
+				p = p.Mul(NewPoly(a, nil, leading))
+			case 3:
+				p = p.Mul(f.Pow(1 + source.IntN(2))).Add(Constant(off))
+			}
+		}
+		if p.Degree() >= 1 {
+			checkRoots(t, p, 60+uint(source.IntN(100)))
+		}
+	}
 }
 
 func TestRandomCoefficients(t *testing.T) {
