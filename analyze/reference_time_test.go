@@ -4,6 +4,7 @@ import (
 	"encoding/json"
 	"fmt"
 	"math"
+	"math/cmplx"
 )
 
 // timeValue is an expected value at a time; the parts are empty where a case
@@ -86,6 +87,9 @@ func (a *asker) closedForm(output string, q *caseQuestion) error {
 	v, err := a.ask("%s", output)
 	if err != nil {
 		return err
+	}
+	if err := a.termsAddUp(v, q); err != nil {
+		return fmt.Errorf("%s: %w", output, err)
 	}
 	exact := tolerance{exact: true, relative: 1e-9}
 	for part, want := range q.Transform {
@@ -198,4 +202,64 @@ func (a *asker) equivalentPart(v *view, key string, want caseRatio, port, withou
 		return y.function(want, exact)
 	}
 	return fmt.Errorf("an expectation that nothing asks for")
+}
+
+// termView is one term of a closed form.
+type termView struct {
+	FromS  string `json:"from_s"`
+	Power  int
+	Re, Im string
+	PoleRe string `json:"pole_re"`
+	PoleIm string `json:"pole_im"`
+}
+
+// termsAt adds the terms of a closed form that have begun before t, and gives
+// the size of the largest.
+func termsAt(raw json.RawMessage, t float64) (sum, size float64, err error) {
+	var terms []termView
+	if err := json.Unmarshal(raw, &terms); err != nil {
+		return 0, 0, err
+	}
+	total := complex(0, 0)
+	for _, x := range terms {
+		from := float(x.FromS)
+		if t <= from {
+			continue
+		}
+		c := complex(float(x.Re), float(x.Im)) * cmplx.Exp(complex(float(x.PoleRe), float(x.PoleIm))*complex(t-from, 0)) *
+			complex(math.Pow(t-from, float64(x.Power)), 0)
+		total += c
+		size = math.Max(size, cmplx.Abs(c))
+	}
+	if math.Abs(imag(total)) > 1e-9*size {
+		return 0, 0, fmt.Errorf("the terms add up to %v at %g s: a conjugate is missing", total, t)
+	}
+	return real(total), size, nil
+}
+
+// termsAddUp compares the closed form, added up term by term, with the
+// expected values. Terms may cancel: then digits go.
+func (a *asker) termsAddUp(v *view, q *caseQuestion) error {
+	var list []timeValue
+	if err := json.Unmarshal(q.Expect, &list); err != nil {
+		return err
+	}
+	for _, w := range list {
+		if float(w.T) <= 0 {
+			continue
+		}
+		for _, part := range []struct {
+			terms json.RawMessage
+			want  string
+		}{{v.ZeroInput, w.ZeroInput}, {v.ZeroState, w.ZeroState}} {
+			got, size, err := termsAt(part.terms, float(w.T))
+			if err != nil {
+				return err
+			}
+			if want := float(part.want); !(math.Abs(got-want) <= 1e-9*math.Abs(want)+1e-11*size) {
+				return fmt.Errorf("the terms add up to %g at %s s, want %g", got, w.T, want)
+			}
+		}
+	}
+	return nil
 }

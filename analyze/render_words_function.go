@@ -19,6 +19,9 @@ func functionWords(a *FunctionAnswer) []string {
 	}
 	var c corners
 	lines = append(lines, c.factored(a))
+	if n := len(c.lines); n > cornerLimit {
+		c.lines = append(c.lines[:cornerLimit], fmt.Sprintf("and %d more corners", n-cornerLimit))
+	}
 	lines = append(lines, c.lines...)
 	if !a.Ratio.IsConstant() {
 		lines = append(lines, limitsOf(a))
@@ -36,6 +39,10 @@ func functionWords(a *FunctionAnswer) []string {
 // factorLimit is how many factors are written out; beyond it the corners
 // alone are listed.
 const factorLimit = 8
+
+// cornerLimit is how many corners are listed with a function; its poles and
+// zeros can be asked for by themselves.
+const cornerLimit = 12
 
 // corners collects what the symbols in the factors of functions mean.
 type corners struct {
