@@ -99,7 +99,7 @@ func (a *Analysis) variableValue(e *dialect.Variable, at spot, prec uint) (numbe
 	case e.Name == "t" && at.time != nil:
 		return realBall(number.BallFromExact(*at.time, prec)), nil
 	}
-	return number.ComplexBall{}, refuse("place-missing", fmt.Sprintf("%s has no value here: say at which frequency or time", e.Name))
+	return number.ComplexBall{}, refuse("frequency-missing", fmt.Sprintf("%s has no value here: say at which frequency, as in “at 1 kHz”", e.Name))
 }
 
 // functionValue evaluates a rational function of s on the imaginary axis.

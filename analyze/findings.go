@@ -26,7 +26,7 @@ func (a *Analysis) Findings(ctx context.Context) ([]dialect.Finding, error) {
 					return nil, err
 				}
 				if err == nil {
-					found = append(found, more...)
+					found = appendNew(found, more)
 				}
 			}
 		}
@@ -57,6 +57,21 @@ func (a *Analysis) accepted(found []dialect.Finding) []dialect.Finding {
 		}
 		return x.Span.Start < y.Span.Start
 	})
+	return found
+}
+
+// appendNew adds the findings that do not say the same of the same place again.
+func appendNew(found, more []dialect.Finding) []dialect.Finding {
+	for _, f := range more {
+		known := false
+		for _, g := range found {
+			known = known || g.Code == f.Code && g.Origin.File == f.Origin.File && g.Origin.Span == f.Origin.Span &&
+				len(g.Origin.Use) == len(f.Origin.Use) && (g.Message == f.Message || f.Severity == dialect.Error)
+		}
+		if !known {
+			found = append(found, f)
+		}
+	}
 	return found
 }
 
@@ -281,7 +296,7 @@ func (a *Analysis) hiddenModes(ctx context.Context) ([]dialect.Finding, error) {
 			return nil, err
 		}
 		if err != nil {
-			if r, ok := asRefusal(err); ok {
+			if r, ok := asRefusal(err); ok && fn.Value != nil {
 				found = append(found, dialect.Finding{Code: r.code, Severity: dialect.Error, Message: fn.Name + ": " + r.why,
 					Origin: dialect.Origin{File: fn.Origin.File, Span: fn.NameSpan, Use: fn.Origin.Use}})
 			}

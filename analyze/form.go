@@ -38,7 +38,7 @@ func (a *Analysis) function(ctx context.Context, e dialect.Expression, c configu
 		return f, err
 	}
 	if len(f.terms) > 0 {
-		return f, refuse("not-a-function", fmt.Sprintf(
+		return f, refuse("function-form", fmt.Sprintf(
 			"%s is a response without an excitation: divide it by a source or a port quantity, as in v[out]/Vs",
 			a.probeText(f.terms[0].probe)))
 	}
@@ -62,7 +62,7 @@ func (a *Analysis) form(ctx context.Context, e dialect.Expression, c configurati
 	case *dialect.Binary:
 		return a.binaryForm(ctx, e, c)
 	}
-	return form{}, refuse("not-a-function", "this is not a rational function of s")
+	return form{}, refuse("function-form", "this is not a rational function of s")
 }
 
 // namedFunction evaluates a function statement once per configuration.
@@ -82,7 +82,7 @@ func (a *Analysis) quantityForm(ctx context.Context, p dialect.Probe, c configur
 	case 'v', 'i':
 		return form{terms: []formTerm{{exact.PolyRatio(exact.PolyFromInt64s(1)), p}}, exact: true}, nil
 	}
-	return form{}, refuse("not-a-function", "power is not linear in the sources, so it has no network function")
+	return form{}, refuse("function-form", "power is not linear in the sources, so it has no network function")
 }
 
 func (a *Analysis) binaryForm(ctx context.Context, e *dialect.Binary, c configuration) (form, error) {
@@ -107,7 +107,7 @@ func (a *Analysis) binaryForm(ctx context.Context, e *dialect.Binary, c configur
 	case '/':
 		return a.quotient(ctx, x, y, c)
 	}
-	return form{}, refuse("not-a-function", fmt.Sprintf("%c is not defined between functions of s", e.Op))
+	return form{}, refuse("function-form", fmt.Sprintf("%c is not defined between functions of s", e.Op))
 }
 
 func (f form) plus(g form) form {
@@ -135,7 +135,7 @@ func (f form) scaled(r exact.Ratio) form {
 
 func (f form) times(g form) (form, error) {
 	if len(f.terms) > 0 && len(g.terms) > 0 {
-		return f, refuse("not-a-function", "a product of two responses is not linear in the sources")
+		return f, refuse("function-form", "a product of two responses is not linear in the sources")
 	}
 	if len(g.terms) > 0 || g.det != nil && f.det == nil {
 		f, g = g, f
@@ -149,10 +149,10 @@ func (f form) times(g form) (form, error) {
 func (f form) power(e dialect.Expression) (form, error) {
 	n, ok := integerOf(e)
 	if !ok || len(f.terms) > 0 {
-		return f, refuse("not-a-function", "a function of s can only be raised to a whole number")
+		return f, refuse("function-form", "a function of s can only be raised to a whole number")
 	}
 	if n > 64 || n < -64 {
-		return f, refuse("not-a-function", "the exponent is too large for an exact function: at most 64")
+		return f, refuse("function-form", "the exponent is too large for an exact function: at most 64")
 	}
 	base := f.constant
 	if n < 0 {
@@ -192,10 +192,10 @@ func (a *Analysis) quotient(ctx context.Context, x, y form, c configuration) (fo
 		return x.times(form{constant: inverse, exact: y.exact, remarks: y.remarks})
 	}
 	if len(y.terms) != 1 || !y.constant.IsZero() {
-		return form{}, refuse("not-a-function", "the divisor must be one excitation: a source, a port quantity, or a voltage that one source holds")
+		return form{}, refuse("function-form", "the divisor must be one excitation: a source, a port quantity, or a voltage that one source holds")
 	}
 	if !x.constant.IsZero() {
-		return form{}, refuse("not-a-function", "a number over an excitation is not a network function")
+		return form{}, refuse("function-form", "a number over an excitation is not a network function")
 	}
 	by, err := a.excitation(y.terms[0].probe, c)
 	if err != nil {

@@ -28,13 +28,16 @@ func (a *Analysis) pairOf(p dialect.Probe, c configuration) (pair, error) {
 		out.configuration = c.lacking(a.sourcesAcross(port.Plus, port.Minus)...)
 	case dialect.OfPart:
 		part := &a.description.Parts[p.Part]
-		if !wired(part) || part.Kind == dialect.OpAmp || part.Kind == dialect.Transformer || part.Kind == dialect.Coupling {
-			return out, refuse("no-impedance", fmt.Sprintf("%s is not a wired two-terminal part, so there is no impedance seen by it", part.Name))
+		if !wired(part) {
+			return out, refuse("never-wired", part.Name+" is not wired, so nothing is seen by it")
+		}
+		if part.Kind == dialect.OpAmp || part.Kind == dialect.Transformer || part.Kind == dialect.Coupling {
+			return out, refuse("wrong-sort", part.Name+" has more than two terminals: ask for the impedance of a node pair, z[a,b]")
 		}
 		out.plus, out.minus = part.From, part.To
 		out.configuration = c.lacking(p.Part)
 	case dialect.OfTerminal, dialect.OfInflow:
-		return out, refuse("no-impedance", "an impedance is asked at a node pair, a port or a part")
+		return out, refuse("wrong-sort", "an impedance is asked at a node pair, a port or a part")
 	}
 	if out.minus < 0 {
 		return out, refuse("no-ground", fmt.Sprintf(

@@ -208,14 +208,14 @@ func (a *Analysis) matrixAnswer(ctx context.Context, q *dialect.Question, head Q
 		out.Ports[k] = a.description.Ports[p].Name
 	}
 	if q.Ports[0] == q.Ports[1] {
-		return nil, refuse("same-port", "a two-port matrix needs two different ports")
+		return nil, refuse("wrong-sort", "a two-port matrix needs two different ports")
 	}
 	reference := big.NewRat(50, 1)
 	isExact := true
 	if q.Reference != nil {
 		reference, isExact = q.Reference.Rat(), q.Reference.IsExact()
 	} else if q.Set == "s" {
-		return nil, refuse("reference-missing", "a scattering matrix needs its reference resistance: add “reference 50 Ω”")
+		return nil, refuse("arguments", "a scattering matrix needs its reference resistance: add “reference 50 Ω”")
 	}
 	tp, err := a.twoPort(ctx, q.Ports, c)
 	if err != nil {

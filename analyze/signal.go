@@ -275,7 +275,7 @@ func (a *Analysis) partSignal(ctx context.Context, e *dialect.Call, c configurat
 			return s.Due(k), nil
 		}
 	}
-	return nil, refuse("not-a-source", "the second argument of due must be a wired independent source")
+	return nil, refuse("never-wired", a.description.Parts[e.Part].Name+" is not wired, so nothing is due to it")
 }
 
 // curve evaluates an expression to what measures and limits look at.
@@ -301,7 +301,7 @@ func (a *Analysis) curve(ctx context.Context, e dialect.Expression, c configurat
 	case *dialect.Call:
 		return a.curveCall(ctx, e, c)
 	}
-	return nil, refuse("not-a-signal", "only sums, multiples, products of two, abs, min and max of signals can be followed in time")
+	return nil, refuse("signal-product", "only sums, multiples, products of two, abs, min and max of signals can be followed in time")
 }
 
 // power is the power a part absorbs: voltage times current.
@@ -351,7 +351,7 @@ func (a *Analysis) curveBinary(ctx context.Context, e *dialect.Binary, c configu
 	case e.Op == '*' && xConstant, (e.Op == '*' || e.Op == '/') && yConstant:
 		return a.curveScaled(ctx, e, x, y, c)
 	}
-	return nil, refuse("not-a-signal", "only sums, multiples, products of two, abs, min and max of signals can be followed in time")
+	return nil, refuse("signal-product", "only sums, multiples, products of two, abs, min and max of signals can be followed in time")
 }
 
 func (a *Analysis) curveShifted(ctx context.Context, e *dialect.Binary, x, y *dialect.Constant, c configuration) (*response.Curve, error) {
@@ -422,5 +422,5 @@ func (a *Analysis) curveCall(ctx context.Context, e *dialect.Call, c configurati
 		}
 		return out, nil
 	}
-	return nil, refuse("not-a-signal", e.Name+" of a signal cannot be followed in time")
+	return nil, refuse("signal-product", e.Name+" of a signal cannot be followed in time")
 }

@@ -17,21 +17,46 @@ func (a *Analysis) Structure(ctx context.Context) ([]dialect.Finding, error) {
 	return recall(ctx, &a.memo, "structure", func(ctx context.Context) ([]dialect.Finding, error) {
 		found := append([]dialect.Finding(nil), a.checked.Findings...)
 		if len(a.description.Parts) > 0 {
-			found = append(found, a.connectivity()...)
+			found = append(found, a.connectivity(a.incomplete())...)
 		}
 		return a.accepted(found), ctx.Err()
 	})
 }
 
+// losing are the codes of errors that can leave a connection out of the network.
+var losing = []dialect.Code{
+	"syntax", "unknown-name", "name-taken", "wired-twice", "not-two-terminal", "wrong-sort", "option-missing",
+	"file-missing", "use-cycle", "too-large",
+}
+
+// incomplete tells whether an error has left connections out: what then seems
+// unconnected need not be a mistake of its own.
+func (a *Analysis) incomplete() bool {
+	return a.description.Faults && hasCode(a.checked.Findings, losing...)
+}
+
+// echoes tells whether a problem may come from nothing but an error in the
+// text: a value that could not be read, a connection that is missing.
+func (a *Analysis) echoes(k network.ProblemKind, incomplete bool) bool {
+	switch k {
+	case network.BadValue:
+		return a.description.Faults
+	case network.CapacitorLoop, network.VoltageLoop, network.CouplingRange, network.InductanceMatrix:
+		return false
+	}
+	return incomplete
+}
+
 // connectivity inspects the network in every position of its switches, and
-// says each thing once.
-func (a *Analysis) connectivity() []dialect.Finding {
+// says each thing once. In an incomplete network it says only what further
+// connections cannot mend.
+func (a *Analysis) connectivity(incomplete bool) []dialect.Finding {
 	var found []dialect.Finding
 	seen := map[string]bool{}
 	inspect := func(n *network.Network, when string) {
 		for _, p := range n.Inspect() {
 			key := fmt.Sprint(p.Kind, sorted(p.Elements), sorted(p.Nodes))
-			if seen[key] || p.Kind == network.SelfLoop || p.Kind == network.InductorCutset && len(p.Elements) < 2 {
+			if seen[key] || a.echoes(p.Kind, incomplete) || p.Kind == network.SelfLoop || p.Kind == network.InductorCutset && len(p.Elements) < 2 {
 				continue // a lone coil that a switch leaves open carries nothing
 			}
 			seen[key] = true
@@ -148,10 +173,13 @@ var problemTexts = map[network.ProblemKind]problemText{
 	network.InitialNotFree: {"initial-conflict", dialect.Error, func(parts, _ string, _ network.Problem) string {
 		return fmt.Sprintf("the steady state already fixes %s: an initial value can only be given where the network leaves it free", parts)
 	}},
-	network.BadReference: {"unknown-name", dialect.Error, func(parts, _ string, p network.Problem) string {
-		return fmt.Sprintf("%s refers to something that is not there: %s", parts, p.Detail)
+	network.BadReference: {"never-wired", dialect.Error, func(parts, _ string, p network.Problem) string {
+		if name, of, ok := strings.Cut(parts, " and "); ok {
+			return fmt.Sprintf("%s follows a current of %s, which is not in the network", name, of)
+		}
+		return fmt.Sprintf("%s: %s", parts, p.Detail)
 	}},
-	network.BadValue: {"value-range", dialect.Error, func(parts, _ string, p network.Problem) string {
+	network.BadValue: {"not-positive", dialect.Error, func(parts, _ string, p network.Problem) string {
 		return fmt.Sprintf("%s cannot have this value: %s", parts, p.Detail)
 	}},
 }

@@ -194,7 +194,7 @@ func (a *Analysis) currentOutput(sys *network.System, p dialect.Probe, by excita
 	case dialect.OfInflow:
 		return a.inflow(sys, p)
 	}
-	return network.Output{}, nil, refuse("no-current", fmt.Sprintf(
+	return network.Output{}, nil, refuse("wrong-sort", fmt.Sprintf(
 		"%s: a current belongs to a part, a terminal or a driven port, not to a node pair", a.probeText(p)))
 }
 

@@ -67,7 +67,7 @@ func degrees(b number.Ball) number.Ball {
 func (a *Analysis) signalAnswer(ctx context.Context, head Question, e dialect.Expression, c configuration) (Answer, error) {
 	s, err := a.linear(ctx, e, c)
 	if errors.Is(err, errNotLinear) {
-		return nil, refuse("not-linear", "this is no sum of voltages and currents, so it has no closed form in parts: ask its value “at 1 ms”, a range “to 10 ms”, or a measure such as peak(…)")
+		return nil, refuse("no-closed-form", "this changes its form wherever signals cross, so it has no one closed form: ask its value “at 1 ms”, a range “to 10 ms”, or a measure such as peak(…)")
 	}
 	if err != nil {
 		return nil, err
@@ -90,7 +90,7 @@ func (a *Analysis) signalValueAnswer(ctx context.Context, q *dialect.Question, h
 	}
 	t := at.Value.Rat()
 	if t.Sign() < 0 {
-		return nil, refuse("time-range", "responses are known from t = 0 on; ask “before 0 s” for the left limit there")
+		return nil, refuse("not-positive", "responses are known from t = 0 on; ask “before 0 s” for the left limit there")
 	}
 	out := &SignalValueAnswer{Question: head, Dimension: q.What.Dim(), At: at.Value, Proved: true}
 	s, err := a.linear(ctx, q.What, c)
@@ -196,12 +196,12 @@ func (a *Analysis) curveValue(ctx context.Context, e dialect.Expression, c confi
 // signalPoint evaluates a signal inside an expression that has a time.
 func (a *Analysis) signalPoint(ctx context.Context, e dialect.Expression, at spot, prec uint) (number.ComplexBall, error) {
 	if at.time == nil {
-		return number.ComplexBall{}, refuse("time-missing", "say at which time, as in “at 2 ms”")
+		return number.ComplexBall{}, refuse("frequency-missing", "say at which time, as in “at 2 ms”")
 	}
 	digits := int(prec*3/10) - 8
 	t := at.time.Rat()
 	if t.Sign() < 0 {
-		return number.ComplexBall{}, refuse("time-range", "responses are known from t = 0 on")
+		return number.ComplexBall{}, refuse("not-positive", "responses are known from t = 0 on")
 	}
 	s, err := a.linear(ctx, e, at.configuration)
 	var v number.Ball

@@ -37,6 +37,9 @@ func TestExamplesOfFindings(t *testing.T) {
 		c := Check(Parse("example.plight", e.Example), mapReader(e.Files))
 		found := false
 		for _, f := range c.Findings {
+			if e.Code == "faults" {
+				continue // the refusal that follows an error of any code
+			}
 			if f.Code != e.Code || e.Analysis {
 				t.Errorf("the example of %s also yields %s", e.Code, f)
 			}
