@@ -221,9 +221,8 @@ func (a *asker) values(q *caseQuestion) outcome {
 		}
 		if w.Far != nil {
 			w.Far.Hz, w.Far.Omega = w.Hz, w.Omega
-			// This one corner is named by the collection's note, not by a field.
-			far := a.text.functions["v[g49_49] / i["+a.text.ports[[2]string{q.Port[0], q.Port[1]}]+"]"]
-			if err := a.valueAt(far, *w.Far, t, largest); err != nil {
+			// The corner is named by the case's note; metricStatements has the function.
+			if err := a.valueAt("H_far", *w.Far, t, largest); err != nil {
 				return outcome{err: err}
 			}
 		}
