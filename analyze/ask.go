@@ -162,9 +162,17 @@ func (a *Analysis) functionAnswer(ctx context.Context, head Question, d dialect.
 	if out.Poles, err = rootsOf(ctx, f.constant.Den); err != nil {
 		return nil, err
 	}
-	if f.det != nil {
-		out.Hidden, err = rootsOf(ctx, hiddenFactor(*f.det, f.constant.Den))
+	if f.of == nil {
+		return out, nil
 	}
+	det, err := a.determinant(ctx, *f.of)
+	if _, refused := asRefusal(err); refused {
+		return out, nil // too many to list
+	}
+	if err != nil {
+		return nil, err
+	}
+	out.Hidden, err = rootsOf(ctx, hiddenFactor(det, f.constant.Den))
 	return out, err
 }
 
@@ -194,7 +202,7 @@ func (a *Analysis) rootsAnswer(ctx context.Context, q *dialect.Question, head Qu
 			}
 		}
 	default:
-		det, _, err := a.determinant(ctx, c)
+		det, err := a.determinant(ctx, c)
 		if err != nil {
 			return nil, err
 		}

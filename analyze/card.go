@@ -6,6 +6,7 @@ import (
 	"math"
 	"strings"
 
+	"portlight/analyze/exact"
 	"portlight/dialect"
 	"portlight/dialect/number"
 )
@@ -212,11 +213,21 @@ func abs(n int) int {
 // one digit; 1 kHz for a network without any.
 func (a *Analysis) middleFrequency(ctx context.Context) float64 {
 	f, err := recall(ctx, &a.memo, "middle", func(ctx context.Context) (float64, error) {
-		det, _, err := a.determinant(ctx, configuration{})
+		blocks, err := a.determinants(ctx, configuration{})
 		if err != nil {
 			return 0, err
 		}
-		roots, err := rootsOf(ctx, det)
+		var roots []exact.Root
+		for _, b := range blocks {
+			if len(roots) > mostModes {
+				break // enough for a middle
+			}
+			more, err := rootsOf(ctx, b)
+			if err != nil {
+				return 0, err
+			}
+			roots = append(roots, more...)
+		}
 		sum, n := 0.0, 0.0
 		for _, r := range roots {
 			size := number.ComplexBall{Re: r.Re, Im: r.Im}.Abs().MidFloat64()
@@ -225,9 +236,9 @@ func (a *Analysis) middleFrequency(ctx context.Context) float64 {
 			}
 		}
 		if n == 0 {
-			return 0, err
+			return 0, nil
 		}
-		return math.Exp(sum / n), err
+		return math.Exp(sum / n), nil
 	})
 	if err != nil || f == 0 {
 		return 1000

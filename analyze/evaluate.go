@@ -19,6 +19,8 @@ type spot struct {
 	time          *number.Exact // s
 	side          response.Side // of the time
 	from, to      *dialect.Constant
+	// double is set where a value may be, and was, computed in double precision.
+	double *bool
 }
 
 // placeOf reads a place from qualifiers, for an expression of a shape.
@@ -105,6 +107,10 @@ func (a *Analysis) variableValue(e *dialect.Variable, at spot, prec uint) (numbe
 // functionValue evaluates a rational function of s on the imaginary axis.
 func (a *Analysis) functionValue(ctx context.Context, e dialect.Expression, at spot) (number.ComplexBall, error) {
 	f, err := a.function(ctx, e, at.configuration)
+	if large, ok := inDouble(err); ok && at.omega != nil && at.double != nil {
+		*at.double = true
+		return a.valueInDouble(ctx, large, *at.omega)
+	}
 	if err != nil {
 		return number.ComplexBall{}, err
 	}
@@ -290,7 +296,7 @@ func refined(ctx context.Context, f func(prec uint) (number.ComplexBall, error))
 		if err := ctx.Err(); err != nil {
 			return v, err
 		}
-		if decidedTo(v, wantedBits) || prec >= maxValueBits {
+		if decidedTo(v, wantedBits) || prec >= maxValueBits || v.Prec() <= 64 {
 			return v, nil
 		}
 	}

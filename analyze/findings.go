@@ -2,9 +2,11 @@ package analyze
 
 import (
 	"context"
+	"errors"
 	"fmt"
 	"sort"
 
+	"portlight/analyze/exact"
 	"portlight/analyze/frequency"
 	"portlight/analyze/network"
 	"portlight/dialect"
@@ -97,12 +99,12 @@ func (a *Analysis) soundness(ctx context.Context) ([]dialect.Finding, error) {
 	for i, iv := range a.intervals(configuration{}) {
 		sys, problems := network.Assemble(iv.network)
 		if sys != nil {
-			det, err := sys.Determinant(ctx)
-			if err != nil {
-				return nil, err
-			}
-			if !det.IsZero() {
+			err := a.solvable(ctx, sys)
+			if err == nil || errors.Is(err, errLarge) {
 				continue
+			}
+			if passOn(ctx, err) {
+				return nil, err
 			}
 			if problems, err = sys.Diagnose(ctx); err != nil {
 				return nil, err
@@ -149,13 +151,21 @@ func (a *Analysis) stability(ctx context.Context) ([]dialect.Finding, error) {
 	if a.plainlyPassive() {
 		return nil, nil
 	}
-	det, _, err := a.determinant(ctx, configuration{})
-	if err != nil || frequency.Decide(det) != frequency.Unstable {
-		return nil, err
-	}
-	roots, err := rootsOf(ctx, det)
+	blocks, err := a.determinants(ctx, configuration{})
 	if err != nil {
 		return nil, err
+	}
+	var roots []exact.Root
+	for _, b := range blocks {
+		if frequency.Decide(b) == frequency.Unstable {
+			if roots, err = rootsOf(ctx, b); err != nil {
+				return nil, err
+			}
+			break
+		}
+	}
+	if roots == nil {
+		return nil, nil
 	}
 	text := "a natural frequency of the network lies in the right half-plane, or more than one at a place on the imaginary axis: its response grows without end"
 	for _, r := range roots {
@@ -274,7 +284,7 @@ func (a *Analysis) limitFindings(ctx context.Context) ([]dialect.Finding, error)
 		case v.InTolerance == Broken:
 			found = append(found, dialect.Finding{
 				Code: "limit-broken-in-tolerance", Severity: dialect.Warning, Origin: v.Limit.Origin,
-				Message: fmt.Sprintf("%s; with %s it is broken", VerdictWords(*v), v.Corner),
+				Message: VerdictWords(*v),
 			})
 		case v.Decision == Undecided:
 			found = append(found, dialect.Finding{
@@ -302,10 +312,7 @@ func (a *Analysis) hiddenModes(ctx context.Context) ([]dialect.Finding, error) {
 			}
 			continue
 		}
-		if f.det == nil {
-			continue
-		}
-		hidden, err := rootsOf(ctx, hiddenFactor(*f.det, f.constant.Den))
+		hidden, err := a.hiddenInPiece(ctx, fn.Value, f)
 		if err != nil {
 			return nil, err
 		}

@@ -17,10 +17,10 @@ type form struct {
 	constant exact.Ratio
 	terms    []formTerm
 	exact    bool // no stand-in for an irrational took part
-	// det is the determinant of the network that a single transfer or
-	// immittance was taken from: what it lacks of it is hidden. Nil after
-	// arithmetic between functions.
-	det     *exact.Poly
+	// of is the configuration that a single transfer or immittance was taken
+	// from: natural frequencies of it that the function lacks are hidden. Nil
+	// after arithmetic between functions.
+	of      *configuration
 	remarks []string
 }
 
@@ -115,7 +115,7 @@ func (f form) plus(g form) form {
 	f.terms = append(append([]formTerm(nil), f.terms...), g.terms...)
 	f.exact = f.exact && g.exact
 	f.remarks = append(append([]string(nil), f.remarks...), g.remarks...)
-	f.det = nil
+	f.of = nil
 	return f
 }
 
@@ -128,7 +128,7 @@ func (f form) scaled(r exact.Ratio) form {
 	}
 	f.terms = terms
 	if !r.IsConstant() {
-		f.det = nil
+		f.of = nil
 	}
 	return f
 }
@@ -137,7 +137,7 @@ func (f form) times(g form) (form, error) {
 	if len(f.terms) > 0 && len(g.terms) > 0 {
 		return f, refuse("function-form", "a product of two responses is not linear in the sources")
 	}
-	if len(g.terms) > 0 || g.det != nil && f.det == nil {
+	if len(g.terms) > 0 || g.of != nil && f.of == nil {
 		f, g = g, f
 	}
 	out := f.scaled(g.constant)
@@ -214,7 +214,7 @@ func (a *Analysis) quotient(ctx context.Context, x, y form, c configuration) (fo
 		}
 		part := g.scaled(k)
 		if len(x.terms) == 1 {
-			out.det = part.det
+			out.of = part.of
 		}
 		out.constant = out.constant.Add(part.constant)
 		out.exact = out.exact && part.exact

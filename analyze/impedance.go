@@ -81,7 +81,7 @@ func (a *Analysis) impedanceAt(ctx context.Context, at pair) (form, error) {
 	if problem != nil {
 		return form{}, a.refuseProblems([]network.Problem{*problem})
 	}
-	return a.ratio(ctx, sys, out, col)
+	return a.ratio(ctx, at.configuration, sys, out, col)
 }
 
 // admittance is 1/z where z is not zero; where a source holds the pair there is none.
@@ -108,7 +108,7 @@ func (a *Analysis) admittanceAt(ctx context.Context, at pair) (form, error) {
 	if problem == nil {
 		var out network.Output
 		if out, problem = sys.ElementCurrent(element); problem == nil {
-			f, err := a.ratio(ctx, sys, out, col)
+			f, err := a.ratio(ctx, c, sys, out, col)
 			if _, refused := asRefusal(err); refused {
 				return f, refuse("no-admittance", fmt.Sprintf("%s does not exist: %s", at.what, err.(*refusal).why))
 			}

@@ -2,6 +2,7 @@ package analyze
 
 import (
 	"context"
+	"errors"
 	"fmt"
 	"math/big"
 
@@ -83,14 +84,18 @@ func (a *Analysis) drivenTwoPort(ctx context.Context, ports [2]int, kinds [2]net
 			return twoPort{}, a.refuseProblems([]network.Problem{*problem})
 		}
 	}
-	num, det, err := sys.Transfer(ctx, outs, cols)
+	if a.large(ctx, c) {
+		return twoPort{}, errLarge
+	}
+	h, err := sys.Responses(ctx, outs, cols)
+	var singular *exact.SingularError
+	if errors.As(err, &singular) {
+		return twoPort{}, a.refuseSingular(ctx, sys)
+	}
 	if err != nil {
 		return twoPort{}, err
 	}
-	if det.IsZero() {
-		return twoPort{}, a.refuseSingular(ctx, sys)
-	}
-	return equationsOf(kinds, num, det, sys.Exact())
+	return equationsOf(kinds, h, sys.Exact()), nil
 }
 
 // unforced is what a port shows when one of its quantities is forced: the
@@ -105,7 +110,7 @@ func (a *Analysis) unforced(sys *network.System, element int, kind network.Kind)
 }
 
 // equationsOf writes unforced_k − Σ response_kj·forced_j = 0.
-func equationsOf(kinds [2]network.Kind, num [][]exact.Poly, det exact.Poly, isExact bool) (twoPort, error) {
+func equationsOf(kinds [2]network.Kind, h [][]exact.Ratio, isExact bool) twoPort {
 	tp := twoPort{exact: isExact}
 	unforced, forced := [2]int{}, [2]int{}
 	for k, kind := range kinds {
@@ -117,14 +122,10 @@ func equationsOf(kinds [2]network.Kind, num [][]exact.Poly, det exact.Poly, isEx
 	for k := range kinds {
 		tp.rows[k][unforced[k]] = exact.ConstantRatio(rational(1, 1))
 		for j := range kinds {
-			r, err := exact.NewRatio(num[k][j], det)
-			if err != nil {
-				return tp, err
-			}
-			tp.rows[k][forced[j]] = r.Neg()
+			tp.rows[k][forced[j]] = h[k][j].Neg()
 		}
 	}
-	return tp, nil
+	return tp
 }
 
 // solveFor expresses the dependent pair by the independent pair. Signs turn a

@@ -90,12 +90,8 @@ func (a *Analysis) solution(ctx context.Context, c configuration) (*response.Sol
 			if sys == nil {
 				return nil, a.refuseProblems(problems)
 			}
-			det, err := sys.Determinant(ctx)
-			if err != nil {
+			if err := a.solvable(ctx, sys); err != nil {
 				return nil, err
-			}
-			if det.IsZero() {
-				return nil, a.refuseSingular(ctx, sys)
 			}
 			setup.Intervals = append(setup.Intervals, response.Interval{Start: iv.start, System: sys})
 		}
@@ -104,6 +100,24 @@ func (a *Analysis) solution(ctx context.Context, c configuration) (*response.Sol
 		}
 		return response.Solve(ctx, setup)
 	})
+}
+
+// solvable refuses equations without a unique solution, and those for which
+// closed forms would take too long.
+func (a *Analysis) solvable(ctx context.Context, sys *network.System) error {
+	if a.largeSystem(ctx, sys) {
+		return errLarge
+	}
+	blocks, err := sys.Blocks(ctx)
+	if err != nil {
+		return err
+	}
+	for _, b := range blocks {
+		if b.IsZero() {
+			return a.refuseSingular(ctx, sys)
+		}
+	}
+	return nil
 }
 
 // waves lists the independent sources; their order is that of due.

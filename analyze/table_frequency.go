@@ -43,11 +43,12 @@ func (a *Analysis) frequencyTable(ctx context.Context, q *dialect.Question, head
 		hertz = append(hertz, more...)
 	}
 	for _, f := range ascending(hertz, low, high) {
-		row, err := a.frequencyRow(ctx, q.What, c, f, complexValued)
+		row, double, err := a.frequencyRow(ctx, q.What, c, f, complexValued)
 		if err != nil {
 			return nil, err
 		}
 		out.Rows = append(out.Rows, row)
+		out.Proved = out.Proved && !double
 	}
 	return out, nil
 }
@@ -153,21 +154,21 @@ func ascending(xs []float64, low, high float64) []float64 {
 }
 
 // frequencyRow evaluates one row.
-func (a *Analysis) frequencyRow(ctx context.Context, e dialect.Expression, c configuration, hertz float64, complexValued bool) ([]number.Ball, error) {
+func (a *Analysis) frequencyRow(ctx context.Context, e dialect.Expression, c configuration, hertz float64, complexValued bool) (row []number.Ball, double bool, err error) {
 	f := shownRat(hertz)
 	v, err := refined(ctx, func(prec uint) (number.ComplexBall, error) {
 		two := new(big.Rat).Mul(f, big.NewRat(2, 1))
 		w := number.BallFromExact(number.Pi(), prec).MulRat(two)
-		return a.value(ctx, e, spot{configuration: c, omega: &w}, prec)
+		return a.value(ctx, e, spot{configuration: c, omega: &w, double: &double}, prec)
 	})
 	if err != nil {
-		return nil, err
+		return nil, double, err
 	}
-	row := []number.Ball{number.BallFromRat(f, 96)}
+	row = []number.Ball{number.BallFromRat(f, 96)}
 	if complexValued {
-		return append(row, v.Abs(), degrees(angle(v))), nil
+		return append(row, v.Abs(), degrees(angle(v))), double, nil
 	}
-	return append(row, v.Re), nil
+	return append(row, v.Re), double, nil
 }
 
 // shownRat is the decimal number that a float64 is shown as.

@@ -2,6 +2,7 @@ package analyze
 
 import (
 	"context"
+	"errors"
 	"fmt"
 
 	"portlight/analyze/exact"
@@ -29,21 +30,47 @@ func (a *Analysis) refuseProblems(problems []network.Problem) error {
 	return refuse("singular", "the equations have no unique solution")
 }
 
-// determinant is det(G + sC) of a configuration, never zero.
-func (a *Analysis) determinant(ctx context.Context, c configuration) (exact.Poly, bool, error) {
+// determinants are polynomials whose product is det(G + sC) of a
+// configuration, one for each piece of the equations; none is zero.
+func (a *Analysis) determinants(ctx context.Context, c configuration) ([]exact.Poly, error) {
 	sys, err := a.system(ctx, c)
 	if err != nil {
-		return exact.Poly{}, false, err
+		return nil, err
 	}
-	_, det, err := sys.Transfer(ctx, nil, nil)
+	if a.large(ctx, c) {
+		return nil, errLarge
+	}
+	blocks, err := sys.Blocks(ctx)
 	if err != nil {
-		return exact.Poly{}, false, err
+		return nil, err
 	}
-	if det.IsZero() {
-		return exact.Poly{}, false, a.refuseSingular(ctx, sys)
+	for _, b := range blocks {
+		if b.IsZero() {
+			return nil, a.refuseSingular(ctx, sys)
+		}
 	}
-	return det, sys.Exact(), nil
+	return blocks, nil
 }
+
+// determinant is det(G + sC) as one polynomial.
+func (a *Analysis) determinant(ctx context.Context, c configuration) (exact.Poly, error) {
+	blocks, err := a.determinants(ctx, c)
+	if err != nil {
+		return exact.Poly{}, err
+	}
+	product := exact.PolyFromInt64s(1)
+	for _, b := range blocks {
+		if product.Degree()+b.Degree() > mostModes {
+			return exact.Poly{}, refuse("too-many-modes", fmt.Sprintf(
+				"the network has more than %d natural frequencies: ask for the poles of a function", mostModes))
+		}
+		product = product.Mul(b)
+	}
+	return product, nil
+}
+
+// mostModes is how many natural frequencies one answer may list.
+const mostModes = 400
 
 func (a *Analysis) refuseSingular(ctx context.Context, sys *network.System) error {
 	problems, err := sys.Diagnose(ctx)
@@ -54,20 +81,20 @@ func (a *Analysis) refuseSingular(ctx context.Context, sys *network.System) erro
 }
 
 // ratio solves one output for one column.
-func (a *Analysis) ratio(ctx context.Context, sys *network.System, out network.Output, col network.Column) (form, error) {
-	num, det, err := sys.Transfer(ctx, []network.Output{out}, []network.Column{col})
-	if err != nil {
-		return form{}, err
+func (a *Analysis) ratio(ctx context.Context, c configuration, sys *network.System, out network.Output, col network.Column) (form, error) {
+	if a.large(ctx, c) {
+		return form{}, &largeError{c, sys, out, col}
 	}
-	if det.IsZero() {
+	h, err := sys.Responses(ctx, []network.Output{out}, []network.Column{col})
+	var singular *exact.SingularError
+	if errors.As(err, &singular) {
 		return form{}, a.refuseSingular(ctx, sys)
 	}
-	r, err := exact.NewRatio(num[0][0], det)
 	if err != nil {
 		return form{}, err
 	}
-	f := constantForm(r, sys.Exact())
-	f.det = &det
+	f := constantForm(h[0][0], sys.Exact())
+	f.of = &c
 	return f, nil
 }
 
@@ -87,7 +114,7 @@ func (a *Analysis) transfer(ctx context.Context, p dialect.Probe, by excitation)
 		if problem != nil {
 			return form{}, a.refuseProblems([]network.Problem{*problem})
 		}
-		f, err := a.ratio(ctx, sys, out, col)
+		f, err := a.ratio(ctx, by.configuration, sys, out, col)
 		if by.negative {
 			f.constant = f.constant.Neg()
 		}

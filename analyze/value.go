@@ -13,16 +13,17 @@ import (
 // valueAnswer is a number: a constant, a value at a frequency, arithmetic on measures.
 func (a *Analysis) valueAnswer(ctx context.Context, q *dialect.Question, head Question, c configuration) (Answer, error) {
 	shape := q.What.Shape()
+	double := false
 	v, err := refined(ctx, func(prec uint) (number.ComplexBall, error) {
 		at := placeOf(q.Qualifiers, shape, prec)
-		at.configuration = c
+		at.configuration, at.double = c, &double
 		return a.value(ctx, q.What, at, prec)
 	})
 	if err != nil {
 		return nil, err
 	}
 	out := &ValueAnswer{
-		Question: head, Dimension: q.What.Dim(), Value: v, Magnitude: v.Abs(), Proved: true,
+		Question: head, Dimension: q.What.Dim(), Value: v, Magnitude: v.Abs(), Proved: !double,
 		At: q.Qualifiers.At, Complex: shape == dialect.ShapeFunction && isRational(q.What),
 	}
 	if k, ok := q.What.(*dialect.Constant); ok {

@@ -187,3 +187,10 @@ func (n *Network) sensed() []bool {
 	}
 	return out
 }
+
+// Touches tells whether the element has a connection at a node.
+func (e *Element) Touches(node int) bool {
+	found := false
+	e.terminals(func(n int) { found = found || n == node })
+	return found
+}

@@ -47,20 +47,11 @@ func (s *System) Transfer(ctx context.Context, outs []Output, cols []Column) (nu
 	if err != nil {
 		return nil, exact.Poly{}, err
 	}
-	var rhs, vectors []exact.Vector
+	var rhs []exact.Vector
 	for _, c := range cols {
 		rhs = append(rhs, c.RHS)
 	}
-	type part struct{ output, shift int }
-	var parts []part
-	for i, o := range outs {
-		if len(o.G) > 0 {
-			vectors, parts = append(vectors, o.G), append(parts, part{i, 0})
-		}
-		if len(o.C) > 0 {
-			vectors, parts = append(vectors, o.C), append(parts, part{i, 1})
-		}
-	}
+	vectors, parts := functionals(outs)
 	n, err := p.Numerators(ctx, rhs, vectors)
 	if err != nil {
 		return nil, exact.Poly{}, err
@@ -84,6 +75,74 @@ func (s *System) Transfer(ctx context.Context, outs []Output, cols []Column) (nu
 		}
 	}
 	return num, det, nil
+}
+
+// Responses returns the responses of outputs to columns in lowest terms:
+// h[i][j] is the transform of outs[i] when cols[j] alone drives the network.
+// Only the pieces between the columns and the outputs are solved, so that in
+// a large description a question costs what its own piece costs. The error is
+// an *exact.SingularError where one of those pieces has no unique solution,
+// otherwise the context's.
+func (s *System) Responses(ctx context.Context, outs []Output, cols []Column) ([][]exact.Ratio, error) {
+	p, err := s.Prepared(ctx)
+	if err != nil {
+		return nil, err
+	}
+	rhs := make([]exact.Vector, len(cols))
+	for j, c := range cols {
+		rhs[j] = c.RHS
+	}
+	vectors, parts := functionals(outs)
+	n, err := p.Responses(ctx, rhs, vectors)
+	if err != nil {
+		return nil, err
+	}
+	h := make([][]exact.Ratio, len(outs))
+	for i, o := range outs {
+		h[i] = make([]exact.Ratio, len(cols))
+		for j, c := range cols {
+			h[i][j] = exact.ConstantRatio(direct(o, c))
+		}
+	}
+	s1 := exact.PolyRatio(exact.PolyFromInt64s(0, 1))
+	for k, q := range parts {
+		for j := range cols {
+			part := n[k][j]
+			if q.shift == 1 {
+				part = part.Mul(s1)
+			}
+			h[q.output][j] = h[q.output][j].Add(part)
+		}
+	}
+	return h, nil
+}
+
+// Blocks returns polynomials whose product is the determinant, one for each
+// piece of the equations and a constant; the zero polynomial alone when the
+// equations have no unique solution. The error is the context's.
+func (s *System) Blocks(ctx context.Context) ([]exact.Poly, error) {
+	p, err := s.Prepared(ctx)
+	if err != nil {
+		return nil, err
+	}
+	return p.BlockDeterminants(ctx)
+}
+
+// functional says which output a vector belongs to, and whether it counts
+// times s.
+type functional struct{ output, shift int }
+
+// functionals lists the vectors that outputs consist of.
+func functionals(outs []Output) (vectors []exact.Vector, parts []functional) {
+	for i, o := range outs {
+		if len(o.G) > 0 {
+			vectors, parts = append(vectors, o.G), append(parts, functional{i, 0})
+		}
+		if len(o.C) > 0 {
+			vectors, parts = append(vectors, o.C), append(parts, functional{i, 1})
+		}
+	}
+	return vectors, parts
 }
 
 // direct is what an output holds of a column without the network's doing.

@@ -190,12 +190,13 @@ func (p *networkPlant) rows(ctx context.Context, outs []network.Output, first bo
 		}
 		cols = append(cols, c)
 	}
-	nums, det, err := p.system.Transfer(ctx, outs, cols)
+	h, err := p.system.Responses(ctx, outs, cols)
+	var singular *exact.SingularError
+	if errors.As(err, &singular) {
+		return nil, ErrSingular
+	}
 	if err != nil {
 		return nil, err
-	}
-	if det.IsZero() {
-		return nil, ErrSingular
 	}
 	out := make([]*row, len(outs))
 	for i := range outs {
@@ -204,7 +205,7 @@ func (p *networkPlant) rows(ctx context.Context, outs []network.Output, first bo
 			if err := ctx.Err(); err != nil {
 				return nil, err
 			}
-			f := ratioOf(nums[i][j], det)
+			f := h[i][j]
 			switch {
 			case j >= memories:
 				r.sources[elements[j-memories]] = f
