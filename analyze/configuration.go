@@ -84,6 +84,15 @@ type model struct {
 	network  *network.Network
 	system   *network.System // nil when the equations have no solution
 	problems []network.Problem
+
+	once  sync.Once
+	parts network.Partition
+}
+
+// partition is the pieces that cannot influence one another, found once.
+func (m *model) partition() network.Partition {
+	m.once.Do(func() { m.parts = m.network.Partition() })
+	return m.parts
 }
 
 // models keeps the models of one analysis by configuration.
@@ -113,7 +122,7 @@ func (a *Analysis) model(_ context.Context, c configuration) *model {
 	o.once.Do(func() {
 		net := a.build(c, nil)
 		system, problems := network.Assemble(net)
-		o.model = &model{net, system, problems}
+		o.model = &model{network: net, system: system, problems: problems}
 	})
 	return o.model
 }

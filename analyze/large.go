@@ -111,7 +111,7 @@ func (a *Analysis) hiddenInPiece(ctx context.Context, e dialect.Expression, f fo
 		return nil, nil
 	}
 	m := a.model(ctx, *f.of)
-	p := m.network.Partition()
+	p := m.partition()
 	groups := map[int]bool{}
 	for _, n := range a.nodesIn(e) {
 		for i := range m.network.Elements {

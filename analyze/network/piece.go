@@ -15,7 +15,7 @@ type Piece struct {
 // that of the piece and does not depend on the size of the whole.
 func (n *Network) Extract(p Partition, group int) *Piece {
 	q := &Piece{Network: &Network{Ground: -1}}
-	q.ElementOf = append(append(q.ElementOf, p.Held...), p.Groups[group]...)
+	q.ElementOf = append(n.holding(p, group), p.Groups[group]...)
 	slices.Sort(q.ElementOf)
 	note := func(v int) {
 		if v >= 0 && v < n.Nodes {
@@ -100,4 +100,45 @@ func (q *Piece) Whole(p Problem) Problem {
 	p.Through = number(p.Through, q.ElementOf)
 	p.Nodes = number(p.Nodes, q.NodeOf)
 	return p
+}
+
+// holding lists those of the sources and shorts that hold rails which hold a
+// rail that the group touches, followed back to the reference.
+func (n *Network) holding(p Partition, group int) []int {
+	at := map[int][]int{} // holders by node
+	for _, h := range p.Held {
+		e := &n.Elements[h]
+		at[e.From], at[e.To] = append(at[e.From], h), append(at[e.To], h)
+	}
+	seen := map[int]bool{n.Ground: true}
+	var queue []int
+	visit := func(v int) {
+		if !seen[v] && len(at[v]) > 0 {
+			seen[v] = true
+			queue = append(queue, v)
+		}
+	}
+	for _, i := range p.Groups[group] {
+		e := &n.Elements[i]
+		e.terminals(visit)
+		e.probes(func(q Probe) {
+			if q.Quantity == NodePair {
+				visit(q.Plus)
+				visit(q.Minus)
+			}
+		})
+	}
+	var out []int
+	for len(queue) > 0 {
+		v := queue[0]
+		queue = queue[1:]
+		for _, h := range at[v] {
+			if !slices.Contains(out, h) {
+				out = append(out, h)
+			}
+			visit(n.Elements[h].From)
+			visit(n.Elements[h].To)
+		}
+	}
+	return out
 }
