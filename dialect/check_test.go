@@ -57,6 +57,7 @@ func TestFindings(t *testing.T) {
 		{"let x = out", "wrong-sort", "v[out]"},
 		{"let x = sqrt(1, 2)", "arguments", "sqrt(X)"},
 		{"let V = 3\nlet x = 5 A/V", "name-like-unit", ""},
+		{"tell 1 ms*H at 1 kHz", "name-like-unit", "* H"},
 		{"out -[resistor Rx = 0 Ω]- hull", "not-positive", "zero"},
 		{"out -[capacitor Cx = -1 nF]- hull", "not-positive", "negative"},
 		{"out -[resistor Rx = 5 mS]- hull", "unit-mismatch", "conductance"},

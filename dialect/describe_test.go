@@ -110,7 +110,7 @@ func TestDescribed(t *testing.T) {
 		{"tell energy(F1.Ra) to 1 ms", "energy(F1.Ra)"},
 		{"tell gain(H) - 3 dB", "(dB(gain(H))-3dB)"},
 		{"tell max(gain(H), 0.1, 2)", "max(gain(H),0.1,2)"},
-		{"tell s*1 ms*H + R1/(1 kΩ)", "(((s*0.001s)*H)+1)"},
+		{"tell s*1 ms * H + R1/(1 kΩ)", "(((s*0.001s)*H)+1)"},
 		{"function G = v[mid]/v[in]\ntell G", "G = (v[mid]/v<in>)"},
 		{"function G = v[mid]/v[in,hull]\ntell G", "G = (v[mid]/v[Vs])"},
 		{"function G = v[mid]/v[hull,in]\ntell G", "G = (v[mid]/-v[Vs])"},

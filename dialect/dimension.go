@@ -162,7 +162,8 @@ func namedUnitText(d Dimension) (string, bool) {
 				continue
 			}
 			seconds := int(d.Second - p.Second)
-			if cost := 2*max(seconds, -seconds) + max(power, -power); !best || cost < least {
+			cost := 2*max(seconds, -seconds) + max(power, 2-power)
+			if !best || cost < least {
 				best, least, factors = true, cost, []unitPower{{n.symbol, power}, {"s", seconds}}
 			}
 		}

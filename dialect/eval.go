@@ -171,14 +171,15 @@ func (e *evaluator) absoluteLevel(o *operand, unit *UnitInfo, u *UnitExpr) bool 
 	return true
 }
 
-// checkNameLikeUnit reports a chained unit symbol that is also a constant.
+// checkNameLikeUnit reports a chained unit symbol that is also a constant, a
+// function or a part with a value.
 func (e *evaluator) checkNameLikeUnit(x *NumberExpr) bool {
 	for i, f := range x.Unit.Factors {
 		if i == 0 || !f.Known {
 			continue
 		}
 		sym := e.inst.scope.visible(f.Symbol.Text)
-		if sym == nil || sym.Sort != LetSymbol && sym.Sort != ParameterSymbol {
+		if sym == nil || !sym.hasValue() {
 			continue
 		}
 		before := x.Unit.Factors[i-1].Span.End
@@ -196,6 +197,17 @@ func (e *evaluator) checkNameLikeUnit(x *NumberExpr) bool {
 		return false
 	}
 	return true
+}
+
+// hasValue says that the name can stand in an expression.
+func (s *Symbol) hasValue() bool {
+	switch s.Sort {
+	case LetSymbol, ParameterSymbol, FunctionSymbol:
+		return true
+	case PartSymbol:
+		return s.Kind == Resistor || s.Kind == Inductor || s.Kind == Capacitor
+	}
+	return false
 }
 
 // unary works out a sign. A minus before a number in dBV belongs to the level.

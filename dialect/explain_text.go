@@ -48,9 +48,9 @@ Rail -[inductor Ltrap = 1 mH]- rail
 	},
 	{
 		Code: "name-like-unit", Severity: Error,
-		Title:   "A unit that is also a constant",
-		Meaning: "A unit follows its number without spaces, and further units are joined to it by * and /: in 5 V/A the A is the ampere. Here that symbol is also a constant of the file, so the text could be read both ways.",
-		Mend:    "For the constant put spaces around the operator, 5 V / A; for the unit write it as a quantity of its own, 5 V/(1 A).",
+		Title:   "A unit that is also a name",
+		Meaning: "A unit follows its number without spaces, and further units are joined to it by * and /: in 5 V/A the A is the ampere. Here that symbol is also a name of the file that has a value (a constant, a function, a part), so the text could be read both ways.",
+		Mend:    "For the name put spaces around the operator, 5 V / A; for the unit write it as a quantity of its own, 5 V/(1 A).",
 		Example: `ground hull
 let A = 100
 voltage source Vcal = 5 V/A

@@ -7,7 +7,8 @@ import (
 
 // Nearest finds the candidate that a misspelt name probably meant: equal but
 // for case, or the one with the fewest changed, missing, added or swapped
-// characters, at most a third of the name. Of equally near ones the first wins.
+// characters, at most a third of the name; of one or two characters the first
+// must agree. Of equally near ones the first wins.
 func Nearest(name string, candidates []string) (string, bool) {
 	best, least := "", 1+max(1, utf8.RuneCountInString(name)/3)
 	for _, c := range candidates {
@@ -16,6 +17,9 @@ func Nearest(name string, candidates []string) (string, bool) {
 		}
 		if strings.EqualFold(c, name) {
 			return c, true
+		}
+		if len(name) <= 2 && c[0] != name[0] {
+			continue
 		}
 		if d := editDistance(name, c, least); d < least {
 			best, least = c, d

@@ -155,7 +155,7 @@ func TestWords(t *testing.T) {
 
 func TestNearest(t *testing.T) {
 	for name, want := range map[string]string{
-		"rial": "rail", "RAIL": "rail", "ral": "rail", "raill": "rail", "aril": "rail", "xyz": "", "r": "r1", "coll": "coil",
+		"rial": "rail", "RAIL": "rail", "ral": "rail", "raill": "rail", "aril": "rail", "xyz": "", "r": "r1", "r2": "r1", "c1": "", "coll": "coil",
 	} {
 		got, _ := Nearest(name, []string{"rail", "coil", "hull", "r1"})
 		if got != want {
