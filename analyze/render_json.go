@@ -2,6 +2,7 @@ package analyze
 
 import (
 	"bytes"
+	"context"
 	"encoding/json"
 	"math/big"
 
@@ -15,7 +16,15 @@ import (
 // there, in the order of its struct.
 
 // JSON gives the value whose encoding is the answer's JSON object.
-func JSON(answer Answer) any {
+func JSON(answer Answer) any { return viewOf(context.Background(), answer) }
+
+// JSONContext is JSON with a way to stop it; the error is the context's.
+func JSONContext(ctx context.Context, answer Answer) (any, error) {
+	v := viewOf(ctx, answer)
+	return v, ctx.Err()
+}
+
+func viewOf(ctx context.Context, answer Answer) any {
 	switch a := answer.(type) {
 	case *FunctionAnswer:
 		return functionJSON(a)
@@ -24,7 +33,7 @@ func JSON(answer Answer) any {
 	case *FactAnswer:
 		return factView{head(a.Question, "fact"), a.True, a.Why, a.Proved}
 	case *SignalAnswer:
-		return signalJSON(a)
+		return signalJSON(ctx, a)
 	case *SignalValueAnswer:
 		return signalValueJSON(a)
 	case *MeasureAnswer:
@@ -32,7 +41,7 @@ func JSON(answer Answer) any {
 	case *TableAnswer:
 		return tableJSON(a)
 	case *EquivalentAnswer:
-		return equivalentJSON(a)
+		return equivalentJSON(ctx, a)
 	case *RootsAnswer:
 		return rootsJSON(a)
 	case *MatrixAnswer:
@@ -46,8 +55,8 @@ func JSON(answer Answer) any {
 }
 
 // MarshalAnswers writes answers as one JSON array, an object to a line, with
-// the characters of units as they are.
-func MarshalAnswers(answers []Answer) ([]byte, error) {
+// the characters of units as they are. The error is the context's.
+func MarshalAnswers(ctx context.Context, answers []Answer) ([]byte, error) {
 	var b bytes.Buffer
 	b.WriteByte('[')
 	for i, a := range answers {
@@ -58,7 +67,11 @@ func MarshalAnswers(answers []Answer) ([]byte, error) {
 		var line bytes.Buffer
 		encoder := json.NewEncoder(&line)
 		encoder.SetEscapeHTML(false)
-		if err := encoder.Encode(JSON(a)); err != nil {
+		v, err := JSONContext(ctx, a)
+		if err != nil {
+			return nil, err
+		}
+		if err := encoder.Encode(v); err != nil {
 			return nil, err
 		}
 		b.Write(bytes.TrimRight(line.Bytes(), "\n"))
@@ -351,17 +364,17 @@ type equivalentView struct {
 	Why          string `json:"why,omitempty"`
 }
 
-func equivalentJSON(a *EquivalentAnswer) equivalentView {
+func equivalentJSON(ctx context.Context, a *EquivalentAnswer) equivalentView {
 	v := equivalentView{headView: head(a.Question, "equivalent")}
 	var whys []string
 	if a.Impedance != nil {
 		v.Impedance = functionJSON(a.Impedance)
 	}
 	if a.OpenCircuit != nil {
-		v.OpenCircuit = signalJSON(a.OpenCircuit)
+		v.OpenCircuit = signalJSON(ctx, a.OpenCircuit)
 	}
 	if a.ShortCircuit != nil {
-		v.ShortCircuit = signalJSON(a.ShortCircuit)
+		v.ShortCircuit = signalJSON(ctx, a.ShortCircuit)
 	}
 	for _, w := range []string{a.WhyImpedance, a.WhyOpenCircuit, a.WhyShortCircuit} {
 		if w != "" {

@@ -53,12 +53,11 @@ type signalView struct {
 // computed to; some are lost where terms are moved to a switching instant.
 const signalDigits = jsonDigits + 8
 
-func signalJSON(a *SignalAnswer) any {
+func signalJSON(ctx context.Context, a *SignalAnswer) any {
 	v := signalView{
 		headView: head(a.Question, "signal"), Unit: a.Dimension.Unit(),
 		ZeroInput: []termView{}, ZeroState: []termView{}, Impulses: []impulseView{}, Proved: true,
 	}
-	ctx := context.Background()
 	zi, err := a.Signal.ZeroInput().Pieces(ctx, signalDigits)
 	if err != nil {
 		return refusedView{head(a.Question, "refused"), "", "the closed form is out of reach: " + err.Error()}
@@ -71,7 +70,7 @@ func signalJSON(a *SignalAnswer) any {
 	if v.Impulses, err = impulseViews(ctx, a.Signal); err != nil {
 		return refusedView{head(a.Question, "refused"), "", "the impulses are out of reach: " + err.Error()}
 	}
-	v.Transform = transformOf(a.Signal)
+	v.Transform = transformsOf(a.Signal)
 	return v
 }
 
@@ -186,8 +185,8 @@ func weightText(list []response.ImpulseGroup, at *big.Rat, k int) string {
 	return decimal(g.Weights[k])
 }
 
-// transformOf gives the Laplace transforms where all of them are rational.
-func transformOf(s *response.Signal) *transformView {
+// transformsOf gives the Laplace transforms where all of them are rational.
+func transformsOf(s *response.Signal) *transformView {
 	var out transformView
 	for _, part := range []struct {
 		signal *response.Signal

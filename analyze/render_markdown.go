@@ -1,6 +1,7 @@
 package analyze
 
 import (
+	"context"
 	"strings"
 )
 
@@ -9,7 +10,15 @@ import (
 
 // Markdown tells an answer as Markdown: the question as a heading line, the
 // answer in bold, the detail as text, tables as tables.
-func Markdown(answer Answer) string {
+func Markdown(answer Answer) string { return markdown(context.Background(), answer) }
+
+// MarkdownContext is Markdown with a way to stop it; the error is the context's.
+func MarkdownContext(ctx context.Context, answer Answer) (string, error) {
+	text := markdown(ctx, answer)
+	return text, ctx.Err()
+}
+
+func markdown(ctx context.Context, answer Answer) string {
 	var b strings.Builder
 	b.WriteString("**" + escape(answer.Asked()) + "**\n\n")
 	switch a := answer.(type) {
@@ -25,7 +34,7 @@ func Markdown(answer Answer) string {
 		writeTable(&b, cells)
 		return b.String() + remarkText(a.Remarks)
 	}
-	lines, remarks := wordsOf(answer)
+	lines, remarks := wordsOf(ctx, answer)
 	for _, l := range lines {
 		l = strings.TrimRight(l, " ")
 		indented := strings.HasPrefix(l, "  ")

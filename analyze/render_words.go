@@ -1,6 +1,7 @@
 package analyze
 
 import (
+	"context"
 	"fmt"
 	"strings"
 
@@ -12,12 +13,20 @@ import (
 // first, figures of at most four digits.
 
 // Words tells an answer in lines of plain text: the answer, then its detail.
+// The closed form of a signal with hundreds of poles is found only now, which
+// takes its time; [WordsContext] can be stopped.
 func Words(answer Answer) []string {
-	lines, remarks := wordsOf(answer)
+	lines, remarks := wordsOf(context.Background(), answer)
 	return append(lines, remarks...)
 }
 
-func wordsOf(answer Answer) (lines, remarks []string) {
+// WordsContext is Words with a way to stop it; the error is the context's.
+func WordsContext(ctx context.Context, answer Answer) ([]string, error) {
+	lines, remarks := wordsOf(ctx, answer)
+	return append(lines, remarks...), ctx.Err()
+}
+
+func wordsOf(ctx context.Context, answer Answer) (lines, remarks []string) {
 	switch a := answer.(type) {
 	case *FunctionAnswer:
 		return functionWords(a), a.Remarks
@@ -26,7 +35,7 @@ func wordsOf(answer Answer) (lines, remarks []string) {
 	case *FactAnswer:
 		return factWords(a), a.Remarks
 	case *SignalAnswer:
-		return signalWords(a), a.Remarks
+		return signalWords(ctx, a), a.Remarks
 	case *SignalValueAnswer:
 		return signalValueWords(a), a.Remarks
 	case *MeasureAnswer:
@@ -34,7 +43,7 @@ func wordsOf(answer Answer) (lines, remarks []string) {
 	case *TableAnswer:
 		return tableWords(a), a.Remarks
 	case *EquivalentAnswer:
-		return equivalentWords(a), a.Remarks
+		return equivalentWords(ctx, a), a.Remarks
 	case *RootsAnswer:
 		return rootsWords(a), a.Remarks
 	case *MatrixAnswer:
@@ -48,7 +57,7 @@ func wordsOf(answer Answer) (lines, remarks []string) {
 }
 
 // inFloat is what is said of figures that are not proved.
-const inFloat = "computed in double precision, without a proof of its digits"
+const inFloat = "computed in double precision: its digits rest on an error estimate, not on a proof"
 
 func unproved(lines []string, proved bool) []string {
 	if !proved {
@@ -267,7 +276,7 @@ func alignColumns(rows [][]string) []string {
 	return lines
 }
 
-func equivalentWords(a *EquivalentAnswer) []string {
+func equivalentWords(ctx context.Context, a *EquivalentAnswer) []string {
 	var lines []string
 	tell := func(title string, there bool, words func() []string, why string) {
 		if !there {
@@ -286,10 +295,10 @@ func equivalentWords(a *EquivalentAnswer) []string {
 		tell("impedance", a.Impedance != nil, func() []string { return functionWords(a.Impedance) }, a.WhyImpedance)
 	}
 	voltage := func() {
-		tell("open-circuit voltage", a.OpenCircuit != nil, func() []string { return signalWords(a.OpenCircuit) }, a.WhyOpenCircuit)
+		tell("open-circuit voltage", a.OpenCircuit != nil, func() []string { return signalWords(ctx, a.OpenCircuit) }, a.WhyOpenCircuit)
 	}
 	current := func() {
-		tell("short-circuit current", a.ShortCircuit != nil, func() []string { return signalWords(a.ShortCircuit) }, a.WhyShortCircuit)
+		tell("short-circuit current", a.ShortCircuit != nil, func() []string { return signalWords(ctx, a.ShortCircuit) }, a.WhyShortCircuit)
 	}
 	if a.Norton {
 		current()

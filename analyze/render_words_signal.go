@@ -15,8 +15,7 @@ import (
 const termLimit = 6
 
 // signalWords tells a signal in closed form, split by its causes.
-func signalWords(a *SignalAnswer) []string {
-	ctx := context.Background()
+func signalWords(ctx context.Context, a *SignalAnswer) []string {
 	s := a.Signal
 	if s.IsZero() {
 		return []string{"zero at all times"}

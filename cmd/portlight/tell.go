@@ -35,14 +35,13 @@ func tell(ctx context.Context, std streams, path string, questions []string, for
 		return err
 	}
 	p := startProgress(std.err)
+	defer p.stop()
 	p.at("reading %s", src.shown(name))
 	analysis, _, err := src.analysis(name)
 	if err != nil {
-		p.stop()
 		return err
 	}
 	answers, err := ask(ctx, analysis, questions, p)
-	p.stop()
 	if err != nil {
 		return err
 	}
@@ -52,7 +51,8 @@ func tell(ctx context.Context, std streams, path string, questions []string, for
 	if len(answers) == 0 {
 		fmt.Fprintf(std.err, "portlight: %s asks nothing; write tell lines in it, or questions after its name\n", src.shown(name))
 	}
-	if err := writeAnswers(std.out, answers, form); err != nil {
+	p.at("writing the answers")
+	if err := writeAnswers(ctx, std.out, answers, form); err != nil {
 		return err
 	}
 	for _, a := range answers {
@@ -110,10 +110,10 @@ func warnAboutFaults(ctx context.Context, to io.Writer, src *sources, name strin
 }
 
 // writeAnswers writes answers in the form asked for.
-func writeAnswers(to io.Writer, answers []analyze.Answer, form string) error {
+func writeAnswers(ctx context.Context, to io.Writer, answers []analyze.Answer, form string) error {
 	switch form {
 	case "json":
-		data, err := analyze.MarshalAnswers(answers)
+		data, err := analyze.MarshalAnswers(ctx, answers)
 		if err != nil {
 			return err
 		}
@@ -122,7 +122,11 @@ func writeAnswers(to io.Writer, answers []analyze.Answer, form string) error {
 	case "markdown":
 		var parts []string
 		for _, a := range answers {
-			parts = append(parts, analyze.Markdown(a))
+			text, err := analyze.MarkdownContext(ctx, a)
+			if err != nil {
+				return err
+			}
+			parts = append(parts, text)
 		}
 		_, err := io.WriteString(to, strings.Join(parts, "\n"))
 		return err
@@ -132,7 +136,11 @@ func writeAnswers(to io.Writer, answers []analyze.Answer, form string) error {
 			fmt.Fprintln(to)
 		}
 		fmt.Fprintln(to, clean(a.Asked()))
-		for _, l := range analyze.Words(a) {
+		lines, err := analyze.WordsContext(ctx, a)
+		if err != nil {
+			return err
+		}
+		for _, l := range lines {
 			fmt.Fprintln(to, "    "+clean(l))
 		}
 	}
