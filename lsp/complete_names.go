@@ -29,14 +29,15 @@ func (c *completer) offer(h *dialect.Hole) {
 		c.boxes()
 	case dialect.WantValue:
 		c.values(h.Kind)
-		c.expressions(h)
+		c.expressions()
 	case dialect.WantTolerance:
 		c.tolerances()
 	case dialect.WantOption:
 		c.words(h.Words, "option")
 	case dialect.WantExpression:
-		c.expressions(h)
+		c.expressions()
 	case dialect.WantUnit:
+		c.preferred(h.Kind)
 		c.units(h.Words)
 	case dialect.WantQuestion:
 		c.questions()
@@ -88,7 +89,11 @@ var itemKinds = map[dialect.SymbolSort]protocol.CompletionItemKind{
 // symbol offers a name.
 func (c *completer) symbol(s *dialect.Symbol, rank int) {
 	if s.Name == "" || s.File == c.file && s.Span.Start == c.context.Replace.Start && len(s.References) < 2 {
-		return // the name being typed itself
+		return // the name being typed
+	}
+	if st := c.context.Statement; st != nil && s.Statement != nil && s.File == c.file && s.Sort != dialect.NodeSymbol &&
+		s.Statement.Extent().Start == st.Extent().Start {
+		return // what this very statement defines
 	}
 	detail := s.Sort.String()
 	if s.Sort == dialect.PartSymbol {

@@ -2,6 +2,7 @@ package lsp
 
 import (
 	"fmt"
+	"slices"
 	"strings"
 	"unicode"
 
@@ -35,11 +36,7 @@ var prefixNames = map[string]string{"p": "pico", "n": "nano", "µ": "micro", "m"
 func (c *completer) units(wanted []string) {
 	list := wanted
 	if len(list) == 0 {
-		if e, ok := c.checked.ExpectedAt(c.file, c.offset); ok && usualUnits[e.Dimension.Unit()] != nil {
-			list = []string{e.Dimension.Unit()}
-		} else {
-			list = append(append([]string{}, allUnits...), "dB", "%", "ppm")
-		}
+		list = c.unitsHere()
 	}
 	for _, base := range list {
 		sizes := usualUnits[base]
@@ -59,7 +56,26 @@ func (c *completer) oneUnit(symbol, base string) {
 	})
 }
 
+// unitsHere are the units that the text around asks for, all of them where it
+// does not say.
+func (c *completer) unitsHere() []string {
+	before := strings.Fields(c.file.Text[c.file.Lines.Span(c.file.Lines.Line(c.offset)).Start:c.context.Replace.Start])
+	if n := len(before); n >= 2 && slices.Contains([]string{"at", "from", "to", "before"}, before[n-2]) {
+		return []string{"Hz", "s", "rad/s"}
+	}
+	if e, ok := c.checked.ExpectedAt(c.file, c.offset); ok && usualUnits[e.Dimension.Unit()] != nil {
+		return []string{e.Dimension.Unit()}
+	}
+	return append(append([]string{}, allUnits...), "dB", "%", "ppm")
+}
+
 func unitName(symbol, base string) string {
+	switch symbol { // the two whose vowels merge
+	case "kΩ":
+		return "kilohm"
+	case "MΩ":
+		return "megohm"
+	}
 	return prefixNames[strings.TrimSuffix(symbol, base)] + unitNames[base]
 }
 
@@ -92,26 +108,49 @@ func (c *completer) values(kind dialect.Kind) {
 	}
 }
 
-// preferred offers values of the preferred series that continue what is
+// preferred offers values of the preferred series that continue the digits
 // typed: "4" gives 4.7 and 47, in the units usual for the kind.
 func (c *completer) preferred(kind dialect.Kind) {
-	digits := strings.TrimRightFunc(c.context.Typed, func(r rune) bool { return !unicode.IsDigit(r) })
-	if at := c.context.Replace.Start; at > 0 && c.file.Text[at-1] == '.' {
-		return // inside a decimal fraction: what is typed is kept
+	text := c.file.Text
+	start := c.context.Replace.Start
+	for start > 0 && (text[start-1] == '.' || text[start-1] >= '0' && text[start-1] <= '9') {
+		start--
 	}
-	series := c.seriesValues(kind)
+	typed := text[start:c.context.Replace.Start]
+	switch {
+	case start > 0 && (text[start-1] == '_' || text[start-1] >= 'A'), c.context.Typed != "":
+		return // the digits end a name, or a unit is being typed
+	case typed == "" && strings.HasSuffix(strings.TrimRight(text[:start], " "), strings.TrimSpace(c.numberBefore(start))):
+		return // a number stands there already
+	}
 	for rank, u := range decades[kind] {
-		for _, m := range series {
+		for _, m := range c.seriesValues(kind) {
 			for _, value := range []string{m, moved(m, 1), moved(m, 2)} {
-				if digits == "" && value != m {
+				if typed == "" && value != m || !strings.HasPrefix(value, typed) || value == typed {
 					continue
 				}
-				if strings.HasPrefix(strings.ReplaceAll(value, ".", ""), digits) {
-					c.add(item{label: value + " " + u, kind: protocol.CompletionItemKindValue, detail: "preferred value", rank: 3 + rank})
+				i := item{label: value + " " + u, kind: protocol.CompletionItemKindValue, detail: "preferred value", rank: 1 + rank}
+				if typed != "" {
+					i.from, i.rank = start, 3+rank
 				}
+				c.add(i)
 			}
 		}
 	}
+}
+
+// numberBefore is the number that stands before an offset, past spaces; a word
+// that cannot be one where there is none.
+func (c *completer) numberBefore(offset int) string {
+	text := strings.TrimRight(c.file.Text[:offset], " ")
+	start := len(text)
+	for start > 0 && (text[start-1] == '.' || text[start-1] >= '0' && text[start-1] <= '9') {
+		start--
+	}
+	if start == len(text) {
+		return "no number"
+	}
+	return text[start:]
 }
 
 // moved multiplies a decimal by a power of ten, as digits.

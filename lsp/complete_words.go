@@ -111,6 +111,12 @@ func (c *completer) nodes() {
 
 // marks offers the marks of the grammar that are worth a line in a list.
 func (c *completer) marks(marks []string) {
+	if text := c.file.Text[:c.context.Replace.Start]; slices.Contains(marks, "-[") {
+		line := strings.TrimSpace(text[c.file.Lines.Span(c.file.Lines.Line(c.offset)).Start:])
+		if s := c.checked.Lookup(c.file, c.offset, line); s == nil || s.Sort != dialect.NodeSymbol {
+			return // the word is the beginning of another statement
+		}
+	}
 	for _, m := range marks {
 		if m == "-[" || m == "||" {
 			c.add(item{label: m, kind: protocol.CompletionItemKindOperator, detail: map[string]string{"-[": "a box in series", "||": "in parallel"}[m], rank: 4, again: true})
@@ -132,7 +138,10 @@ func (c *completer) qualifiers(words []string) {
 		"with": "with ${1:S1} ${2|open,closed|}", "without": "without ${1:C1}",
 	}
 	if len(words) == 0 {
-		words = []string{"at", "before", "from", "to", "with", "without", "nominal"}
+		words = []string{"at", "before", "from", "to", "with", "without"}
+		if _, limit := c.context.Statement.(*dialect.RequireStatement); limit {
+			words = append(words, "nominal")
+		}
 	}
 	for _, w := range words {
 		i := item{label: w, kind: protocol.CompletionItemKindKeyword, detail: "qualifier", doc: wordDocs[w], rank: 1}
@@ -162,44 +171,110 @@ func (c *completer) questions() {
 	}
 	c.words([]string{"poles", "initial"}, "question")
 	c.names(0, dialect.FunctionSymbol)
-	c.calls()
-	c.quantities()
+	c.calls(nil)
+	c.quantities("vipzy")
 }
 
-// quantities offers the letters of quantities.
-func (c *completer) quantities() {
-	for _, q := range []struct{ letter, what string }{
-		{"v", "voltage"}, {"i", "current"}, {"p", "power absorbed"}, {"z", "impedance"}, {"y", "admittance"},
-	} {
+// quantities offers letters of quantities.
+func (c *completer) quantities(letters string) {
+	what := map[rune]string{'v': "voltage", 'i': "current", 'p': "power absorbed", 'z': "impedance", 'y': "admittance"}
+	for _, letter := range letters {
 		c.add(item{
-			label: q.letter + "[", kind: protocol.CompletionItemKindOperator, detail: q.what,
-			snippet: q.letter + "[$1]", insert: q.letter + "[", rank: 1, again: true,
+			label: string(letter) + "[", kind: protocol.CompletionItemKindOperator, detail: what[letter],
+			snippet: string(letter) + "[$1]", rank: 2, again: true,
 		})
 	}
 }
 
-// calls offers the functions and measures.
-func (c *completer) calls() {
+// mathematics are the functions that take numbers, waveformCalls those that
+// make waveforms; the others are measures.
+var (
+	mathematics   = []string{"sqrt", "exp", "log", "sin", "cos", "abs", "min", "max", "dB"}
+	waveformCalls = []string{"u", "delta"}
+)
+
+// calls offers functions and measures, all but waveforms where none are named.
+func (c *completer) calls(names []string) {
 	for _, s := range dialect.Signatures() {
+		if names != nil && !slices.Contains(names, s.Name) || names == nil && slices.Contains(waveformCalls, s.Name) {
+			continue
+		}
 		places := make([]string, 0, len(s.Parameters))
 		for i, p := range s.Parameters[:len(s.Parameters)-s.Optional] {
 			places = append(places, "${"+itoa(i+1)+":"+p+"}")
 		}
 		c.add(item{
 			label: s.Name, kind: protocol.CompletionItemKindFunction, detail: signatureLabel(s), doc: s.Definition,
-			snippet: s.Name + "(" + strings.Join(places, ", ") + ")", insert: s.Name + "(", rank: 2,
+			snippet: s.Name + "(" + strings.Join(places, ", ") + ")", insert: s.Name + "(", rank: 3,
 		})
 	}
 }
 
-// expressions offers what an expression can begin with.
-func (c *completer) expressions(h *dialect.Hole) {
-	c.names(0, dialect.LetSymbol, dialect.ParameterSymbol, dialect.FunctionSymbol)
-	c.names(1, dialect.PartSymbol)
-	c.quantities()
-	c.calls()
-	for _, w := range []string{"pi", "s", "t"} {
-		c.add(item{label: w, kind: protocol.CompletionItemKindConstant, doc: wordDocs[w], rank: 3})
+// expressions offers what an expression can begin with, as far as the
+// statement allows it.
+func (c *completer) expressions() {
+	c.names(1, dialect.LetSymbol, dialect.ParameterSymbol)
+	switch st := c.context.Statement.(type) {
+	case *dialect.LetStatement:
+		c.valued(4)
+		c.calls(mathematics)
+	case *dialect.PartStatement:
+		c.valued(4)
+		c.calls(mathematics)
+		switch st.Kind {
+		case dialect.VoltageSource, dialect.CurrentSource:
+			c.calls(waveformCalls)
+			c.constants("pi", "t")
+			c.quantities("vi")
+			return
+		case dialect.Impedance, dialect.Admittance:
+			c.constants("s")
+		}
+	case *dialect.FunctionStatement:
+		c.names(0, dialect.FunctionSymbol)
+		c.quantities("vizy")
+		c.sources()
+		c.constants("s")
+	case *dialect.TellStatement:
+		c.asked()
+		if q, ok := st.What.(*dialect.RootsQuestion); !ok || q == nil {
+			c.quantities("vipzy")
+		}
+	default:
+		c.asked()
+		c.quantities("vipzy")
+	}
+	c.constants("pi")
+}
+
+// asked offers what questions and limits ask about.
+func (c *completer) asked() {
+	c.names(0, dialect.FunctionSymbol)
+	c.calls(nil)
+	c.valued(4)
+}
+
+// valued offers the parts whose names stand for their nominal values.
+func (c *completer) valued(rank int) {
+	for _, s := range c.checked.Visible(c.file, c.offset) {
+		if s.Sort == dialect.PartSymbol && (s.Kind == dialect.Resistor || s.Kind == dialect.Inductor || s.Kind == dialect.Capacitor) {
+			c.symbol(s, rank)
+		}
+	}
+}
+
+// sources offers the independent sources, which excite network functions.
+func (c *completer) sources() {
+	for _, s := range c.checked.Visible(c.file, c.offset) {
+		if s.Sort == dialect.PartSymbol && (s.Kind == dialect.VoltageSource || s.Kind == dialect.CurrentSource) {
+			c.symbol(s, 0)
+		}
+	}
+}
+
+func (c *completer) constants(names ...string) {
+	for _, w := range names {
+		c.add(item{label: w, kind: protocol.CompletionItemKindConstant, doc: wordDocs[w], rank: 5})
 	}
 }
 
@@ -216,6 +291,8 @@ func (c *completer) matrixSets() {
 // codes offers the codes of findings.
 func (c *completer) codes() {
 	for _, e := range dialect.Explanations() {
-		c.add(item{label: string(e.Code), kind: protocol.CompletionItemKindEnumMember, doc: e.Meaning})
+		if e.Severity != dialect.Error {
+			c.add(item{label: string(e.Code), kind: protocol.CompletionItemKindEnumMember, detail: e.Title, doc: e.Meaning})
+		}
 	}
 }

@@ -23,11 +23,29 @@ func completion(_ context.Context, r *request, p *protocol.CompletionParams) (pr
 	if err != nil {
 		return nil, err
 	}
-	c := &completer{request: r, place: at, context: dialect.Expected(at.file, at.offset), seen: map[string]bool{}}
+	c := &completer{request: r, place: at, context: contextAt(at.file, at.offset), seen: map[string]bool{}}
 	for _, hole := range c.context.Fits {
 		c.offer(hole)
 	}
 	return c.list(), nil
+}
+
+// contextAt is what the grammar wants at an offset. The code of a finding is
+// one word there, hyphens included.
+func contextAt(file *dialect.File, offset int) dialect.Context {
+	context := dialect.Expected(file, offset)
+	start := context.Replace.Start
+	for start > 0 && (file.Text[start-1] == '-' || file.Text[start-1] >= 'a' && file.Text[start-1] <= 'z') {
+		start--
+	}
+	if start < context.Replace.Start && file.Text[context.Replace.Start-1] == '-' {
+		if code := dialect.Expected(file, start); code.Wants(dialect.WantCode) != nil {
+			code.Replace = dialect.Span{Start: start, End: context.Replace.End}
+			code.Typed = file.Text[start:offset]
+			return code
+		}
+	}
+	return context
 }
 
 // completer gathers what fits at a place.
@@ -51,6 +69,7 @@ type item struct {
 	filter  string // what typing is compared with, "" for the label
 	rank    int    // smaller first
 	again   bool   // open the list again after it is taken
+	from    int    // where the replaced text starts if before the word, else 0
 	symbol  *dialect.Symbol
 }
 
@@ -105,7 +124,11 @@ func (c *completer) add(i item) {
 // setText makes the edit: the whole word is replaced, or where the client
 // lets its user choose, the part before the pointer.
 func (c *completer) setText(out *protocol.CompletionItem, i item, text string) {
-	replace := c.mapper.reach(c.file.Lines, c.context.Replace)
+	word := c.context.Replace
+	if i.from > 0 {
+		word.Start = i.from
+	}
+	replace := c.mapper.reach(c.file.Lines, word)
 	if c.client.insertReplace {
 		insert := replace
 		insert.End = c.mapper.position(c.file.Lines, c.offset)

@@ -20,9 +20,7 @@ func hover(ctx context.Context, r *request, p *protocol.HoverParams) (*protocol.
 	if err != nil {
 		return nil, err
 	}
-	ctx, done := at.unit.with(ctx)
-	defer done()
-	card, span, ok, err := at.analysis.Card(ctx, at.file, at.offset)
+	card, span, ok, err := r.cardAt(ctx, at)
 	if err != nil {
 		return nil, err
 	}
@@ -101,7 +99,7 @@ func (p *place) finding() (string, dialect.Span) {
 	for _, f := range found {
 		if f.Origin.File == p.file && f.Origin.Span.Start <= p.offset && p.offset <= f.Origin.Span.End {
 			if e, ok := dialect.Explain(f.Code); ok {
-				return string(f.Code) + ": " + e.Meaning, f.Origin.Span
+				return string(f.Code) + ": " + e.Meaning + "\n" + e.Mend, f.Origin.Span
 			}
 		}
 	}

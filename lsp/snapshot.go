@@ -44,9 +44,14 @@ func (s *session) change(edit func(next *snapshot) (changed []string)) {
 	for name, u := range next.units {
 		switch {
 		case before.units[name] != u:
+			if old := before.units[name]; old != nil {
+				u.before = old.latest()
+			}
 			started = append(started, u)
 		case u.dependsOn(changed):
+			old := u
 			u = u.again()
+			u.before = old.latest()
 			next.units[name] = u
 			started = append(started, u)
 		}

@@ -31,12 +31,24 @@ type unit struct {
 	cancel context.CancelCauseFunc
 
 	once     sync.Once
+	busy     atomic.Bool // a card of a large network is being worked out
 	settled  atomic.Bool // checking is over, so view.Names is complete
 	checked  *dialect.Checked
 	analysis *analyze.Analysis
 	problem  error                             // the file cannot be read
 	found    atomic.Pointer[[]dialect.Finding] // all findings, once they are known
 
+	// before is the analysis of the version that this one took the place of:
+	// what it knows of the network serves again where that is the same.
+	before *analyze.Analysis
+}
+
+// latest is the analysis that the next version may take over from.
+func (u *unit) latest() *analyze.Analysis {
+	if u.settled.Load() {
+		return u.analysis
+	}
+	return u.before
 }
 
 // newUnit makes the unit of a document that is open, or of a file on disk
@@ -77,13 +89,15 @@ func (u *unit) file() (*dialect.File, error) {
 func (u *unit) check() (*dialect.Checked, *analyze.Analysis) {
 	u.once.Do(func() {
 		defer u.settled.Store(true)
+		before := u.before
+		u.before = nil
 		file, err := u.file()
 		if err != nil {
 			u.problem = err
 			return
 		}
 		u.checked = dialect.Check(file, u.view.Reader())
-		u.analysis = analyze.New(u.checked)
+		u.analysis = analyze.NewAfter(u.checked, before)
 	})
 	return u.checked, u.analysis
 }
