@@ -173,6 +173,8 @@ func TestFindings(t *testing.T) {
 		{"subnetwork Cell (a, b) with W = 1 Ω {\n  a -[resistor R = W]- b\n}\npart F1 = Cell with W = 2 V, a at out, b at hull", "unit-mismatch", ""},
 		{"subnetwork Cell (a, b, c) {\n  a -[resistor R = 1 Ω]- b -[resistor Q = 1 Ω]- c\n}\nout -[part F1 = Cell]- hull", "not-two-terminal", "3 terminals"},
 		{"subnetwork Cell (a, b) {\n  a -[resistor R = R1]- b\n}\npart F1 = Cell, a at out, b at hull", "unknown-name", "not seen inside"},
+		{"subnetwork Cell (a, b) with W = 1 Ω {\n  a -[resistor R = W]- b\n}\npart F1 = Cell with W = 2 Ω, W = 3 Ω, a at out, b at hull", "given-twice", "W"},
+		{"subnetwork Cell (a, b) {\n  a -[inductor La = 1 mH]- b\n  a -[inductor Lb = 1 mH]- b\n  coupling K = 2, between La Lb\n}", "coupling-range", ""},
 		{"tell v[F1.x]", "unknown-name", ""},
 		{"tell v[R1.x]", "wrong-sort", "nothing inside"},
 	}

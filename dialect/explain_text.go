@@ -202,8 +202,8 @@ out -[resistor Rload = 1 kΩ]- hull
 	{
 		Code: "given-twice", Severity: Error,
 		Title:   "Said twice",
-		Meaning: "How the network starts, and the series that a kind of part prefers, are said once in a file.",
-		Mend:    "Remove one of the two lines.",
+		Meaning: "How the network starts, and the series that a kind of part prefers, are said once in a file; a parameter is given once in a use.",
+		Mend:    "Remove one of the two.",
 		Example: `ground hull
 start steady
 start rest

@@ -106,6 +106,7 @@ func (c *checker) checkBodies(u *unit) {
 		inst := b.newInstance(s, nil, nil, "")
 		b.structure(inst)
 		b.values()
+		b.couplings()
 		b.statements(inst)
 	}
 }

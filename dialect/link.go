@@ -261,8 +261,15 @@ func (c *checker) linkUse(s *scope, st *UsePartStatement) {
 	if use != nil {
 		use.Of = sub
 	}
-	for _, a := range st.Arguments {
+	for i, a := range st.Arguments {
 		c.linkExpr(s, a.Value, 0)
+		for _, earlier := range st.Arguments[:i] {
+			if earlier.Name.Text == a.Name.Text && a.Name.Present() {
+				f := c.report(s.unit.file, a.Span, "given-twice", "the parameter %s is given already", a.Name.Text)
+				f.relate(s.unit.file, earlier.Span, "here")
+				break
+			}
+		}
 		if sub != nil {
 			c.linkInside(s, sub.body.names, a.Name, sub, "parameter", ParameterSymbol)
 		}

@@ -256,6 +256,39 @@ func (c *Checked) Indices(s *Symbol) []int {
 	return found
 }
 
+// Values lists what a constant, parameter or function stands for: one entry
+// per use of the subnetwork it is in, without those that an error left without
+// a value. A constant of a used file has its one value too.
+func (c *Checked) Values(s *Symbol) []Expression {
+	in := inLet
+	switch s.Sort {
+	case FunctionSymbol:
+		in = inFunction
+	case LetSymbol, ParameterSymbol:
+	default:
+		return nil
+	}
+	c.questions.Lock() // questions work out constants in further settings
+	defer c.questions.Unlock()
+	var values []Expression
+	add := func(inst *instance) {
+		if inst != nil && inst.scope == s.scope {
+			if o, ok := inst.memo[s.index].known(in); ok && o.ok {
+				values = append(values, o.finish())
+			}
+		}
+	}
+	for _, inst := range c.builder.instances {
+		add(inst)
+	}
+	for _, u := range c.units {
+		if !u.main {
+			add(u.static)
+		}
+	}
+	return values
+}
+
 // FileLink is a use statement with the file it names.
 type FileLink struct {
 	Span Span   // the quoted path

@@ -129,6 +129,19 @@ func TestSymbols(t *testing.T) {
 	if s := find(c.Main, "Stage with", 1); s.Doc() != "A stage with feedback." {
 		t.Errorf("the documentation of Stage is %q", s.Doc())
 	}
+	for _, x := range []struct {
+		file *File
+		text string
+		want string
+	}{{cells, "Rdefault", "0.01Ω"}, {cells, "ESR", "0.01Ω 0.02Ω"}, {stages, "ratio", "100"}, {c.Main, "H = ", "(v[a]/v[Vh])"}} {
+		var got []string
+		for _, v := range c.Values(find(x.file, x.text, 1)) {
+			got = append(got, c.expressionText(v))
+		}
+		if strings.Join(got, " ") != x.want {
+			t.Errorf("%s stands for %v, want %s", x.text, got, x.want)
+		}
+	}
 	if s := find(cells, "Cap =", 1); !slices.Equal(c.names(s), []string{"P1.Load.Cap", "C1.Cap"}) {
 		t.Errorf("Cap stands for %v", c.names(s))
 	}
