@@ -45,13 +45,13 @@ func (s *session) change(edit func(next *snapshot) (changed []string)) {
 		switch {
 		case before.units[name] != u:
 			if old := before.units[name]; old != nil {
-				u.before = old.latest()
+				u.before.Store(old.latest())
 			}
 			started = append(started, u)
 		case u.dependsOn(changed):
 			old := u
 			u = u.again()
-			u.before = old.latest()
+			u.before.Store(old.latest())
 			next.units[name] = u
 			started = append(started, u)
 		}

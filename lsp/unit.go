@@ -40,7 +40,7 @@ type unit struct {
 
 	// before is the analysis of the version that this one took the place of:
 	// what it knows of the network serves again where that is the same.
-	before *analyze.Analysis
+	before atomic.Pointer[analyze.Analysis]
 }
 
 // latest is the analysis that the next version may take over from.
@@ -48,7 +48,7 @@ func (u *unit) latest() *analyze.Analysis {
 	if u.settled.Load() {
 		return u.analysis
 	}
-	return u.before
+	return u.before.Load()
 }
 
 // newUnit makes the unit of a document that is open, or of a file on disk
@@ -88,9 +88,11 @@ func (u *unit) file() (*dialect.File, error) {
 // check checks the document. The result is nil only when it cannot be read.
 func (u *unit) check() (*dialect.Checked, *analyze.Analysis) {
 	u.once.Do(func() {
-		defer u.settled.Store(true)
-		before := u.before
-		u.before = nil
+		before := u.before.Load()
+		defer func() {
+			u.settled.Store(true)
+			u.before.Store(nil) // lest every version keeps all before it
+		}()
 		file, err := u.file()
 		if err != nil {
 			u.problem = err
