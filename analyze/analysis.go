@@ -1,6 +1,8 @@
 package analyze
 
 import (
+	"sync"
+
 	"portlight/dialect"
 )
 
@@ -9,8 +11,11 @@ import (
 type Analysis struct {
 	checked     *dialect.Checked
 	description *dialect.Description
-	models      models
-	memo        memo
+	memo        memo // what depends on places in the text
+
+	previous *Analysis // until shared is first used
+	sharing  sync.Once
+	common   *arithmetic
 }
 
 // New prepares the analysis of a checked file; nothing is computed yet.

@@ -212,7 +212,7 @@ func abs(n int) int {
 // middleFrequency is the geometric mean of the natural frequencies, in Hz to
 // one digit; 1 kHz for a network without any.
 func (a *Analysis) middleFrequency(ctx context.Context) float64 {
-	f, err := recall(ctx, &a.memo, "middle", func(ctx context.Context) (float64, error) {
+	f, err := recall(ctx, &a.shared().memo, "middle", func(ctx context.Context) (float64, error) {
 		blocks, err := a.determinants(ctx, configuration{})
 		if err != nil {
 			return 0, err

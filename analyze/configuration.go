@@ -109,16 +109,16 @@ type onceModel struct {
 // model returns the equations of a configuration, made at most once.
 func (a *Analysis) model(_ context.Context, c configuration) *model {
 	key := c.key()
-	a.models.mu.Lock()
-	if a.models.made == nil {
-		a.models.made = map[string]*onceModel{}
+	a.shared().models.mu.Lock()
+	if a.shared().models.made == nil {
+		a.shared().models.made = map[string]*onceModel{}
 	}
-	o := a.models.made[key]
+	o := a.shared().models.made[key]
 	if o == nil {
 		o = &onceModel{}
-		a.models.made[key] = o
+		a.shared().models.made[key] = o
 	}
-	a.models.mu.Unlock()
+	a.shared().models.mu.Unlock()
 	o.once.Do(func() {
 		net := a.build(c, nil)
 		system, problems := network.Assemble(net)

@@ -68,7 +68,7 @@ func (a *Analysis) form(ctx context.Context, e dialect.Expression, c configurati
 // namedFunction evaluates a function statement once per configuration.
 func (a *Analysis) namedFunction(ctx context.Context, index int, c configuration) (form, error) {
 	key := fmt.Sprintf("function %d %s", index, c.key())
-	return recall(ctx, &a.memo, key, func(ctx context.Context) (form, error) {
+	return recall(ctx, &a.shared().memo, key, func(ctx context.Context) (form, error) {
 		return a.function(ctx, a.description.Functions[index].Value, c)
 	})
 }

@@ -53,7 +53,7 @@ func (a *Analysis) impedance(ctx context.Context, p dialect.Probe, c configurati
 		return form{}, err
 	}
 	key := fmt.Sprintf("z %d,%d %s", at.plus, at.minus, at.configuration.key())
-	f, err := recall(ctx, &a.memo, key, func(ctx context.Context) (form, error) { return a.impedanceAt(ctx, at) })
+	f, err := recall(ctx, &a.shared().memo, key, func(ctx context.Context) (form, error) { return a.impedanceAt(ctx, at) })
 	if err != nil {
 		return f, err
 	}
@@ -94,7 +94,7 @@ func (a *Analysis) admittance(ctx context.Context, p dialect.Probe, c configurat
 		return form{}, refuse("no-admittance", at.what+": the two nodes are one, so the admittance is infinite")
 	}
 	key := fmt.Sprintf("y %d,%d %s", at.plus, at.minus, at.configuration.key())
-	return recall(ctx, &a.memo, key, func(ctx context.Context) (form, error) { return a.admittanceAt(ctx, at) })
+	return recall(ctx, &a.shared().memo, key, func(ctx context.Context) (form, error) { return a.admittanceAt(ctx, at) })
 }
 
 func (a *Analysis) admittanceAt(ctx context.Context, at pair) (form, error) {

@@ -35,7 +35,7 @@ func (e *largeError) Unwrap() error { return errLarge }
 
 // large tells whether a configuration is too large for exact polynomials.
 func (a *Analysis) large(ctx context.Context, c configuration) bool {
-	large, err := recall(ctx, &a.memo, "large "+c.key(), func(ctx context.Context) (bool, error) {
+	large, err := recall(ctx, &a.shared().memo, "large "+c.key(), func(ctx context.Context) (bool, error) {
 		m := a.model(ctx, c)
 		return m.system != nil && a.largeSystem(ctx, m.system), nil
 	})
@@ -70,7 +70,7 @@ func (a *Analysis) largeSystem(ctx context.Context, sys *network.System) bool {
 
 // solver prepares a configuration for double precision, once.
 func (a *Analysis) solver(ctx context.Context, c configuration, sys *network.System) (*float.Solver, error) {
-	return recall(ctx, &a.memo, "solver "+c.key(), func(context.Context) (*float.Solver, error) {
+	return recall(ctx, &a.shared().memo, "solver "+c.key(), func(context.Context) (*float.Solver, error) {
 		return float.New(sys)
 	})
 }

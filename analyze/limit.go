@@ -15,10 +15,14 @@ func (a *Analysis) Verdicts(ctx context.Context) ([]Verdict, error) {
 	return recall(ctx, &a.memo, "verdicts", func(ctx context.Context) ([]Verdict, error) {
 		out := make([]Verdict, 0, len(a.description.Limits))
 		for i := range a.description.Limits {
-			v, err := a.verdict(ctx, &a.description.Limits[i])
+			l := &a.description.Limits[i]
+			v, err := recall(ctx, &a.shared().memo, limitKey(l), func(ctx context.Context) (Verdict, error) {
+				return a.verdict(ctx, l)
+			})
 			if err != nil {
 				return nil, err
 			}
+			v.Limit = l
 			out = append(out, v)
 		}
 		return out, nil

@@ -21,7 +21,7 @@ type past struct {
 // initialState finds the state at 0−: rest with what initially says, or the
 // steady state of what has acted for ever.
 func (a *Analysis) initialState(ctx context.Context, c configuration) (past, error) {
-	return recall(ctx, &a.memo, "state "+c.key(), func(ctx context.Context) (past, error) {
+	return recall(ctx, &a.shared().memo, "state "+c.key(), func(ctx context.Context) (past, error) {
 		if !a.description.Steady {
 			return a.restState(), nil
 		}
@@ -79,7 +79,7 @@ func (a *Analysis) steadyState(ctx context.Context, c configuration) (past, erro
 
 // solution prepares the responses in time of a configuration.
 func (a *Analysis) solution(ctx context.Context, c configuration) (*response.Solution, error) {
-	return recall(ctx, &a.memo, "solution "+c.key(), func(ctx context.Context) (*response.Solution, error) {
+	return recall(ctx, &a.shared().memo, "solution "+c.key(), func(ctx context.Context) (*response.Solution, error) {
 		state, err := a.initialState(ctx, c)
 		if err != nil {
 			return nil, err
@@ -160,7 +160,7 @@ func waveOf(w *dialect.Waveform) response.Wave {
 
 // probeSignal is an elementary quantity as a signal in time.
 func (a *Analysis) probeSignal(ctx context.Context, p dialect.Probe, c configuration) (*response.Signal, error) {
-	return recall(ctx, &a.memo, "signal "+probeKey(p)+c.key(), func(ctx context.Context) (*response.Signal, error) {
+	return recall(ctx, &a.shared().memo, "signal "+probeKey(p)+c.key(), func(ctx context.Context) (*response.Signal, error) {
 		s, err := a.solution(ctx, c)
 		if err != nil {
 			return nil, err

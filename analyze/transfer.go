@@ -101,7 +101,7 @@ func (a *Analysis) ratio(ctx context.Context, c configuration, sys *network.Syst
 // transfer is the network function from an excitation to a quantity.
 func (a *Analysis) transfer(ctx context.Context, p dialect.Probe, by excitation) (form, error) {
 	key := fmt.Sprintf("transfer %v %v %s", probeKey(p), by, by.configuration.key())
-	return recall(ctx, &a.memo, key, func(ctx context.Context) (form, error) {
+	return recall(ctx, &a.shared().memo, key, func(ctx context.Context) (form, error) {
 		sys, err := a.system(ctx, by.configuration)
 		if err != nil {
 			return form{}, err
