@@ -6,6 +6,7 @@ import (
 	"fmt"
 	"math"
 	"math/cmplx"
+	"slices"
 
 	"portlight/analyze/exact"
 	"portlight/analyze/response"
@@ -34,8 +35,83 @@ var ErrNoPicture = errors.New("this answer is no curve; a picture needs a functi
 // curvePoints is how many points of a curve are computed for a picture.
 const curvePoints = 480
 
-// PictureOf computes the curves of an answer, in double precision.
+// window is the range that a picture shows: Hz or s, 0 for an end that the
+// picture chooses.
+type window struct{ low, high float64 }
+
+// PictureOf computes the curves of an answer, in double precision, over a
+// range that shows what is characteristic.
 func PictureOf(ctx context.Context, answer Answer) (*Picture, error) {
+	return pictureWithin(ctx, answer, window{})
+}
+
+// Picture answers a question put as text and computes its curves. A question
+// over a range is drawn from the function or signal itself, finer than the
+// table that answers it. The answer is what the question gets, also when the
+// error says that it has no picture.
+func (a *Analysis) Picture(ctx context.Context, text string) (*Picture, Answer, error) {
+	answer, err := a.Ask(ctx, text)
+	if err != nil {
+		return nil, nil, err
+	}
+	if _, isTable := answer.(*TableAnswer); isTable {
+		if q, _ := a.checked.Question(text); q != nil {
+			if p := a.withinRange(ctx, q); p != nil {
+				p.Title = text
+				return p, answer, nil
+			}
+		}
+	}
+	p, err := PictureOf(ctx, answer)
+	return p, answer, err
+}
+
+// withinRange draws a question over a range; nil where the question without
+// its range is no function and no signal.
+func (a *Analysis) withinRange(ctx context.Context, q *dialect.Question) *Picture {
+	whole := *q
+	var w window
+	overTime := false
+	for _, end := range []struct {
+		from *dialect.Constant
+		to   *float64
+	}{{q.Qualifiers.From, &w.low}, {q.Qualifiers.To, &w.high}} {
+		if end.from == nil {
+			continue
+		}
+		*end.to = end.from.Value.Float()
+		if end.from.Dimension.Frequency {
+			*end.to /= 2 * math.Pi
+		} else {
+			overTime = true
+		}
+	}
+	whole.Qualifiers.From, whole.Qualifiers.To = nil, nil
+	whole.Text = "all of " + q.Text // answers are kept by their question's text
+	answer, err := a.Answer(ctx, &whole)
+	if err != nil {
+		return nil
+	}
+	switch answer.(type) {
+	case *FunctionAnswer:
+		if overTime || w.low <= 0 {
+			return nil
+		}
+	case *SignalAnswer:
+		if !overTime {
+			return nil
+		}
+	default:
+		return nil
+	}
+	p, err := pictureWithin(ctx, answer, w)
+	if err != nil {
+		return nil
+	}
+	return p
+}
+
+func pictureWithin(ctx context.Context, answer Answer, w window) (*Picture, error) {
 	p := &Picture{Title: answer.Asked()}
 	switch a := answer.(type) {
 	case *FunctionAnswer:
@@ -43,11 +119,17 @@ func PictureOf(ctx context.Context, answer Answer) (*Picture, error) {
 			return nil, fmt.Errorf("%w: this function does not depend on frequency", ErrNoPicture)
 		}
 		low, high := frequencyWindow(a)
+		if w.low > 0 {
+			low, high = w.low, max(high, 10*w.low)
+		}
+		if w.high > 0 {
+			high = w.high
+		}
 		p.Panels = functionCurves(a, low, high)
 	case *TableAnswer:
 		p.Panels = tableCurves(a)
 	case *SignalAnswer:
-		curve, err := signalCurve(ctx, a)
+		curve, err := signalCurve(ctx, a, w)
 		if err != nil {
 			return nil, err
 		}
@@ -179,6 +261,7 @@ func tableCurves(a *TableAnswer) []PlotCurve {
 			}
 		}
 		if last >= 0 && panels[last].YLabel == yUnit && !overFrequency {
+			panels[last].Title = a.Asked()
 			panels[last].Y, panels[last].Names = append(panels[last].Y, y), append(panels[last].Names, columnTitle(c))
 			continue
 		}
@@ -190,12 +273,16 @@ func tableCurves(a *TableAnswer) []PlotCurve {
 	return panels
 }
 
-// signalCurve samples a signal from 0 until it has settled, its zero-input
-// and zero-state parts beside it where both are there.
-func signalCurve(ctx context.Context, a *SignalAnswer) (PlotCurve, error) {
-	end, err := timeWindow(ctx, a.Signal)
-	if err != nil {
-		return PlotCurve{}, err
+// signalCurve samples a signal, over a window or from 0 until it has settled,
+// its zero-input and zero-state parts beside it where both are there.
+func signalCurve(ctx context.Context, a *SignalAnswer, w window) (PlotCurve, error) {
+	end := w.high
+	if end <= w.low {
+		settled, err := timeWindow(ctx, a.Signal)
+		if err != nil {
+			return PlotCurve{}, err
+		}
+		end = w.low + settled
 	}
 	curve := PlotCurve{Title: a.Asked(), XLabel: "s", YLabel: a.Dimension.Unit()}
 	parts := []struct {
@@ -211,9 +298,7 @@ func signalCurve(ctx context.Context, a *SignalAnswer) (PlotCurve, error) {
 			signal *response.Signal
 		}{"zero-state part", zs})
 	}
-	for i := range curvePoints {
-		curve.X = append(curve.X, end*float64(i)/(curvePoints-1))
-	}
+	curve.X = instants(a.Signal, w.low, end)
 	for _, p := range parts {
 		sampler, err := p.signal.Sampler(ctx)
 		if err != nil {
@@ -223,6 +308,24 @@ func signalCurve(ctx context.Context, a *SignalAnswer) (PlotCurve, error) {
 		curve.Y, curve.Names = append(curve.Y, y), append(curve.Names, p.name)
 	}
 	return curve, nil
+}
+
+// instants are evenly spaced, with both sides of every instant where the
+// signal may jump.
+func instants(s *response.Signal, low, high float64) []float64 {
+	var x []float64
+	for i := range curvePoints {
+		x = append(x, low+(high-low)*float64(i)/(curvePoints-1))
+	}
+	for _, b := range s.Breakpoints() {
+		at, _ := b.Float64()
+		before := at - (high-low)*1e-9
+		if at > low && at < high && before > low {
+			x = append(x, before, at)
+		}
+	}
+	slices.Sort(x)
+	return x
 }
 
 // timeWindow is how long a signal is drawn: beyond the last instant where

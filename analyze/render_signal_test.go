@@ -107,3 +107,31 @@ func TestMarkdownIsPlain(t *testing.T) {
 		t.Errorf("got %q, want %q", got, want)
 	}
 }
+
+// TestPictureOverRange checks that a question over a range is drawn from the
+// signal, finer than its table, and that the curve jumps where the signal does.
+func TestPictureOverRange(t *testing.T) {
+	a := analysisOf("switched.plight", switched)
+	p, answer, err := a.Picture(t.Context(), "v[a] from 0.5 ms to 1.5 ms")
+	if err != nil {
+		t.Fatal(err)
+	}
+	if _, ok := answer.(*analyze.TableAnswer); !ok {
+		t.Errorf("the answer is a %T", answer)
+	}
+	x, y := p.Panels[0].X, p.Panels[0].Y[0]
+	if len(x) < 400 || x[0] != 0.5e-3 || math.Abs(x[len(x)-1]-1.5e-3) > 1e-15 {
+		t.Fatalf("%d points from %g to %g", len(x), x[0], x[len(x)-1])
+	}
+	steepest := 0.0
+	for i := 1; i < len(x); i++ {
+		if x[i]-x[i-1] < 1e-9 {
+			steepest = math.Max(steepest, math.Abs(y[i]-y[i-1]))
+		}
+	}
+	// Closing Sa at 1 ms joins a, behind 10 Ω ∥ 220 Ω from 24 V, to b.
+	before, after := 24.0*220/230, y[len(y)-1]
+	if steepest < 0.1 || !(after < before) {
+		t.Errorf("the largest jump is %g V", steepest)
+	}
+}

@@ -64,10 +64,7 @@ func picture(ctx context.Context, std streams, path, question, output string, si
 		return err
 	}
 	p.at("answering %s", question)
-	answer, err := analysis.Ask(ctx, question)
-	if err != nil {
-		return err
-	}
+	drawing, answer, err := analysis.Picture(ctx, question)
 	if refused, ok := answer.(*analyze.RefusedAnswer); ok {
 		if err := warnAboutFaults(ctx, std.err, src, name, analysis); err != nil {
 			return err
@@ -75,11 +72,10 @@ func picture(ctx context.Context, std streams, path, question, output string, si
 		fmt.Fprintln(std.err, "portlight: no answer: "+refused.Why)
 		return status(exitFaults)
 	}
-	p.at("drawing %s", output)
-	drawing, err := analyze.PictureOf(ctx, answer)
 	if err != nil {
 		return err
 	}
+	p.at("drawing %s", output)
 	draw := drawing.SVG
 	if form == ".png" {
 		draw = drawing.PNG
