@@ -21,6 +21,14 @@ func (b *builder) nominal(inst *instance, sym *Symbol, span Span, asker *evaluat
 	return m.keep(inConstant, o)
 }
 
+// kindWhat says what the value of a kind is.
+var kindWhat = func() (words [Wire + 1]string) {
+	for k := range words {
+		words[k] = "the value of " + article(Kind(k).String())
+	}
+	return words
+}()
+
 // kindDimension is the dimension of a kind's value.
 func kindDimension(k Kind) Dimension {
 	switch k {
@@ -42,13 +50,18 @@ func kindDimension(k Kind) Dimension {
 
 func (b *builder) evaluateNominal(inst *instance, sym *Symbol) operand {
 	st := sym.Statement.(*PartStatement)
-	what := "the value of " + sym.Kind.String() + " " + sym.Name
 	switch v := st.Value.(type) {
 	case *CodeValue:
 		return b.codeValue(inst, v, kindDimension(sym.Kind))
 	case Expr:
-		e := &evaluator{b: b, inst: inst, in: inConstant, what: what}
+		e := &evaluator{b: b, inst: inst, in: inConstant, what: kindWhat[sym.Kind]}
 		o := e.eval(v, 0)
+		if o.ok && o.constant && o.dim == kindDimension(sym.Kind) {
+			if sign, decided := o.value.Sign(); decided && sign > 0 {
+				return o
+			}
+		}
+		what := "the value of " + sym.Kind.String() + " " + sym.Name
 		if !o.ok || !e.fits(v, &o, kindDimension(sym.Kind), what) || !e.mustBeConstant(v, &o) || !e.positive(v, &o, what) {
 			return operand{}
 		}
@@ -104,11 +117,10 @@ func (b *builder) partValue(inst *instance, sym *Symbol) {
 	if st.Broken {
 		b.c.fault()
 	}
-	what := "the value of " + sym.Kind.String() + " " + sym.Name
 	switch sym.Kind {
 	case Resistor, Inductor, Capacitor:
 		if st.Value != nil {
-			b.expect(inst, st.Value.Extent(), kindDimension(sym.Kind), what)
+			b.expect(inst, st.Value.Extent(), kindDimension(sym.Kind), kindWhat[sym.Kind])
 		}
 		if o := b.nominal(inst, sym, sym.Span, nil); o.ok {
 			p.Value = o.value
@@ -117,9 +129,9 @@ func (b *builder) partValue(inst *instance, sym *Symbol) {
 			b.c.fault()
 		}
 	case Impedance, Admittance:
-		b.rationalValue(inst, p, st, what)
+		b.rationalValue(inst, p, st, "the value of "+sym.Kind.String()+" "+sym.Name)
 	case VoltageSource, CurrentSource:
-		b.sourceValue(inst, p, st, what)
+		b.sourceValue(inst, p, st, "the value of "+sym.Kind.String()+" "+sym.Name)
 	case OpAmp:
 		b.opAmpValue(inst, p, st)
 	case Transformer:
