@@ -84,6 +84,19 @@ func (c *client) chooseEncoding(g *protocol.GeneralClientCapabilities) {
 	}
 }
 
+// countIn takes the encoding that a user's initialization option names, for
+// an editor that counts columns so without offering it; "auto" changes nothing.
+func (c *client) countIn(name string) {
+	switch name {
+	case "utf-8":
+		c.encoding, c.kind = dialect.UTF8, protocol.PositionEncodingKindUTF8
+	case "utf-16":
+		c.encoding, c.kind = dialect.UTF16, protocol.PositionEncodingKindUTF16
+	case "utf-32":
+		c.encoding, c.kind = dialect.CodePoints, protocol.PositionEncodingKindUTF32
+	}
+}
+
 func (c *client) readWorkspace(w *protocol.WorkspaceClientCapabilities) {
 	c.applyEdit = yes(w.ApplyEdit)
 	c.configuration = yes(w.Configuration)

@@ -15,11 +15,12 @@ import (
 // initialize handles the first request of a session.
 func initialize(_ context.Context, r *request, p *protocol.InitializeParams) (*protocol.InitializeResult, error) {
 	s := r.session
+	chosen, problems := readSettings(p.InitializationOptions)
 	s.client = newClient(p)
+	s.client.countIn(chosen.positions)
 	s.mapper = mapper{encoding: s.client.encoding}
 	s.phase.Store(int32(inService))
 	roots := s.rootsOf(p)
-	chosen, problems := readSettings(p.InitializationOptions)
 	s.startWatching(roots)
 	s.change(func(next *snapshot) []string {
 		next.roots, next.settings = roots, chosen

@@ -16,6 +16,7 @@ type settings struct {
 	answers, verdicts, constants, directions bool // inlay text
 	lens                                     bool
 	pictures                                 string // auto, always, never
+	positions                                string // auto, utf-8, utf-16, utf-32
 }
 
 // setting is one key: its documentation, and how it is taken in.
@@ -32,11 +33,12 @@ var settingTable = []setting{
 	{"inlay.directions", "true", "show which way the current or voltage of a part counts where it is asked for", switchable(func(s *settings) *bool { return &s.directions })},
 	{"lens", "true", "show a line of facts above ports, functions and limits", switchable(func(s *settings) *bool { return &s.lens })},
 	{"hover.pictures", "auto", "images in hovers: auto sends them to editors known to show them, always, never", choice(func(s *settings) *string { return &s.pictures }, "auto", "always", "never")},
+	{"positions", "auto", "what a column counts: auto agrees on it with the editor; utf-8, utf-16 or utf-32 is for one that counts so without offering it, and is read from the initialization options alone", choice(func(s *settings) *string { return &s.positions }, "auto", "utf-8", "utf-16", "utf-32")},
 	{"command", "portlight", "the program that an editor's extension starts; the server itself does not read it", func(*settings, json.RawMessage) error { return nil }},
 }
 
 func defaultSettings() settings {
-	return settings{answers: true, verdicts: true, constants: true, directions: true, lens: true, pictures: "auto"}
+	return settings{answers: true, verdicts: true, constants: true, directions: true, lens: true, pictures: "auto", positions: "auto"}
 }
 
 func switchable(field func(*settings) *bool) func(*settings, json.RawMessage) error {

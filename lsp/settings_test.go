@@ -1,6 +1,9 @@
 package lsp
 
 import (
+	"encoding/json"
+	"fmt"
+	"os"
 	"strings"
 	"testing"
 
@@ -12,6 +15,8 @@ func TestSettings(t *testing.T) {
 	off.answers = false
 	never := defaultSettings()
 	never.pictures = "never"
+	bytes := defaultSettings()
+	bytes.positions = "utf-8"
 	for _, c := range []struct {
 		raw     string
 		want    settings
@@ -22,6 +27,7 @@ func TestSettings(t *testing.T) {
 		{`{"inlay.answers":false}`, off, ""},
 		{`{"portlight":{"inlay":{"answers":false}},"other":{"x":1}}`, off, ""},
 		{`{"hover":{"pictures":"never"}}`, never, ""},
+		{`{"positions":"utf-8"}`, bytes, ""},
 		{`{"inlay":{"answerz":false}}`, defaultSettings(), "portlight.inlay.answerz is not a setting. Did you mean portlight.inlay.answers?"},
 		{`{"qqqqqqqqqq":1}`, defaultSettings(), "portlight.qqqqqqqqqq is not a setting."},
 		{`{"inlay":{"answers":"no"}}`, defaultSettings(), `portlight.inlay.answers must be true or false, not "no".`},
@@ -58,4 +64,59 @@ func TestWrongSettingsReachTheUser(t *testing.T) {
 	e.notify(protocol.MethodInitialized, struct{}{})
 	e.wait("the message", func() bool { return len(e.messages) == 1 && strings.Contains(e.messages[0], "portlight.y ") })
 	e.quit()
+}
+
+// TestPositionsByOption counts columns as an initialization option says, for
+// an editor that offers nothing.
+func TestPositionsByOption(t *testing.T) {
+	for option, want := range map[string]protocol.PositionEncodingKind{
+		"utf-8": "utf-8", "utf-16": "utf-16", "utf-32": "utf-32", "auto": "utf-16",
+	} {
+		e := rawEditor(t)
+		e.call(protocol.MethodInitialize, map[string]any{
+			"processId": nil, "rootUri": nil, "capabilities": struct{}{}, "initializationOptions": map[string]any{"positions": option},
+		}, &e.result)
+		if got := e.result.Capabilities.PositionEncoding; got != want {
+			t.Errorf("%s: positions are counted in %s, want %s", option, got, want)
+		}
+		e.quit()
+	}
+}
+
+// TestExtensionSettings holds the settings that the VS Code extension
+// declares against those that the server reads.
+func TestExtensionSettings(t *testing.T) {
+	raw, err := os.ReadFile("../editors/vscode/package.json")
+	if err != nil {
+		t.Fatal(err)
+	}
+	var manifest struct {
+		Contributes struct {
+			Configuration struct {
+				Properties map[string]struct {
+					Default any `json:"default"`
+				} `json:"properties"`
+			} `json:"configuration"`
+		} `json:"contributes"`
+	}
+	if err := json.Unmarshal(raw, &manifest); err != nil {
+		t.Fatal(err)
+	}
+	declared := manifest.Contributes.Configuration.Properties
+	for _, s := range settingTable {
+		property, ok := declared["portlight."+s.key]
+		if s.key == "positions" { // VS Code says how it counts
+			if ok {
+				t.Error("the extension declares portlight.positions")
+			}
+			continue
+		}
+		if !ok || fmt.Sprint(property.Default) != s.fallback {
+			t.Errorf("portlight.%s: the extension's default is %v, the server's %s", s.key, property.Default, s.fallback)
+		}
+		delete(declared, "portlight."+s.key)
+	}
+	for key := range declared {
+		t.Errorf("the extension declares %s, which the server does not read", key)
+	}
 }
