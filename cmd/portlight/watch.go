@@ -4,6 +4,7 @@ import (
 	"context"
 	"fmt"
 	"path/filepath"
+	"slices"
 	"time"
 
 	"github.com/spf13/cobra"
@@ -46,7 +47,7 @@ func watch(ctx context.Context, std streams, paths []string) error {
 		if err != nil {
 			return nil // interrupted, which is how watching ends
 		}
-		if !waitForChange(ctx, src, changes, watched) {
+		if !waitForChange(ctx, src, changes, watched, paths) {
 			return nil
 		}
 		fmt.Fprintf(std.out, "── changed, %s\n", time.Now().Format("15:04:05"))
@@ -97,15 +98,16 @@ func checkWatched(ctx context.Context, std streams, src *sources, watcher *files
 
 // waitForChange waits until a file that counts changes, or a new one appears
 // under the paths; false when interrupted.
-func waitForChange(ctx context.Context, src *sources, changes <-chan []string, watched map[string]bool) bool {
+func waitForChange(ctx context.Context, src *sources, changes <-chan []string, watched map[string]bool, paths []string) bool {
 	for {
 		select {
 		case <-ctx.Done():
 			return false
 		case names := <-changes:
 			src.store.Forget(names...)
+			now, _ := files.Collect(paths...)
 			for _, n := range names {
-				if watched[n] || files.IsNetwork(n) {
+				if watched[n] || slices.Contains(now, n) {
 					return true
 				}
 			}
