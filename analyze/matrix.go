@@ -2,7 +2,6 @@ package analyze
 
 import (
 	"context"
-	"errors"
 	"fmt"
 	"math/big"
 
@@ -87,11 +86,10 @@ func (a *Analysis) drivenTwoPort(ctx context.Context, ports [2]int, kinds [2]net
 	if a.large(ctx, c) {
 		return twoPort{}, errLarge
 	}
-	h, err := sys.Responses(ctx, outs, cols)
-	var singular *exact.SingularError
-	if errors.As(err, &singular) {
-		return twoPort{}, a.refuseSingular(ctx, sys)
+	if err := a.solvable(ctx, sys); err != nil {
+		return twoPort{}, err
 	}
+	h, err := sys.Responses(ctx, outs, cols)
 	if err != nil {
 		return twoPort{}, err
 	}

@@ -2,7 +2,6 @@ package analyze
 
 import (
 	"context"
-	"errors"
 	"fmt"
 
 	"portlight/analyze/exact"
@@ -85,11 +84,12 @@ func (a *Analysis) ratio(ctx context.Context, c configuration, sys *network.Syst
 	if a.large(ctx, c) {
 		return form{}, &largeError{c, sys, out, col}
 	}
-	h, err := sys.Responses(ctx, []network.Output{out}, []network.Column{col})
-	var singular *exact.SingularError
-	if errors.As(err, &singular) {
-		return form{}, a.refuseSingular(ctx, sys)
+	// A function of one piece of a network that is undetermined elsewhere would
+	// be right only by chance: what is undetermined counts as not excited there.
+	if err := a.solvable(ctx, sys); err != nil {
+		return form{}, err
 	}
+	h, err := sys.Responses(ctx, []network.Output{out}, []network.Column{col})
 	if err != nil {
 		return form{}, err
 	}
