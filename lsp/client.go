@@ -160,7 +160,7 @@ func (c *client) readNavigation(t *protocol.TextDocumentClientCapabilities) {
 	c.links.declaration = t.Declaration != nil && yes(t.Declaration.LinkSupport)
 	c.links.typeDefinition = t.TypeDefinition != nil && yes(t.TypeDefinition.LinkSupport)
 	if a := t.CodeAction; a != nil {
-		c.actionLiterals = len(a.CodeActionLiteralSupport.CodeActionKind.ValueSet) > 0
+		c.actionLiterals = a.CodeActionLiteralSupport.CodeActionKind.ValueSet != nil // ALE sends an empty set
 		c.resolveAction = yes(a.DataSupport) && slices.Contains(a.ResolveSupport.Properties, "edit")
 		c.disabledActions = yes(a.DisabledSupport)
 		c.preferredActions = yes(a.IsPreferredSupport)

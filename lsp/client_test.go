@@ -30,8 +30,9 @@ type editor struct {
 	mu       sync.Mutex
 	news     *sync.Cond
 	shown    map[uri.URI][]protocol.PublishDiagnosticsParams
-	messages []string // window/showMessage
-	calls    []string // methods of the server's requests
+	messages []string         // window/showMessage
+	progress map[string][]any // $/progress values, by token
+	calls    []string         // methods of the server's requests
 	answer   map[string]func(params rawMessage) any
 	result   protocol.InitializeResult
 	versions map[string]int32
@@ -109,6 +110,16 @@ func (e *editor) handle(_ context.Context, req *jsonrpc2.Request) (any, error) {
 			return nil, err
 		}
 		e.shown[p.URI] = append(e.shown[p.URI], p)
+	case protocol.MethodProgress:
+		var p struct {
+			Token string
+			Value any
+		}
+		_ = json.Unmarshal(req.Params(), &p)
+		if e.progress == nil {
+			e.progress = map[string][]any{}
+		}
+		e.progress[p.Token] = append(e.progress[p.Token], p.Value)
 	case protocol.MethodWindowShowMessage:
 		var p protocol.ShowMessageParams
 		_ = protocol.Unmarshal(req.Params(), &p)
