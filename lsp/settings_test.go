@@ -120,3 +120,21 @@ func TestExtensionSettings(t *testing.T) {
 		t.Errorf("the extension declares %s, which the server does not read", key)
 	}
 }
+
+// TestActionLiteralsWithoutKinds takes an empty set of kinds for what it
+// means: code actions are known, no kind in particular.
+func TestActionLiteralsWithoutKinds(t *testing.T) {
+	for capabilities, want := range map[string]bool{
+		`{}`: false,
+		`{"textDocument":{"codeAction":{}}}`: false,
+		`{"textDocument":{"codeAction":{"codeActionLiteralSupport":{"codeActionKind":{"valueSet":[]}}}}}`: true,
+	} {
+		p := &protocol.InitializeParams{}
+		if err := protocol.Unmarshal([]byte(`{"processId":null,"rootUri":null,"capabilities":`+capabilities+`}`), p); err != nil {
+			t.Fatal(err)
+		}
+		if got := newClient(p).actionLiterals; got != want {
+			t.Errorf("%s: literals %v, want %v", capabilities, got, want)
+		}
+	}
+}
