@@ -125,7 +125,7 @@ func TestExtensionSettings(t *testing.T) {
 // means: code actions are known, no kind in particular.
 func TestActionLiteralsWithoutKinds(t *testing.T) {
 	for capabilities, want := range map[string]bool{
-		`{}`: false,
+		`{}`:                                 false,
 		`{"textDocument":{"codeAction":{}}}`: false,
 		`{"textDocument":{"codeAction":{"codeActionLiteralSupport":{"codeActionKind":{"valueSet":[]}}}}}`: true,
 	} {
