@@ -14,13 +14,13 @@ func (q *query) condition(ctx context.Context) (float64, error) {
 	if n == 0 {
 		return 1, nil
 	}
-	norm := 0.0
+	norm, scale := 0.0, q.factor.scaling()
 	for j := range n {
 		sum := 0.0
 		for k := q.m.start[j]; k < q.m.start[j+1]; k++ {
-			sum += modulus(q.a[k]) * q.factor.scale.row[q.m.row[k]]
+			sum += modulus(q.a[k]) * math.Abs(scale.row[q.m.row[k]])
 		}
-		norm = max(norm, sum*q.factor.scale.col[j])
+		norm = max(norm, sum*scale.col[j])
 	}
 	inverse, err := q.inverseNorm(ctx)
 	return norm * inverse, err
@@ -29,16 +29,16 @@ func (q *query) condition(ctx context.Context) (float64, error) {
 // inverseNorm estimates ‖Â⁻¹‖₁.
 func (q *query) inverseNorm(ctx context.Context) (float64, error) {
 	n := q.m.n
-	scale := q.factor.scale
+	scale := q.factor.scaling()
 	x := make([]complex128, n)
 	apply := func() float64 { // x := Â⁻¹·x
 		for i := range x {
-			x[i] /= complex(scale.row[i], 0)
+			x[i] = shrunk(x[i], scale.row[i])
 		}
 		q.factor.solve(x, q.y)
 		sum := 0.0
 		for i := range x {
-			x[i] /= complex(scale.col[i], 0)
+			x[i] = shrunk(x[i], scale.col[i])
 			sum += modulus(x[i])
 		}
 		return sum
@@ -59,12 +59,12 @@ func (q *query) inverseNorm(ctx context.Context) (float64, error) {
 			} else {
 				x[i] = 1
 			}
-			x[i] /= complex(scale.col[i], 0)
+			x[i] = shrunk(x[i], scale.col[i])
 		}
 		q.factor.solveTransposed(x, q.y)
 		at, largest := 0, -1.0
 		for i, v := range x {
-			if size := modulus(v) / scale.row[i]; size > largest {
+			if size := modulus(v) / math.Abs(scale.row[i]); size > largest {
 				at, largest = i, size
 			}
 		}
@@ -91,5 +91,8 @@ func (q *query) inverseNorm(ctx context.Context) (float64, error) {
 	}
 	return max(estimate, 2*apply()/(3*float64(n))), nil
 }
+
+// shrunk returns z/d.
+func shrunk(z complex128, d float64) complex128 { return complex(real(z)/d, imag(z)/d) }
 
 func modulus(z complex128) float64 { return math.Hypot(real(z), imag(z)) }

@@ -34,7 +34,7 @@ const threshold = 0.01
 
 // luPreorder chooses the order of columns and the preferred pivot of each.
 func (m *matrix) luPreorder(ctx context.Context, scaled []complex128) (cols, preferred []int32, err error) {
-	preferred, err = m.match(ctx, scaled)
+	preferred, err = m.match(ctx, scaled, threshold)
 	if err != nil {
 		return nil, nil, err
 	}
@@ -297,6 +297,15 @@ func (p *luPattern) refactorise(ctx context.Context, a []complex128, f *luFactor
 	}
 	return nil
 }
+
+// factor makes room for values.
+func (p *luPattern) factor() *luFactor {
+	return &luFactor{p, make([]complex128, len(p.lindex)), make([]complex128, len(p.uindex)), make([]complex128, p.m.n)}
+}
+
+func (f *luFactor) scaling() scaling { return f.scale }
+
+func (f *luFactor) method() string { return "LU" }
 
 // solve overwrites b, by rows of the matrix, with the solution by columns; y
 // is scratch.

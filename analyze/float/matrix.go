@@ -87,3 +87,9 @@ func (m *matrix) transposed() (start, col, at []int32) {
 // norm1 is a cheap absolute value of a complex number: |re| + |im| is at most
 // √2 times and at least once the modulus.
 func norm1(z complex128) float64 { return math.Abs(real(z)) + math.Abs(imag(z)) }
+
+// ErrMemory tells that the factors of a network would take too much memory.
+var ErrMemory = errors.New("the network is too large: its factors would take more than 1 GB")
+
+// maxEntries is how many complex entries factors may have.
+const maxEntries = 1 << 26

@@ -44,8 +44,8 @@ type quotient struct {
 	pivots       []int32
 	dense        []int32 // taken last
 
-	head, after, before []int32 // lists of variables by degree
-	lowest              int32   // no variable has a smaller degree
+	head, tail, after, before []int32 // lists of variables by degree
+	lowest                    int32   // no variable has a smaller degree
 
 	mark  []int32 // of elements: stamp + |Le \ Lp|
 	stamp int32
@@ -80,8 +80,9 @@ func newQuotient(start, index, weight []int32) *quotient {
 		q.total += q.weight[v]
 	}
 	q.head = make([]int32, q.total+1)
+	q.tail = make([]int32, q.total+1)
 	for d := range q.head {
-		q.head[d] = -1
+		q.head[d], q.tail[d] = -1, -1
 	}
 	q.setAside(start)
 	for v := range int32(n) {
@@ -117,12 +118,14 @@ func (q *quotient) setAside(start []int32) {
 // insert files variable v by its degree.
 func (q *quotient) insert(v int32) {
 	d := q.degree[v]
-	h := q.head[d]
-	q.after[v], q.before[v] = h, -1
-	if h >= 0 {
-		q.before[h] = v
+	t := q.tail[d]
+	q.after[v], q.before[v] = -1, t
+	if t >= 0 {
+		q.after[t] = v
+	} else {
+		q.head[d] = v
 	}
-	q.head[d] = v
+	q.tail[d] = v
 	q.lowest = min(q.lowest, d)
 }
 
@@ -131,6 +134,8 @@ func (q *quotient) remove(v int32) {
 	a, b := q.after[v], q.before[v]
 	if a >= 0 {
 		q.before[a] = b
+	} else {
+		q.tail[q.degree[v]] = b
 	}
 	if b >= 0 {
 		q.after[b] = a

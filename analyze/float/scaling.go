@@ -64,9 +64,10 @@ func (s scaling) apply(m *matrix, a []complex128) {
 // match gives every column a row with an entry there, no row twice: large
 // entries first, then whatever is left by augmenting paths (I. S. Duff, On
 // algorithms for obtaining a maximum transversal, ACM Trans. Math. Softw. 7
-// (1981)). The entry on the diagonal is preferred. It returns the row of each
+// (1981)). The entry on the diagonal is kept where it is larger
+// than keep. It returns the row of each
 // column, or nil if there is no such choice. The values are scaled.
-func (m *matrix) match(ctx context.Context, a []complex128) ([]int32, error) {
+func (m *matrix) match(ctx context.Context, a []complex128, keep float64) ([]int32, error) {
 	rowOf, colOf := make([]int32, m.n), make([]int32, m.n)
 	for i := range m.n {
 		rowOf[i], colOf[i] = -1, -1
@@ -74,7 +75,7 @@ func (m *matrix) match(ctx context.Context, a []complex128) ([]int32, error) {
 	const large = 0.1
 	for j := range m.n {
 		for k := m.start[j]; k < m.start[j+1]; k++ {
-			if int(m.row[k]) == j && norm1(a[k]) > large {
+			if int(m.row[k]) == j && norm1(a[k]) > keep {
 				rowOf[j], colOf[j] = int32(j), int32(j)
 			}
 		}

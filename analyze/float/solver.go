@@ -19,10 +19,12 @@ var ErrSingular = errors.New("the equations are singular at this frequency in do
 // for concurrent use. What depends on the structure alone is found once and
 // used for every frequency.
 type Solver struct {
-	m *matrix
+	m           *matrix
+	multipliers []float64 // of rows that make the matrix symmetric, or nil
 
 	mu      sync.Mutex
-	pattern *luPattern // of the last fresh factorisation
+	plan    *symmetricPlan // the last that served
+	pattern *luPattern     // the last that served
 	spare   []*workspace
 }
 
@@ -48,7 +50,7 @@ func New(sys *network.System) (*Solver, error) {
 	if err != nil {
 		return nil, err
 	}
-	return &Solver{m: m}, nil
+	return &Solver{m: m, multipliers: m.symmetrise()}, nil
 }
 
 // At returns what the outputs show at the angular frequency omega (rad/s, 0
@@ -75,7 +77,9 @@ func (s *Solver) AtRat(ctx context.Context, omega *big.Rat, outs []network.Outpu
 type workspace struct {
 	a, scaled, x, y []complex128
 	w               []double
-	factor          *luFactor
+	factor          factor // one of the next two
+	symmetric       *symmetricFactor
+	general         *luFactor
 }
 
 func (s *Solver) workspace() *workspace {
@@ -111,17 +115,38 @@ func (s *Solver) at(ctx context.Context, omega double, outs []network.Output, co
 	for k, c := range s.m.c {
 		q.w[k] = c.times(omega)
 	}
-	if err := q.factorise(ctx, false); err != nil {
-		return nil, err
-	}
-	r, err := q.answer(ctx, outs, cols)
-	if errors.Is(err, ErrSingular) && !q.fresh {
-		if err = q.factorise(ctx, true); err == nil {
-			r, err = q.answer(ctx, outs, cols)
+	return attempt(q, ctx, func() (*Result, error) { return q.answer(ctx, outs, cols) })
+}
+
+// attempt factorises and asks, and does both again in other ways as long as
+// the answer is that the factors are no good.
+func attempt[T any](q *query, ctx context.Context, ask func() (T, error)) (T, error) {
+	for way := range ways {
+		err := q.factorise(ctx, way)
+		if errors.Is(err, errPivot) {
+			continue
+		}
+		var result T
+		if err == nil {
+			result, err = ask()
+		}
+		if !errors.Is(err, ErrSingular) {
+			return result, err
 		}
 	}
-	return r, err
+	var none T
+	return none, ErrSingular
 }
+
+// The ways to factorise, in the order they are tried: symmetric and general,
+// each first with the order and pivots that served at another frequency.
+const (
+	symmetricAgain = iota
+	symmetricAnew
+	generalAgain
+	generalAnew
+	ways
+)
 
 // query is the solution at one frequency.
 type query struct {
@@ -129,45 +154,83 @@ type query struct {
 	*workspace
 	omega   double
 	residue *residue
-	fresh   bool // the pivots were chosen at this very frequency
 }
 
-// factorise factorises the matrix, in the order used before if that is there
-// and good; anew says to choose another.
-func (q *query) factorise(ctx context.Context, anew bool) error {
+// factorise factorises the matrix in one way. It fails with errPivot where that
+// way leads nowhere.
+func (q *query) factorise(ctx context.Context, way int) error {
 	q.mu.Lock()
-	p := q.pattern
+	plan, pattern := q.plan, q.pattern
 	q.mu.Unlock()
-	if p != nil && !anew {
-		if q.factor == nil || q.factor.luPattern != p {
-			q.factor = &luFactor{p, make([]complex128, len(p.lindex)), make([]complex128, len(p.uindex)), make([]complex128, p.m.n)}
+	switch {
+	case way == symmetricAgain && plan != nil:
+		if q.symmetric == nil || q.symmetric.symmetricPlan != plan {
+			q.symmetric = plan.factor()
+		}
+		q.factor = q.symmetric
+		return q.symmetric.factorise(ctx, q.omega.hi, usedLimit)
+	case way == symmetricAnew && q.multipliers != nil:
+		return q.symmetricAnew(ctx)
+	case way == generalAgain && pattern != nil:
+		if q.general == nil || q.general.luPattern != pattern {
+			q.general = pattern.factor()
 		}
 		copy(q.scaled, q.a)
-		p.scale.apply(q.m, q.scaled)
+		pattern.scale.apply(q.m, q.scaled)
 		clear(q.x)
-		err := p.refactorise(ctx, q.scaled, q.factor, q.x)
-		if !errors.Is(err, errPivot) {
-			return err
-		}
+		q.factor = q.general
+		return pattern.refactorise(ctx, q.scaled, q.general, q.x)
+	case way == generalAnew:
+		return q.generalAnew(ctx)
 	}
-	q.fresh = true
+	return errPivot
+}
+
+func (q *query) symmetricAnew(ctx context.Context) error {
+	plan, err := q.m.planSymmetric(ctx, q.a, q.multipliers)
+	if err != nil {
+		return err
+	}
+	q.symmetric = plan.factor()
+	q.factor = q.symmetric
+	if err := q.symmetric.factorise(ctx, q.omega.hi, freshLimit); err != nil {
+		return err
+	}
+	q.mu.Lock()
+	q.plan = plan
+	q.mu.Unlock()
+	return nil
+}
+
+func (q *query) generalAnew(ctx context.Context) error {
 	scale := q.m.equilibrate(q.a, false)
 	copy(q.scaled, q.a)
 	scale.apply(q.m, q.scaled)
 	cols, preferred, err := q.m.luPreorder(ctx, q.scaled)
-	if err == nil {
-		q.factor, err = q.m.factorise(ctx, q.scaled, scale, cols, preferred)
-	}
-	if errors.Is(err, errPivot) {
-		return ErrSingular
-	}
 	if err != nil {
 		return err
 	}
+	q.general, err = q.m.factorise(ctx, q.scaled, scale, cols, preferred)
+	if err != nil {
+		return err
+	}
+	q.factor = q.general
 	q.mu.Lock()
-	q.pattern = q.factor.luPattern
+	q.pattern = q.general.luPattern
 	q.mu.Unlock()
 	return nil
+}
+
+// factor is a factorisation with values.
+type factor interface {
+	// scaling is what rows and columns are multiplied by.
+	scaling() scaling
+	// solve overwrites b, by rows, with the solution by columns; y is scratch.
+	solve(b, y []complex128)
+	// solveTransposed does so for the transposed equations.
+	solveTransposed(b, y []complex128)
+	// method names the kind.
+	method() string
 }
 
 // solution is a refined solution of A·x = b or Aᵀ·x = b.
@@ -184,9 +247,9 @@ type solution struct {
 func (q *query) refine(ctx context.Context, b *vector, transposed bool) (*solution, error) {
 	n := q.m.n
 	s := &solution{x: make([]complex128, n), r: make([]complex128, n), slack: make([]float64, n), next: make([]complex128, n)}
-	weight := q.factor.scale.col
+	weight := q.factor.scaling().col
 	if transposed {
-		weight = q.factor.scale.row
+		weight = q.factor.scaling().row
 	}
 	q.residue.start(b, q.omega)
 	before := math.Inf(1)
@@ -203,8 +266,8 @@ func (q *query) refine(ctx context.Context, b *vector, transposed bool) (*soluti
 		}
 		step, size := 0.0, 0.0
 		for i, d := range s.next {
-			step = max(step, norm1(d)/weight[i])
-			size = max(size, norm1(s.x[i])/weight[i])
+			step = max(step, norm1(d)/math.Abs(weight[i]))
+			size = max(size, norm1(s.x[i])/math.Abs(weight[i]))
 		}
 		if !(step < 1e200) {
 			return nil, ErrSingular
@@ -234,7 +297,7 @@ func (q *query) refine(ctx context.Context, b *vector, transposed bool) (*soluti
 // answer solves for the columns, and the transposed equations for the
 // outputs.
 func (q *query) answer(ctx context.Context, outs []network.Output, cols []network.Column) (*Result, error) {
-	out := &Result{Values: make([][]complex128, len(outs)), Radius: make([][]float64, len(outs)), Method: "LU"}
+	out := &Result{Values: make([][]complex128, len(outs)), Radius: make([][]float64, len(outs)), Method: q.factor.method()}
 	sols := make([]*solution, len(cols))
 	for j, c := range cols {
 		b, err := columnVector(c)

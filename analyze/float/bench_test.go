@@ -1,0 +1,103 @@
+package float
+
+import (
+	"context"
+	"fmt"
+	"testing"
+
+	"portlight/analyze/network"
+)
+
+// gridPattern is the pattern of a square grid of side·side nodes.
+func gridPattern(side int) (start, index []int32) {
+	start = []int32{0}
+	for i := range side {
+		for j := range side {
+			v := int32(i*side + j)
+			if i > 0 {
+				index = append(index, v-int32(side))
+			}
+			if j > 0 {
+				index = append(index, v-1)
+			}
+			if j+1 < side {
+				index = append(index, v+1)
+			}
+			if i+1 < side {
+				index = append(index, v+int32(side))
+			}
+			start = append(start, int32(len(index)))
+		}
+	}
+	return start, index
+}
+
+// BenchmarkOrdering: mark for 10⁴ nodes 50 ms.
+func BenchmarkOrdering(b *testing.B) {
+	for _, side := range []int{30, 100} {
+		start, index := gridPattern(side)
+		b.Run(fmt.Sprintf("grid=%d", side), func(b *testing.B) {
+			for b.Loop() {
+				if _, err := minimumDegree(context.Background(), start, index, nil); err != nil {
+					b.Fatal(err)
+				}
+			}
+		})
+	}
+}
+
+// benchmarks are the networks of the marks.
+func benchmarks(b *testing.B, run func(b *testing.B, s *Solver, sys *network.System)) {
+	for _, c := range []struct {
+		name  string
+		build func() *builder
+	}{
+		{"ladder=1000", func() *builder { return rlcLadder(b, 1000) }},
+		{"mesh=30", func() *builder { return rcMesh(b, 30) }},
+		{"mesh=100", func() *builder { return rcMesh(b, 100) }},
+	} {
+		b.Run(c.name, func(b *testing.B) {
+			s, sys := c.build().solver()
+			run(b, s, sys)
+		})
+	}
+}
+
+// BenchmarkAt is one value with its bound and the condition number, to full
+// precision.
+func BenchmarkAt(b *testing.B) {
+	benchmarks(b, func(b *testing.B, s *Solver, sys *network.System) {
+		o, c := drivingPoint(b, sys, 1)
+		for b.Loop() {
+			if _, err := s.At(context.Background(), 1e5, []network.Output{o}, []network.Column{c}); err != nil {
+				b.Fatal(err)
+			}
+		}
+	})
+}
+
+// BenchmarkFactorAndSolve is the work for one frequency of a sweep without
+// bounds: the factors from new values on the structure found before, and one
+// solution. Marks: ladder of 1000 sections 45 µs, mesh of 30² nodes 200 µs, of
+// 100² nodes 12 ms.
+func BenchmarkFactorAndSolve(b *testing.B) {
+	benchmarks(b, func(b *testing.B, s *Solver, sys *network.System) {
+		ctx := context.Background()
+		o, c := drivingPoint(b, sys, 1)
+		if _, err := s.At(ctx, 1e5, []network.Output{o}, []network.Column{c}); err != nil {
+			b.Fatal(err)
+		}
+		f := s.plan.factor()
+		x, y := make([]complex128, s.m.n), make([]complex128, s.m.n)
+		omega := 1e5
+		for b.Loop() {
+			omega *= 1.0001
+			if err := f.factorise(ctx, omega, usedLimit); err != nil {
+				b.Fatal(err)
+			}
+			clear(x)
+			x[0] = 1
+			f.solve(x, y)
+		}
+	})
+}

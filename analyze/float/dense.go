@@ -1,0 +1,156 @@
+package float
+
+import (
+	"context"
+	"math"
+)
+
+// dense is a front at work: wide columns of tall rows, of which the part above
+// the diagonal is not used, and the square of the rows below them.
+type dense struct {
+	values, rest []complex128
+	tall, wide   int
+	pairs        []bool
+	panel        []complex128 // L·D of the columns at hand
+}
+
+// panelWidth is how many columns are eliminated before the others are brought
+// up to date.
+const panelWidth = 4
+
+// factorise eliminates the columns and returns the largest sum of the
+// sizes of a column of L.
+func (d *dense) factorise(ctx context.Context) (largest float64, err error) {
+	work := 0
+	for k := 0; k < d.wide; {
+		end := min(k+panelWidth, d.wide)
+		if d.pairs[end-1] { // a pair stays together
+			end--
+		}
+		largest = max(largest, d.columns(k, end))
+		if work += (d.tall - k) * (d.tall - k); work > cancelInterval {
+			work = 0
+			if err := ctx.Err(); err != nil {
+				return 0, err
+			}
+		}
+		d.update(k, end)
+		k = end
+	}
+	return largest, nil
+}
+
+// columns eliminates the columns from..end−1 and returns the largest sum of
+// the sizes of a column of L.
+func (d *dense) columns(from, end int) (largest float64) {
+	tall := d.tall
+	for k := from; k < end; k++ {
+		column := d.values[k*tall:][:tall]
+		if d.pairs[k] {
+			next := d.values[(k+1)*tall:][:tall]
+			d.updateColumn(from, k, k, column[k:])
+			d.updateColumn(from, k, k+1, next[k+1:])
+			largest = max(largest, d.pair(k, from))
+			k++
+			continue
+		}
+		d.updateColumn(from, k, k, column[k:])
+		inverse := reciprocal(column[k])
+		column[k] = inverse
+		p, q := real(inverse), imag(inverse)
+		w := d.panel[(k-from)*tall:][:tall]
+		sr, si := 0.0, 0.0
+		for i := k + 1; i < tall; i++ {
+			v := column[i]
+			w[i] = v
+			x, y := real(v)*p-imag(v)*q, real(v)*q+imag(v)*p
+			sr += math.Abs(x)
+			si += math.Abs(y)
+			column[i] = complex(x, y)
+		}
+		largest = max(largest, sr+si)
+	}
+	return largest
+}
+
+// pair eliminates columns k and k+1 together.
+func (d *dense) pair(k, from int) float64 {
+	tall := d.tall
+	u, v := d.values[k*tall:][:tall], d.values[(k+1)*tall:][:tall]
+	wu, wv := d.panel[(k-from)*tall:][:tall], d.panel[(k+1-from)*tall:][:tall]
+	p, q, r := invertPair(u[k], u[k+1], v[k+1])
+	u[k], u[k+1], v[k+1] = p, q, r
+	sum := norm1(p) * pivotAlone
+	for i := k + 2; i < tall; i++ {
+		a, b := u[i], v[i]
+		la, lb := a*p+b*q, a*q+b*r
+		sum += norm1(la) + norm1(lb)
+		wu[i], wv[i], u[i], v[i] = a, b, la, lb
+	}
+	return sum
+}
+
+// update takes the products of the columns from..end−1 off the columns after
+// them.
+func (d *dense) update(from, end int) {
+	tall := d.tall
+	for j := end; j < tall; j++ {
+		var to []complex128
+		if j < d.wide {
+			to = d.values[j*tall:][j:tall]
+		} else {
+			below := tall - d.wide
+			to = d.rest[(j-d.wide)*below:][j-d.wide : below]
+		}
+		d.updateColumn(from, end, j, to)
+	}
+}
+
+// updateColumn brings the rows from j on of column j up to date.
+func (d *dense) updateColumn(from, end, j int, to []complex128) {
+	tall := d.tall
+	l := func(k int) []complex128 { return d.values[k*tall:][j:tall][:len(to)] }
+	f := func(k int) (re, im float64) { v := d.panel[(k-from)*tall+j]; return real(v), imag(v) }
+	switch end - from {
+	case 4:
+		a, b, c, e := l(from), l(from+1), l(from+2), l(from+3)
+		ar, ai := f(from)
+		br, bi := f(from + 1)
+		cr, ci := f(from + 2)
+		er, ei := f(from + 3)
+		for i, v := range to {
+			x, y := real(v), imag(v)
+			u := a[i]
+			x -= real(u)*ar - imag(u)*ai
+			y -= real(u)*ai + imag(u)*ar
+			u = b[i]
+			x -= real(u)*br - imag(u)*bi
+			y -= real(u)*bi + imag(u)*br
+			u = c[i]
+			x -= real(u)*cr - imag(u)*ci
+			y -= real(u)*ci + imag(u)*cr
+			u = e[i]
+			x -= real(u)*er - imag(u)*ei
+			y -= real(u)*ei + imag(u)*er
+			to[i] = complex(x, y)
+		}
+	case 3:
+		a, b, c := l(from), l(from+1), l(from+2)
+		fa, fb, fc := d.panel[j], d.panel[tall+j], d.panel[2*tall+j]
+		for i := range to {
+			to[i] -= a[i]*fa + b[i]*fb + c[i]*fc
+		}
+	case 2:
+		a, b := l(from), l(from+1)
+		fa, fb := d.panel[j], d.panel[tall+j]
+		for i := range to {
+			to[i] -= a[i]*fa + b[i]*fb
+		}
+	case 1:
+		a := l(from)
+		fa := d.panel[j]
+		for i := range to {
+			to[i] -= a[i] * fa
+		}
+	}
+}
