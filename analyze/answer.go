@@ -68,6 +68,14 @@ type SignalAnswer struct {
 	Signal    *response.Signal
 }
 
+// CurveAnswer is what is no sum of voltages and currents but still has a closed
+// form, such as a power: it has no parts by cause, since superposition does not hold.
+type CurveAnswer struct {
+	Question
+	Dimension dialect.Dimension
+	Curve     *response.Curve
+}
+
 // SignalValueAnswer is a signal at a time.
 type SignalValueAnswer struct {
 	Question

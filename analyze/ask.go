@@ -44,7 +44,7 @@ func (a *Analysis) Answer(ctx context.Context, q *dialect.Question) (Answer, err
 	if a.description.Faults {
 		return &RefusedAnswer{head, "faults", "the network is not complete because of the errors reported: mend them first"}, nil
 	}
-	key := fmt.Sprintf("answer %s %v %v", q.Text, q.Origin.Span, len(q.Origin.Use))
+	key := fmt.Sprintf("answer %s %v %v %s", q.Text, q.Origin.Span, len(q.Origin.Use), qualifierKey(q.Qualifiers))
 	answer, err := recall(ctx, &a.memo, key, func(ctx context.Context) (Answer, error) {
 		return a.answer(ctx, q, head)
 	})

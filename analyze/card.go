@@ -251,7 +251,7 @@ func hertzText(f float64) string { return formatFloat(roundTo(f, 6)) + " Hz" }
 // pictureOf is the first curve of an answer, nil when it has none.
 func pictureOf(ctx context.Context, answer Answer) *PlotCurve {
 	switch answer.(type) {
-	case *FunctionAnswer, *TableAnswer, *SignalAnswer:
+	case *FunctionAnswer, *TableAnswer, *SignalAnswer, *CurveAnswer:
 		if p, err := PictureOf(ctx, answer); err == nil && len(p.Panels) > 0 {
 			return &p.Panels[0]
 		}

@@ -4,6 +4,7 @@ import (
 	"context"
 	"fmt"
 	"strings"
+	"time"
 
 	"portlight/dialect"
 	"portlight/dialect/number"
@@ -70,7 +71,7 @@ func (c *cardMaker) askAt(what string) {
 		return
 	}
 	if refused, ok := answer.(*RefusedAnswer); ok {
-		c.Answer = append(c.Answer, what+": "+refused.Why)
+		c.Answer = append(c.Answer, what+": "+strings.TrimPrefix(refused.Why, what+": "))
 		return
 	}
 	c.Answer = append(c.Answer, fmt.Sprintf("%s at %s: %s", what, c.nice(), strings.Join(limited(Words(answer), 2), "; ")))
@@ -118,7 +119,15 @@ func (c *cardMaker) summary(signal string) {
 		c.faults()
 		return
 	}
+	if still, ok := c.constant(signal); ok {
+		c.Answer = append(c.Answer, signal+": "+still+" at all times from 0 on")
+		return
+	}
 	var parts []string
+	hurry, stop := context.WithTimeout(c.ctx, cardPatience)
+	defer stop()
+	patient := c.ctx
+	c.ctx = hurry
 	for _, q := range []struct{ label, question string }{
 		{"%s at 0+", signal + " at 0 s"},
 		{"%s finally", "final(" + signal + ")"},
@@ -129,9 +138,36 @@ func (c *cardMaker) summary(signal string) {
 			parts = append(parts, fmt.Sprintf(q.label, text))
 		}
 	}
+	c.ctx = patient
 	if len(parts) > 0 {
 		c.Answer = append(c.Answer, signal+": "+strings.Join(parts, ", "))
 	}
+}
+
+// cardPatience is how long the figures of one line may take: a reader points
+// and goes on. What is not there by then can be asked with tell.
+const cardPatience = 300 * time.Millisecond
+
+// constant tells whether a signal has one value from 0 on.
+func (c *cardMaker) constant(signal string) (string, bool) {
+	answer, ok := c.ask(signal).(*SignalAnswer)
+	if !ok {
+		return "", false
+	}
+	pieces, err := answer.Signal.Pieces(c.ctx, 6)
+	if err != nil || len(pieces) > 1 || len(pieces) == 1 && (len(pieces[0].Impulses) > 0 || pieces[0].From.Rat().Sign() != 0 || pieces[0].Until != nil) {
+		return "", false
+	}
+	value := number.BallFromInt(0, figurePrecision)
+	for _, p := range pieces {
+		if len(p.Terms) > 1 || len(p.Terms) == 1 && (p.Terms[0].Power > 0 || !p.Terms[0].Pole.IsExact() || !p.Terms[0].Pole.ContainsZero()) {
+			return "", false
+		}
+		for _, t := range p.Terms {
+			value = t.Coefficient.Re
+		}
+	}
+	return quantity(value, answer.Dimension), true
 }
 
 // signal adds a voltage or current: its figures, then what causes it.
@@ -142,6 +178,10 @@ func (c *cardMaker) signal(signal string) {
 		if !c.a.description.Faults {
 			c.refusal(signal)
 		}
+		return
+	}
+	if _, still := c.constant(signal); still {
+		c.shares(signal)
 		return
 	}
 	lines := Words(answer)
@@ -204,7 +244,7 @@ func (c *cardMaker) node(n int) {
 	}
 	c.askAt("z[" + node.Name + "]")
 	c.signal("v[" + node.Name + "]")
-	if z := c.ask("z[" + node.Name + "]"); z != nil {
+	if z, ok := c.ask("z[" + node.Name + "]").(*FunctionAnswer); ok && !z.Ratio.IsZero() {
 		c.Detail = append(c.Detail, limited(Words(z), 2)...)
 	}
 }

@@ -2,7 +2,6 @@ package analyze
 
 import (
 	"fmt"
-	"strings"
 
 	"portlight/dialect"
 )
@@ -53,8 +52,13 @@ func (c *cardMaker) values(p *dialect.Part) {
 	}
 	switch p.Kind {
 	case dialect.Resistor, dialect.Capacitor, dialect.Inductor:
-		if near := c.a.checked.Preferred(p.Kind, p.Tolerance, p.Value); len(near) > 0 {
-			c.Detail = append(c.Detail, "preferred values near it: "+strings.Join(near, ", "))
+		series, below, above := c.a.checked.Neighbours(p.Kind, p.Tolerance, p.Value)
+		switch {
+		case series != "" && below == nil:
+			c.Detail = append(c.Detail, "a preferred value of "+series)
+		case series != "":
+			unit := valueUnit(p)
+			c.Detail = append(c.Detail, fmt.Sprintf("between %s and %s of %s", exactFigure(*below, unit), exactFigure(*above, unit), series))
 		}
 	}
 }
@@ -91,7 +95,7 @@ func (c *cardMaker) let(i int, s *dialect.Symbol) {
 	c.Title = "constant " + l.Name
 	if k, ok := l.Value.(*dialect.Constant); ok {
 		c.Answer = append(c.Answer, constantText(k))
-		if !k.Value.IsExact() {
+		if !k.Value.IsExact() && !k.Hertz {
 			c.Detail = append(c.Detail, "irrational: carried with a bound of its error, to 75 digits or more")
 		}
 	}

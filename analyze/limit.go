@@ -121,6 +121,12 @@ func (a *Analysis) decidePoint(ctx context.Context, l *dialect.Limit, shape dial
 	if v.Decision == Undecided {
 		v.Why = "the value cannot be told from the limit: it lies on it to within the bound of the irrational values"
 	}
+	if call, ok := l.Left.(*dialect.Call); ok && isMeasure(call.Name) {
+		at := placeOf(l.Qualifiers, shape, 192)
+		if m, err := a.measure(ctx, call, at, 192); err == nil && m.hasWhere && m.where.IsFinite() {
+			v.HasWhere, v.InTime, v.Where = true, m.inTime, m.where
+		}
+	}
 	if at := l.Qualifiers.At; at != nil {
 		v.HasWhere, v.InTime = true, shape == dialect.ShapeSignal
 		v.Where = number.BallFromExact(at.Value, 192)

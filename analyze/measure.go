@@ -150,7 +150,7 @@ func timeMeasure(ctx context.Context, e *dialect.Call, c *response.Curve, r resp
 		v, err := c.RMS(ctx, r)
 		return measured{value: v}, err
 	case "settle":
-		return instant(c.Settle(ctx, constantArgument(e, 1)))
+		return instant(settle(ctx, c, constantArgument(e, 1)))
 	case "overshoot":
 		v, x, err := c.Overshoot(ctx)
 		return measured{value: v, hasWhere: x.HasAt, inTime: true, where: x.At}, err
@@ -163,6 +163,27 @@ func timeMeasure(ctx context.Context, e *dialect.Call, c *response.Curve, r resp
 		return instant(c.LastBelow(ctx, constantArgument(e, 1), r))
 	}
 	return measured{}, errNoValue
+}
+
+// settle is the last instant outside a band around the final value: a part of
+// that value, or where it is zero, of the largest distance from it.
+func settle(ctx context.Context, c *response.Curve, band number.Exact) (number.Ball, error) {
+	final, _, err := c.Final(ctx)
+	if err != nil || !final.ContainsZero() {
+		if err != nil {
+			return number.Ball{}, err
+		}
+		return c.Settle(ctx, band)
+	}
+	largest, err := c.Abs().Peak(ctx, response.Range{})
+	if err != nil {
+		return number.Ball{}, err
+	}
+	if largest.Value.ContainsZero() {
+		return number.BallFromInt(0, 192), nil
+	}
+	level := number.FromRat(new(big.Rat).Mul(largest.Value.MidRat(), band.Rat()))
+	return c.Abs().LastAbove(ctx, level, response.Range{})
 }
 
 // constantArgument is a constant argument; settle without one means 1 %.

@@ -92,7 +92,7 @@ func (a *Analysis) withinRange(ctx context.Context, q *dialect.Question) *Pictur
 		if overTime || w.low <= 0 {
 			return nil
 		}
-	case *SignalAnswer:
+	case *SignalAnswer, *CurveAnswer:
 		if !overTime {
 			return nil
 		}
@@ -130,6 +130,12 @@ func pictureWithin(ctx context.Context, answer Answer, w window) (*Picture, erro
 		p.Panels = tableCurves(a)
 	case *SignalAnswer:
 		curve, err := signalCurve(ctx, a, w)
+		if err != nil {
+			return nil, err
+		}
+		p.Panels = []PlotCurve{curve}
+	case *CurveAnswer:
+		curve, err := productCurve(ctx, a, w)
 		if err != nil {
 			return nil, err
 		}

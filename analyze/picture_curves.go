@@ -3,6 +3,7 @@ package analyze
 import (
 	"context"
 	"math"
+	"math/big"
 	"math/cmplx"
 	"slices"
 
@@ -157,7 +158,7 @@ func signalCurve(ctx context.Context, a *SignalAnswer, w window) (PlotCurve, err
 			signal *response.Signal
 		}{"zero-state part", zs})
 	}
-	curve.X = instants(a.Signal, w.low, end)
+	curve.X = instants(a.Signal.Breakpoints(), w.low, end)
 	for _, p := range parts {
 		sampler, err := p.signal.Sampler(ctx)
 		if err != nil {
@@ -169,14 +170,55 @@ func signalCurve(ctx context.Context, a *SignalAnswer, w window) (PlotCurve, err
 	return curve, nil
 }
 
+// productCurve samples a power and the like.
+func productCurve(ctx context.Context, a *CurveAnswer, w window) (PlotCurve, error) {
+	pieces, err := a.Curve.Pieces(ctx, shownDigits+8)
+	if err != nil {
+		return PlotCurve{}, err
+	}
+	end := w.high
+	if end <= w.low {
+		end = w.low + windowOf(pieces)
+	}
+	curve := PlotCurve{Title: a.Asked(), XLabel: "s", YLabel: a.Dimension.Unit(), Names: []string{"total"}}
+	var breaks []*big.Rat
+	for _, p := range pieces {
+		breaks = append(breaks, p.From.Rat())
+	}
+	curve.X = instants(breaks, w.low, end)
+	y := make([]float64, len(curve.X))
+	for i, t := range curve.X {
+		y[i] = sampled(pieces, t)
+	}
+	curve.Y = [][]float64{y}
+	return curve, nil
+}
+
+// sampled adds up the terms of pieces at a time, in double precision.
+func sampled(pieces []response.Piece, t float64) float64 {
+	sum := 0.0
+	for _, p := range pieces {
+		tau := t - p.From.Float()
+		if tau < 0 || p.Until != nil && t >= p.Until.Float() {
+			continue
+		}
+		for _, x := range p.Terms {
+			c := complex(x.Coefficient.Re.MidFloat64(), x.Coefficient.Im.MidFloat64())
+			pole := complex(x.Pole.Re.MidFloat64(), x.Pole.Im.MidFloat64())
+			sum += real(c*cmplx.Exp(pole*complex(tau, 0))) * math.Pow(tau, float64(x.Power))
+		}
+	}
+	return sum
+}
+
 // instants are evenly spaced, with both sides of every instant where the
 // signal may jump.
-func instants(s *response.Signal, low, high float64) []float64 {
+func instants(breaks []*big.Rat, low, high float64) []float64 {
 	var x []float64
 	for i := range curvePoints {
 		x = append(x, low+(high-low)*float64(i)/(curvePoints-1))
 	}
-	for _, b := range s.Breakpoints() {
+	for _, b := range breaks {
 		at, _ := b.Float64()
 		before := at - (high-low)*1e-9
 		if at > low && at < high && before > low {
@@ -195,6 +237,11 @@ func timeWindow(ctx context.Context, s *response.Signal) (float64, error) {
 	if err != nil {
 		return 0, err
 	}
+	return windowOf(pieces), nil
+}
+
+// windowOf is timeWindow for a closed form.
+func windowOf(pieces []response.Piece) float64 {
 	last, span := 0.0, 0.0
 	for _, p := range pieces {
 		from, _ := p.From.Rat().Float64()
@@ -226,7 +273,7 @@ func timeWindow(ctx context.Context, s *response.Signal) (float64, error) {
 	if end == 0 {
 		end = 1
 	}
-	return niceCeil(end), nil
+	return niceCeil(end)
 }
 
 // niceCeil rounds up to 1, 1.5, 2, 3, 5 or 8 times a power of ten.

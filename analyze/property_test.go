@@ -12,6 +12,7 @@ import (
 
 	"pgregory.net/rapid"
 
+	"portlight/analyze/response"
 	"portlight/dialect"
 )
 
@@ -334,7 +335,37 @@ func (n *networkAsker) response(out plainOutput, at *big.Rat) bool {
 	n.close(question+", zero-input part", value.ZeroInput.MidFloat64(), read(input), size)
 	n.close(question+", zero-state part", value.ZeroState.MidFloat64(), read(state), size)
 	n.parts(out, question, value, exactly, size)
+	for i := range input {
+		input[i] += state[i]
+	}
+	n.power(exactly, input, size)
 	return true
+}
+
+// power compares the power of a part, and its closed form added up, with
+// voltage times current.
+func (n *networkAsker) power(at *big.Rat, x []float64, size float64) {
+	part := rapid.SampledFrom(n.g.carriers()).Draw(n.t, "power of")
+	b := n.g.branches[part]
+	t := &tableau[float64]{f: floats, nodes: n.g.nodes}
+	want := of(t, plainOutput{plus: b.a, minus: b.b, branch: -1}, x) * of(t, plainOutput{branch: part}, x)
+	question := fmt.Sprintf("p[%s]", b.name)
+	value, ok := n.ask(fmt.Sprintf("%s at %s s", question, at.FloatString(30))).(*ValueAnswer)
+	if !ok {
+		n.fail("%s has no value", question)
+	}
+	n.close(question, value.Value.Re.MidFloat64(), want, size*size)
+	var pieces []response.Piece
+	switch answer := n.ask(question).(type) {
+	case *CurveAnswer:
+		var err error
+		if pieces, err = answer.Curve.Pieces(n.ctx, 20); err != nil {
+			n.fail("%s: %v", question, err)
+		}
+	default:
+		n.fail("%s has no closed form", question)
+	}
+	n.close("the terms of "+question, sampled(pieces, f64(at)), want, size*size)
 }
 
 // growth is the greatest real part, in 1/s, of the natural frequencies in any

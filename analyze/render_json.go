@@ -34,6 +34,8 @@ func viewOf(ctx context.Context, answer Answer) any {
 		return factView{head(a.Question, "fact"), a.True, a.Why, a.Proved}
 	case *SignalAnswer:
 		return signalJSON(ctx, a)
+	case *CurveAnswer:
+		return curveJSON(ctx, a)
 	case *SignalValueAnswer:
 		return signalValueJSON(a)
 	case *MeasureAnswer:
@@ -51,7 +53,7 @@ func viewOf(ctx context.Context, answer Answer) any {
 	case *RefusedAnswer:
 		return refusedView{head(a.Question, "refused"), string(a.Code), a.Why}
 	}
-	return refusedView{headView{Question: answer.Asked(), Kind: "refused"}, "", "this kind of answer has no JSON form"}
+	return refusedView{headView{Question: answer.Asked(), Kind: "refused"}, "not-decided", "this kind of answer has no JSON form"}
 }
 
 // MarshalAnswers writes answers as one JSON array, an object to a line, with

@@ -49,6 +49,24 @@ type signalView struct {
 	Proved    bool           `json:"proved"`
 }
 
+// curveView is a power and the like: the whole of it alone, since it has no
+// parts by cause.
+type curveView struct {
+	headView
+	Unit     string        `json:"unit"`
+	Total    []termView    `json:"total"`
+	Impulses []impulseView `json:"impulses"`
+	Proved   bool          `json:"proved"`
+}
+
+func curveJSON(ctx context.Context, a *CurveAnswer) any {
+	pieces, err := a.Curve.Pieces(ctx, signalDigits)
+	if err != nil {
+		return refusedView{head(a.Question, "refused"), "not-decided", "the closed form is out of reach: " + err.Error()}
+	}
+	return curveView{head(a.Question, "signal"), a.Dimension.Unit(), termViews(pieces), []impulseView{}, true}
+}
+
 // signalDigits is how many digits the coefficients of a closed form are
 // computed to; some are lost where terms are moved to a switching instant.
 const signalDigits = jsonDigits + 8
@@ -60,15 +78,15 @@ func signalJSON(ctx context.Context, a *SignalAnswer) any {
 	}
 	zi, err := a.Signal.ZeroInput().Pieces(ctx, signalDigits)
 	if err != nil {
-		return refusedView{head(a.Question, "refused"), "", "the closed form is out of reach: " + err.Error()}
+		return refusedView{head(a.Question, "refused"), "not-decided", "the closed form is out of reach: " + err.Error()}
 	}
 	zs, err := a.Signal.ZeroState().Pieces(ctx, signalDigits)
 	if err != nil {
-		return refusedView{head(a.Question, "refused"), "", "the closed form is out of reach: " + err.Error()}
+		return refusedView{head(a.Question, "refused"), "not-decided", "the closed form is out of reach: " + err.Error()}
 	}
 	v.ZeroInput, v.ZeroState = termViews(zi), termViews(zs)
 	if v.Impulses, err = impulseViews(ctx, a.Signal); err != nil {
-		return refusedView{head(a.Question, "refused"), "", "the impulses are out of reach: " + err.Error()}
+		return refusedView{head(a.Question, "refused"), "not-decided", "the impulses are out of reach: " + err.Error()}
 	}
 	v.Transform = transformsOf(a.Signal)
 	return v

@@ -36,6 +36,8 @@ func wordsOf(ctx context.Context, answer Answer) (lines, remarks []string) {
 		return factWords(a), a.Remarks
 	case *SignalAnswer:
 		return signalWords(ctx, a), a.Remarks
+	case *CurveAnswer:
+		return curveWords(ctx, a), a.Remarks
 	case *SignalValueAnswer:
 		return signalValueWords(a), a.Remarks
 	case *MeasureAnswer:
@@ -81,6 +83,10 @@ func valueWords(a *ValueAnswer) []string {
 		return unproved([]string{text}, a.Proved)
 	}
 	unit := a.Dimension.Unit()
+	if a.Magnitude.ContainsZero() {
+		// Zero has no angle.
+		return unproved([]string{figure(a.Magnitude, unit)}, a.Proved)
+	}
 	polar := figure(a.Magnitude, unit) + " ∠ " + figure(a.Phase, "°")
 	if a.Dimension == dialect.DimensionNumber {
 		if sign, ok := a.Magnitude.Sign(); ok && sign > 0 {

@@ -27,11 +27,9 @@ func functionWords(a *FunctionAnswer) []string {
 		lines = append(lines, limitsOf(a))
 	}
 	if len(a.Hidden) > 0 {
-		var list []string
-		for _, r := range a.Hidden {
-			list = append(list, rootFigure(r))
-		}
-		lines = append(lines, "hidden: the network also has the natural frequency "+strings.Join(list, ", ")+" that this does not show")
+		figures := rootFigures(a.Hidden)
+		lines = append(lines, fmt.Sprintf("hidden: the network also has the natural frequenc%s %s, which this does not show",
+			plural(len(figures)), list(figures)))
 	}
 	return lines
 }

@@ -37,9 +37,19 @@ func signalWords(ctx context.Context, a *SignalAnswer) []string {
 	return lines
 }
 
+// curveWords tells a power and the like, which have no parts by cause.
+func curveWords(ctx context.Context, a *CurveAnswer) []string {
+	pieces, err := a.Curve.Pieces(ctx, shownDigits+4)
+	return pieceWords(pieces, err, "total", a.Dimension)
+}
+
 // partWords tells one part, a line to each stretch that begins or ends.
 func partWords(ctx context.Context, s *response.Signal, title string, d dialect.Dimension) []string {
 	pieces, err := s.Pieces(ctx, shownDigits+4)
+	return pieceWords(pieces, err, title, d)
+}
+
+func pieceWords(pieces []response.Piece, err error, title string, d dialect.Dimension) []string {
 	if err != nil {
 		return []string{title + ": " + err.Error()}
 	}
@@ -54,7 +64,7 @@ func partWords(ctx context.Context, s *response.Signal, title string, d dialect.
 			clock = "t′"
 		}
 		text := stretchWords(p, clock, d)
-		if when := stretch(p, len(pieces) > 1); when != "" {
+		if when := stretch(p, overlaps(p, pieces)); when != "" {
 			text = when + " " + text
 		}
 		if clock == "t′" {
@@ -66,13 +76,23 @@ func partWords(ctx context.Context, s *response.Signal, title string, d dialect.
 	return lines
 }
 
+// overlaps tells whether something that began before a piece still lasts.
+func overlaps(p response.Piece, pieces []response.Piece) bool {
+	for _, q := range pieces {
+		if q.From.Rat().Cmp(p.From.Rat()) < 0 && (q.Until == nil || q.Until.Rat().Cmp(p.From.Rat()) > 0) {
+			return true
+		}
+	}
+	return false
+}
+
 // stretch says when a piece lasts; pieces that overlap add up.
-func stretch(p response.Piece, several bool) string {
+func stretch(p response.Piece, adds bool) string {
 	from := ratFigure(p.From.Rat(), "s")
 	switch {
 	case p.Until != nil:
 		return "from " + from + " to " + exactFigure(*p.Until, "s") + ":"
-	case several && p.From.Rat().Sign() != 0:
+	case adds:
 		return "added from " + from + " on:"
 	case p.From.Rat().Sign() != 0:
 		return "from " + from + " on:"

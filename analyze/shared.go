@@ -126,11 +126,16 @@ func numberKey(x number.Exact) string {
 
 // limitKey is equal for limits that ask the same of the same network.
 func limitKey(l *dialect.Limit) string {
-	q := l.Qualifiers
-	key := fmt.Sprintf("limit %s %s %v %v %v", expressionKey(l.Left), l.Relation, l.Nominal, q.Switches, q.Without)
+	key := fmt.Sprintf("limit %s %s %v %s", expressionKey(l.Left), l.Relation, l.Nominal, qualifierKey(l.Qualifiers))
 	if l.Right != nil {
 		key += expressionKey(l.Right)
 	}
+	return key
+}
+
+// qualifierKey writes qualifiers so that equal keys mean the same.
+func qualifierKey(q dialect.Qualifiers) string {
+	key := fmt.Sprintf("%v %v", q.Switches, q.Without)
 	for _, c := range []*dialect.Constant{q.At, q.Before, q.From, q.To} {
 		key += " "
 		if c != nil {

@@ -21,6 +21,7 @@ type past struct {
 // initialState finds the state at 0−: rest with what initially says, or the
 // steady state of what has acted for ever.
 func (a *Analysis) initialState(ctx context.Context, c configuration) (past, error) {
+	c.drives = nil // what a question puts at a port is put there at t = 0
 	return recall(ctx, &a.shared().memo, "state "+c.key(), func(ctx context.Context) (past, error) {
 		if !a.description.Steady {
 			return a.restState(), nil
@@ -96,7 +97,9 @@ func (a *Analysis) solution(ctx context.Context, c configuration) (*response.Sol
 			setup.Intervals = append(setup.Intervals, response.Interval{Start: iv.start, System: sys})
 		}
 		if len(a.allSwitches()) > 0 {
-			setup.Before, _ = network.Assemble(a.before(c))
+			undriven := c
+			undriven.drives = nil
+			setup.Before, _ = network.Assemble(a.before(undriven))
 		}
 		return response.Solve(ctx, setup)
 	})

@@ -68,7 +68,7 @@ func degrees(b number.Ball) number.Ball {
 func (a *Analysis) signalAnswer(ctx context.Context, head Question, e dialect.Expression, c configuration) (Answer, error) {
 	s, err := a.linear(ctx, e, c)
 	if errors.Is(err, errNotLinear) {
-		return nil, refuse("no-closed-form", "this changes its form wherever signals cross, so it has no one closed form: ask its value “at 1 ms”, a range “to 10 ms”, or a measure such as peak(…)")
+		return a.curveAnswer(ctx, head, e, c)
 	}
 	if err != nil {
 		return nil, err
@@ -78,6 +78,23 @@ func (a *Analysis) signalAnswer(ctx context.Context, head Question, e dialect.Ex
 		out.Remarks = append(out.Remarks, "a source drives a natural frequency of the network: the part at that frequency counts as forced")
 	}
 	return out, nil
+}
+
+// curveAnswer is the closed form of a power and the like.
+func (a *Analysis) curveAnswer(ctx context.Context, head Question, e dialect.Expression, c configuration) (Answer, error) {
+	curve, err := a.curve(ctx, e, c)
+	if err != nil {
+		return nil, err
+	}
+	if !curve.HasClosedForm() {
+		return nil, refuse("no-closed-form", "this changes its form wherever signals cross, so it has no one closed form: ask its value “at 1 ms”, a range “to 10 ms”, or a measure such as peak(…)")
+	}
+	out := &CurveAnswer{Question: head, Dimension: e.Dim(), Curve: curve}
+	at, err := curve.ImpulseIn(ctx, response.Range{})
+	if at != nil {
+		out.Remarks = append(out.Remarks, "an impulse at t = "+ratFigure(at, "s")+" has no product with another signal: the form holds besides")
+	}
+	return out, err
 }
 
 // answerDigits is how many significant digits values for other programs carry.

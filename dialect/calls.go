@@ -89,7 +89,7 @@ var callList = []callInfo{
 	{Name: "rms", Parameters: []string{"X"}, Group: signalMeasure,
 		Definition: "The root mean square over the time range asked about; without a range, over one period of the steady state."},
 	{Name: "settle", Parameters: []string{"X", "TOLERANCE"}, Optional: 1, Group: signalMeasure,
-		Definition: "The last time at which a signal is outside ±TOLERANCE (1 % when it is left out) of its final value."},
+		Definition: "The last time at which a signal is outside ±TOLERANCE (1 % when it is left out) of its final value; where that is 0, of its largest distance from 0."},
 	{Name: "overshoot", Parameters: []string{"X"}, Group: signalMeasure,
 		Definition: "How far a signal goes beyond its final value, over that value; undefined when the final value is 0."},
 	{Name: "rise", Parameters: []string{"X"}, Group: signalMeasure,

@@ -145,6 +145,22 @@ func (c *Checked) Preferred(kind Kind, tolerance *Tolerance, value number.Exact)
 	return c.builder.seriesFor(kind, tolerance, value)
 }
 
+// Neighbours gives the values next to a part's in the first of the series that
+// [Checked.Preferred] lists. below and above are nil when the value is in it,
+// and the series is "" when there is none.
+func (c *Checked) Neighbours(kind Kind, tolerance *Tolerance, value number.Exact) (series string, below, above *number.Exact) {
+	list := c.Preferred(kind, tolerance, value)
+	if sign, _ := value.Sign(); len(list) == 0 || sign <= 0 {
+		return "", nil, nil
+	}
+	values := seriesCache[list[0]]
+	if inSeries(values, value) {
+		return list[0], nil, nil
+	}
+	low, high := neighboursIn(values, value)
+	return list[0], &low, &high
+}
+
 func (b *builder) seriesFor(kind Kind, t *Tolerance, value number.Exact) []string {
 	if p := b.prefer[kind]; p != nil {
 		return []string{p.series}
