@@ -13,8 +13,8 @@ type Analysis struct {
 	description *dialect.Description
 	memo        memo // what depends on places in the text
 
-	previous *Analysis // until shared is first used
-	sharing  sync.Once
+	previous *Analysis  // until shared is first used
+	sharing  sync.Mutex // guards previous and common
 	common   *arithmetic
 }
 

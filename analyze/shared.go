@@ -22,21 +22,36 @@ type arithmetic struct {
 // the previous analysis has computed about it is used again.
 func NewAfter(checked *dialect.Checked, previous *Analysis) *Analysis {
 	a := New(checked)
-	a.previous = previous
+	if previous != nil {
+		a.previous = previous.computed()
+	}
 	return a
+}
+
+// computed is this analysis if anything has been computed on it, else the
+// latest before it that has: one that was asked nothing is not worth keeping.
+func (a *Analysis) computed() *Analysis {
+	a.sharing.Lock()
+	defer a.sharing.Unlock()
+	if a.common != nil {
+		return a
+	}
+	return a.previous
 }
 
 // shared gives the arithmetic of this network, on first use the previous
 // version's when the network is the same.
 func (a *Analysis) shared() *arithmetic {
-	a.sharing.Do(func() {
+	a.sharing.Lock()
+	defer a.sharing.Unlock()
+	if a.common == nil {
 		if p := a.previous; p != nil && sameNetwork(a.description, p.description) {
 			a.common = p.shared()
 		} else {
 			a.common = &arithmetic{}
 		}
 		a.previous = nil // or every version would keep the one before
-	})
+	}
 	return a.common
 }
 

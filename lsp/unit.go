@@ -43,9 +43,11 @@ type unit struct {
 	before atomic.Pointer[analyze.Analysis]
 }
 
-// latest is the analysis that the next version may take over from.
+// latest is the analysis that the next version may take over from: this
+// version's once it is complete, until then the one before. So versions that
+// are superseded half-way do not pile up behind one another.
 func (u *unit) latest() *analyze.Analysis {
-	if u.settled.Load() {
+	if u.found.Load() != nil {
 		return u.analysis
 	}
 	return u.before.Load()
@@ -88,18 +90,14 @@ func (u *unit) file() (*dialect.File, error) {
 // check checks the document. The result is nil only when it cannot be read.
 func (u *unit) check() (*dialect.Checked, *analyze.Analysis) {
 	u.once.Do(func() {
-		before := u.before.Load()
-		defer func() {
-			u.settled.Store(true)
-			u.before.Store(nil) // lest every version keeps all before it
-		}()
+		defer u.settled.Store(true)
 		file, err := u.file()
 		if err != nil {
 			u.problem = err
 			return
 		}
 		u.checked = dialect.Check(file, u.view.Reader())
-		u.analysis = analyze.NewAfter(u.checked, before)
+		u.analysis = analyze.NewAfter(u.checked, u.before.Load())
 	})
 	return u.checked, u.analysis
 }
@@ -118,6 +116,7 @@ func (u *unit) findings(ctx context.Context) ([]dialect.Finding, error) {
 		}
 	}
 	u.found.Store(&list)
+	u.before.Store(nil)
 	return list, nil
 }
 
