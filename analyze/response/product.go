@@ -270,6 +270,7 @@ func barred(id string) string {
 			parts[i] = "~" + parts[i]
 		}
 	}
+	sort.Strings(parts) // as joinIDs does: equal multisets have equal ids
 	return strings.Join(parts, " + ")
 }
 
