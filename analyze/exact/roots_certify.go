@@ -11,14 +11,16 @@ import (
 // These are guesses: the discs prove them in the end, and rethink undoes them
 // where they lead nowhere.
 func (s *rootSolver) match() {
+	var closest []int
 	for i := range s.roots {
 		a := &s.roots[i]
-		if a.link >= 0 || a.step > 0.01 {
+		if a.link >= 0 || a.step > -7 {
 			continue
 		}
 		x, k := s.views[i].x, s.views[i].k
 		mirror := cmplx.Conj(x)
 		nearest, twin, twinDistance, second := math.Inf(1), -1, math.Inf(1), math.Inf(1)
+		closest = closest[:0]
 		for j := range s.views {
 			if j == i {
 				continue
@@ -31,7 +33,8 @@ func (s *rootSolver) match() {
 			y := s.views[j].x * complex(math.Ldexp(1, shift), 0)
 			to, across := cmplx.Abs(x-y), cmplx.Abs(mirror-y)
 			if math.Min(to, across) < 0x1p-40 {
-				to, across = s.distances(i, j)
+				closest = append(closest, j)
+				continue
 			}
 			if across < twinDistance {
 				twin, twinDistance, second = j, across, twinDistance
@@ -40,15 +43,27 @@ func (s *rootSolver) match() {
 			}
 			nearest = math.Min(nearest, to)
 		}
+		// From here on logarithms: the views do not tell small distances.
+		nearest, twinDistance, second = math.Log2(nearest), math.Log2(twinDistance), math.Log2(second)
+		for _, j := range closest {
+			to, across := s.distances(i, j)
+			if across < twinDistance {
+				twin, twinDistance, second = j, across, twinDistance
+			} else {
+				second = math.Min(second, across)
+			}
+			nearest = math.Min(nearest, to)
+		}
+		off := logAbs(a.y, a.words)
 		switch {
-		case math.Abs(imag(x)) < nearest/100 && a.step < nearest/10 && a.guesses < mostGuesses:
+		case off < nearest-7 && a.step < nearest-3 && a.guesses < mostGuesses:
 			a.guesses++
 			a.link = i
 			a.y.SetInt64(0)
 			a.normalise()
 			a.log, a.tries = math.Inf(1), 0
 			s.look(i)
-		case twin >= 0 && s.roots[twin].link < 0 && twinDistance < math.Min(nearest, second)/10 && a.step < math.Abs(imag(x))/8 && a.guesses < mostGuesses:
+		case twin >= 0 && s.roots[twin].link < 0 && twinDistance < math.Min(nearest, second)-3 && a.step < off-3 && a.guesses < mostGuesses:
 			a.guesses++
 			leader, follower := min(i, twin), max(i, twin)
 			s.roots[leader].link, s.roots[follower].link = follower, leader
@@ -61,10 +76,10 @@ func (s *rootSolver) match() {
 // mostGuesses is how often a point is tried on the axis or as one of a pair.
 const mostGuesses = 4
 
-// distances returns |z_i − z_j| and |conj z_i − z_j| in units of 2^k_i.
+// distances returns log2 of |z_i − z_j| and |conj z_i − z_j| in units of 2^k_i.
 func (s *rootSolver) distances(i, j int) (to, across float64) {
 	d, e := s.difference(i, j)
-	to = math.Ldexp(cmplx.Abs(d), e)
+	to = math.Log2(cmplx.Abs(d)) + float64(e)
 	if s.roots[i].y.Sign() == 0 {
 		return to, to
 	}
@@ -72,7 +87,7 @@ func (s *rootSolver) distances(i, j int) (to, across float64) {
 	a.y.Neg(a.y)
 	d, e = s.difference(i, j)
 	a.y.Neg(a.y)
-	return to, math.Ldexp(cmplx.Abs(d), e)
+	return to, math.Log2(cmplx.Abs(d)) + float64(e)
 }
 
 // isolated tells whether the discs are disjoint; where they are not, it sets

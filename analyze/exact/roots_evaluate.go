@@ -4,6 +4,7 @@ import (
 	"math"
 	"math/big"
 	"math/bits"
+	"math/cmplx"
 )
 
 // evaluator computes p(z) and z·p'(z) for complex z in fixed point of any
@@ -107,9 +108,9 @@ type fixedPoint struct {
 
 // evaluation is the outcome: the logarithms are base 2 and relative to 2^M.
 type evaluation struct {
-	ratio          complex128 // z·p'(z)/p(z); meaningless where p is 0
-	logP, logD     float64    // of the computed |p| and |z p'|, −Inf for 0
-	logEP, logED   float64    // of the error bounds
+	ratio          wide    // z·p'(z)/p(z); meaningless where p is 0
+	logP, logD     float64 // of the computed |p| and |z p'|, −Inf for 0
+	logEP, logED   float64 // of the error bounds
 	words          int
 	pr, pi, dr, di []uint64 // B_0 and z·p' as computed (shared scratch)
 	fraction       int      // F
@@ -207,11 +208,10 @@ func (e *evaluator) conclude(z *fixedPoint, w, fraction int, s *scratch) evaluat
 	out.logED = math.Log2(15*n*n) - float64(fraction)
 	if pr != 0 || pi != 0 {
 		r := complex(dr, di) / complex(pr, pi)
-		scale := min(max(de-pe, -1000), 1000)
-		out.ratio = complex(math.Ldexp(real(r), scale), math.Ldexp(imag(r), scale))
 		if z.vneg != z.uneg { // back from the first quadrant
-			out.ratio = complex(real(out.ratio), -imag(out.ratio))
+			r = cmplx.Conj(r)
 		}
+		out.ratio = wide{r, de - pe}.normal()
 	}
 	return out
 }

@@ -52,7 +52,7 @@ type approximation struct {
 	work      int     // W of the evaluations
 	log       float64 // the root is within 2^log·|z|; +Inf where nothing is known
 	goal      float64 // wanted: log ≤ −goal
-	step      float64 // size of the last correction, relative
+	step      float64 // log2 of the size of the last correction, relative
 	tries     int     // corrections since the last change of plan
 	displaced int     // times that it was sent elsewhere
 	guesses   int     // times that match took it for real or for one of a pair
@@ -152,7 +152,7 @@ func (s *rootSolver) begin(ctx context.Context) error {
 }
 
 func newApproximation(z start) approximation {
-	a := approximation{words: 1, k: z.k, work: 2, log: math.Inf(1), step: 0x1p-10, link: -1}
+	a := approximation{words: 1, k: z.k, work: 2, log: math.Inf(1), step: -10, link: -1}
 	a.x = scaleFloat(real(z.x), 63)
 	a.y = scaleFloat(imag(z.x), 63)
 	a.normalise()
@@ -340,7 +340,7 @@ func (s *rootSolver) improve(i int) (done bool) {
 	if a.goal > s.capacity(a.words) && -a.log > s.capacity(a.words)-20 {
 		a.lengthen(a.words + 1)
 	}
-	s.correct(i, 1/(ev.ratio-s.repulsion(i)))
+	s.correct(i, ev.ratio.add(s.repulsion(i).neg()).inverse())
 	return false
 }
 
@@ -358,24 +358,24 @@ func bound(ev *evaluation) float64 {
 }
 
 // correct replaces z by z·(1 − step).
-func (s *rootSolver) correct(i int, step complex128) {
+func (s *rootSolver) correct(i int, step wide) {
 	a := &s.roots[i]
-	size := cmplx.Abs(step)
+	size := step.log()
 	if a.link == i {
-		step = complex(real(step), 0)
+		step.x = complex(real(step.x), 0)
 	}
-	x, y := real(s.views[i].x), imag(s.views[i].x)
-	if size > 0.5 {
-		z := start{s.views[i].x * (1 - step), a.k}.normal()
+	if size > -1 {
+		z := start{s.views[i].x * (1 - step.float()), a.k}.normal()
 		if s.value.rim.outside(z) {
 			z = s.value.rim.again(i, a.tries)
 		}
 		s.place(i, z)
 		return
 	}
-	shift := 64*a.words - 1
-	a.x.Sub(a.x, scaleFloat(x*real(step)-y*imag(step), shift))
-	a.y.Sub(a.y, scaleFloat(x*imag(step)+y*real(step), shift))
+	shift := 64*a.words - 1 + step.k
+	d := s.views[i].x * step.x
+	a.x.Sub(a.x, scaleFloat(real(d), shift))
+	a.y.Sub(a.y, scaleFloat(imag(d), shift))
 	a.normalise()
 	a.step = size
 	a.log = math.Inf(1)
@@ -396,7 +396,7 @@ func (s *rootSolver) place(i int, z start) {
 	}
 	a.x, a.y, a.k = scaleFloat(real(z.x), 64*a.words-1), scaleFloat(imag(z.x), 64*a.words-1), z.k
 	a.normalise()
-	a.log, a.step = math.Inf(1), 1
+	a.log, a.step = math.Inf(1), 0
 	a.tries++
 }
 
@@ -419,8 +419,8 @@ func (s *rootSolver) rethink(i int) {
 // is close to it.
 func (s *rootSolver) leaveAxis(i int) {
 	a := &s.roots[i]
-	_, e := math.Frexp(math.Min(a.step, 0x1p-10))
-	a.y.Rsh(a.x, uint(min(-e, 64*a.words-2)))
+	size := math.Floor(math.Min(a.step, -10))
+	a.y.Rsh(a.x, uint(math.Min(-size-1, float64(64*a.words-2))))
 	if a.y.Sign() == 0 {
 		a.y.SetInt64(1)
 	}
@@ -433,12 +433,12 @@ func (s *rootSolver) leaveAxis(i int) {
 
 // repulsion is Σ z_i/(z_i − z_j), with exact differences where the views are
 // too close to tell.
-func (s *rootSolver) repulsion(i int) complex128 {
-	sum, close := repulsion(s.views, i)
+func (s *rootSolver) repulsion(i int) wide {
+	rough, close := repulsion(s.views, i)
 	if !close {
-		return sum
+		return wide{rough, 0}.normal()
 	}
-	sum = 0
+	var sum wide
 	x, k := s.views[i].x, s.views[i].k
 	for j := range s.views {
 		if j == i {
@@ -449,7 +449,7 @@ func (s *rootSolver) repulsion(i int) complex128 {
 		case shift > 60:
 			continue
 		case shift < -60:
-			sum += 1
+			sum = sum.add(wide{1, 0})
 			continue
 		}
 		d := x - s.views[j].x*complex(math.Ldexp(1, shift), 0)
@@ -460,9 +460,7 @@ func (s *rootSolver) repulsion(i int) complex128 {
 		if d == 0 {
 			continue
 		}
-		t := x / d
-		e = min(max(-e, -1000), 1000)
-		sum += complex(math.Ldexp(real(t), e), math.Ldexp(imag(t), e))
+		sum = sum.add(wide{x / d, -e}.normal())
 	}
 	return sum
 }
