@@ -101,3 +101,23 @@ func BenchmarkFactorAndSolve(b *testing.B) {
 		}
 	})
 }
+
+// BenchmarkSweep is one frequency of a sweep with the bound of its error, on
+// one thread.
+func BenchmarkSweep(b *testing.B) {
+	benchmarks(b, func(b *testing.B, s *Solver, sys *network.System) {
+		o, c := drivingPoint(b, sys, 1)
+		ask, err := s.question([]network.Output{o}, []network.Column{c})
+		if err != nil {
+			b.Fatal(err)
+		}
+		w := s.sweeper(ask)
+		omega := 1e5
+		for b.Loop() {
+			omega *= 1.0001
+			if _, err := w.at(context.Background(), omega); err != nil {
+				b.Fatal(err)
+			}
+		}
+	})
+}

@@ -28,6 +28,7 @@ type front struct {
 	base              int32
 	above             int32 // −1 for none
 	children          int32 // how many
+	work              int32 // steps of its elimination, about
 }
 
 // group is a front in the making.
@@ -101,6 +102,8 @@ func (f *fronts) lay(t *front, o *symmetricOrder, last int32, position []int32) 
 	}
 	slices.Sort(f.rows[t.rows+t.wide:])
 	f.size += int(t.wide) * int(t.tall)
+	below := float64(t.tall - t.wide)
+	t.work = int32(min(products(t.wide, t.tall)+below*below+64, cancelInterval))
 	f.most = max(f.most, t.tall)
 }
 
@@ -246,7 +249,7 @@ func (f *fronts) factorise(ctx context.Context, x []complex128, w *frontWork, li
 			bottom -= k * k
 			f.extend(c, w.stack[bottom:bottom+k*k], values, rest)
 		}
-		if done += int(products(t.wide, t.tall)) + below*below; done > cancelInterval {
+		if done += int(t.work); done > cancelInterval {
 			done = 0
 			if err := ctx.Err(); err != nil {
 				return err

@@ -189,6 +189,7 @@ func differ(x float64, r *big.Rat) float64 {
 func TestBoundsCoverTheError(t *testing.T) {
 	ctx := context.Background()
 	singular, wide, answers := 0, 0, 0
+	used := map[string]int{}
 	const networks = 200
 	for seed := range uint64(networks) {
 		r := rand.New(rand.NewPCG(seed, 7))
@@ -203,8 +204,13 @@ func TestBoundsCoverTheError(t *testing.T) {
 		}
 		outs, cols := quantities(r, sys)
 		for range 3 {
-			omega := new(big.Rat).SetFloat64(math.Exp(r.Float64()*25 - 3))
+			w := math.Exp(r.Float64()*25 - 3)
+			omega := new(big.Rat).SetFloat64(w)
 			got, err := s.AtRat(ctx, omega, outs, cols)
+			swept, sweepErr := s.Sweep(ctx, []float64{w}, outs, cols)
+			if sweepErr != nil || (swept[0] == nil) != (err != nil) {
+				t.Fatalf("seed %d: %v, swept %v", seed, err, sweepErr)
+			}
 			for j, c := range cols {
 				xr, xi, exactErr := exactSolution(ctx, sys, omega, c)
 				var singularErr *exact.SingularError
@@ -222,6 +228,10 @@ func TestBoundsCoverTheError(t *testing.T) {
 					if !(d <= got.Radius[i][j]) {
 						t.Errorf("seed %d output %d column %d: off by %g, radius %g, value %v, condition %g", seed, i, j, d, got.Radius[i][j], got.Values[i][j], got.Condition)
 					}
+					if d := distance(swept[0].Values[i][j], re, im); !(d <= swept[0].Radius[i][j]) {
+						t.Errorf("seed %d output %d column %d: swept, off by %g, radius %g", seed, i, j, d, swept[0].Radius[i][j])
+					}
+					used[got.Method]++
 					if got.Radius[i][j] > 1e-12*modulus(got.Values[i][j])+1e-250 {
 						wide++
 					}
@@ -229,7 +239,10 @@ func TestBoundsCoverTheError(t *testing.T) {
 			}
 		}
 	}
-	t.Logf("%d answers, %d singular, %d with a radius above 1e-12 of the value", answers, singular, wide)
+	t.Logf("%d answers, %d singular, %d with a radius above 1e-12 of the value, %v", answers, singular, wide, used)
+	if used["LU"] < answers/8 || used["LDLᵀ"] < answers/8 {
+		t.Errorf("%v", used)
+	}
 	if answers < networks*10 || singular > answers/4 || wide > answers/20 {
 		t.Errorf("%d answers, %d singular, %d with wide radius", answers, singular, wide)
 	}

@@ -1,6 +1,9 @@
 package float
 
-import "math/big"
+import (
+	"math/big"
+	"slices"
+)
 
 // vector is a sparse vector with entries of double length: g + s·c.
 type vector struct {
@@ -38,6 +41,11 @@ func (v *vector) add(i int, value *big.Rat, reactive bool) error {
 		v.g[at] = v.g[at].plus(d)
 	}
 	return nil
+}
+
+// equal tells whether two vectors have the same entries in the same order.
+func (v *vector) equal(w *vector) bool {
+	return slices.Equal(v.index, w.index) && slices.Equal(v.g, w.g) && slices.Equal(v.c, w.c)
 }
 
 // residue is b − A·x (or o − Aᵀ·y) with what went into it.

@@ -21,6 +21,7 @@ var ErrSingular = errors.New("the equations are singular at this frequency in do
 type Solver struct {
 	m           *matrix
 	multipliers []float64 // of rows that make the matrix symmetric, or nil
+	symmetric   bool      // it is symmetric as it stands, exactly
 
 	mu      sync.Mutex
 	plan    *symmetricPlan // the last that served
@@ -28,20 +29,34 @@ type Solver struct {
 	spare   []*workspace
 }
 
-// Result is what outputs show at one frequency for right-hand sides: the
-// voltage or current Values[i][j] of output i driven by column j, as a complex
-// amplitude, in the output's unit. Its true value is within Radius[i][j]:
-// the residual was evaluated to about 100 bits, and with the solution of the
-// transposed equations the error of the value itself follows from it, to
-// first order as a correction that has been applied, to second order as part
-// of the radius. Condition is an estimate of the condition number in the
-// 1-norm of the matrix with rows and columns scaled.
+// Result is what outputs show at one frequency for right-hand sides.
 type Result struct {
-	Values    [][]complex128
-	Radius    [][]float64
+	// Values[i][j] is output i driven by column j, as a complex amplitude in
+	// the output's unit. The true value is within Radius[i][j] of it.
+	Values [][]complex128
+	Radius [][]float64
+	// Amplification[i][j] bounds how much more the value changes than the
+	// entries of the equations, both relative and to first order: the
+	// condition number of the value itself (R. D. Skeel, Scaling for numerical
+	// stability in Gaussian elimination, J. ACM 26 (1979)).
+	Amplification [][]float64
+	// Condition estimates the condition number, in the 1-norm, of the matrix
+	// with rows and columns scaled; 0 where it was not asked for.
 	Condition float64
 	// Method is "LU" or "LDLᵀ".
 	Method string
+}
+
+// newResult makes room for so many outputs and columns.
+func newResult(outs, cols int, method string) *Result {
+	r := &Result{Method: method, Values: make([][]complex128, outs), Radius: make([][]float64, outs), Amplification: make([][]float64, outs)}
+	values, floats := make([]complex128, outs*cols), make([]float64, 2*outs*cols)
+	for i := range outs {
+		r.Values[i] = values[i*cols : (i+1)*cols : (i+1)*cols]
+		r.Radius[i] = floats[2*i*cols : (2*i+1)*cols : (2*i+1)*cols]
+		r.Amplification[i] = floats[(2*i+1)*cols : (2*i+2)*cols : (2*i+2)*cols]
+	}
+	return r
 }
 
 // New prepares the equations of a system. The error is ErrRange.
@@ -50,7 +65,9 @@ func New(sys *network.System) (*Solver, error) {
 	if err != nil {
 		return nil, err
 	}
-	return &Solver{m: m, multipliers: m.symmetrise()}, nil
+	s := &Solver{m: m}
+	s.multipliers, s.symmetric = m.symmetrise()
+	return s, nil
 }
 
 // At returns what the outputs show at the angular frequency omega (rad/s, 0
@@ -78,8 +95,8 @@ type workspace struct {
 	a, scaled, x, y []complex128
 	w               []double
 	factor          factor // one of the next two
-	symmetric       *symmetricFactor
-	general         *luFactor
+	ldl             *symmetricFactor
+	lu              *luFactor
 }
 
 func (s *Solver) workspace() *workspace {
@@ -106,6 +123,15 @@ func (s *Solver) release(w *workspace) {
 }
 
 func (s *Solver) at(ctx context.Context, omega double, outs []network.Output, cols []network.Column) (*Result, error) {
+	ask, err := s.question(outs, cols)
+	if err != nil {
+		return nil, err
+	}
+	return s.precise(ctx, omega, ask)
+}
+
+// precise answers with residuals of double length.
+func (s *Solver) precise(ctx context.Context, omega double, ask *question) (*Result, error) {
 	if err := ctx.Err(); err != nil {
 		return nil, err
 	}
@@ -115,7 +141,7 @@ func (s *Solver) at(ctx context.Context, omega double, outs []network.Output, co
 	for k, c := range s.m.c {
 		q.w[k] = c.times(omega)
 	}
-	return attempt(q, ctx, func() (*Result, error) { return q.answer(ctx, outs, cols) })
+	return attempt(q, ctx, func() (*Result, error) { return q.answer(ctx, ask) })
 }
 
 // attempt factorises and asks, and does both again in other ways as long as
@@ -164,22 +190,22 @@ func (q *query) factorise(ctx context.Context, way int) error {
 	q.mu.Unlock()
 	switch {
 	case way == symmetricAgain && plan != nil:
-		if q.symmetric == nil || q.symmetric.symmetricPlan != plan {
-			q.symmetric = plan.factor()
+		if q.ldl == nil || q.ldl.symmetricPlan != plan {
+			q.ldl = plan.factor()
 		}
-		q.factor = q.symmetric
-		return q.symmetric.factorise(ctx, q.omega.hi, usedLimit)
+		q.factor = q.ldl
+		return q.ldl.factorise(ctx, q.omega.hi, usedLimit)
 	case way == symmetricAnew && q.multipliers != nil:
 		return q.symmetricAnew(ctx)
 	case way == generalAgain && pattern != nil:
-		if q.general == nil || q.general.luPattern != pattern {
-			q.general = pattern.factor()
+		if q.lu == nil || q.lu.luPattern != pattern {
+			q.lu = pattern.factor()
 		}
 		copy(q.scaled, q.a)
 		pattern.scale.apply(q.m, q.scaled)
 		clear(q.x)
-		q.factor = q.general
-		return pattern.refactorise(ctx, q.scaled, q.general, q.x)
+		q.factor = q.lu
+		return pattern.refactorise(ctx, q.scaled, q.lu, q.x)
 	case way == generalAnew:
 		return q.generalAnew(ctx)
 	}
@@ -191,9 +217,9 @@ func (q *query) symmetricAnew(ctx context.Context) error {
 	if err != nil {
 		return err
 	}
-	q.symmetric = plan.factor()
-	q.factor = q.symmetric
-	if err := q.symmetric.factorise(ctx, q.omega.hi, freshLimit); err != nil {
+	q.ldl = plan.factor()
+	q.factor = q.ldl
+	if err := q.ldl.factorise(ctx, q.omega.hi, freshLimit); err != nil {
 		return err
 	}
 	q.mu.Lock()
@@ -210,13 +236,13 @@ func (q *query) generalAnew(ctx context.Context) error {
 	if err != nil {
 		return err
 	}
-	q.general, err = q.m.factorise(ctx, q.scaled, scale, cols, preferred)
+	q.lu, err = q.m.factorise(ctx, q.scaled, scale, cols, preferred)
 	if err != nil {
 		return err
 	}
-	q.factor = q.general
+	q.factor = q.lu
 	q.mu.Lock()
-	q.pattern = q.general.luPattern
+	q.pattern = q.lu.luPattern
 	q.mu.Unlock()
 	return nil
 }
@@ -237,6 +263,7 @@ type factor interface {
 type solution struct {
 	x     []complex128
 	r     []complex128 // the residual, of a relative error of about 2^-53
+	size  []float64    // |A|·|x| + |b|
 	slack []float64    // an absolute bound of the error of r
 	next  []complex128 // the correction that r asks for, not applied
 }
@@ -288,71 +315,89 @@ func (q *query) refine(ctx context.Context, b *vector, transposed bool) (*soluti
 		q.residue.start(b, q.omega)
 		q.residue.subtract(q.m, q.w, s.x, transposed)
 	}
+	s.size = append([]float64(nil), q.residue.size...)
 	for i := range n {
 		s.slack[i] = 256*unit2*q.residue.size[i] + 2*unit*norm1(s.r[i]) + floor
 	}
 	return s, nil
 }
 
-// answer solves for the columns, and the transposed equations for the
-// outputs.
-func (q *query) answer(ctx context.Context, outs []network.Output, cols []network.Column) (*Result, error) {
-	out := &Result{Values: make([][]complex128, len(outs)), Radius: make([][]float64, len(outs)), Method: q.factor.method()}
-	sols := make([]*solution, len(cols))
-	for j, c := range cols {
-		b, err := columnVector(c)
-		if err != nil {
-			return nil, err
+// question is what is asked, with values rounded to the doubles that are
+// computed with.
+type question struct {
+	outs, cols []*vector
+	direct     [][]double
+	// same[i] is the column that output i equals, where the matrix is
+	// symmetric, so that its transposed solution is that of the column; or −1.
+	same []int
+}
+
+func (s *Solver) question(outs []network.Output, cols []network.Column) (*question, error) {
+	q := &question{same: make([]int, len(outs))}
+	for _, c := range cols {
+		v := &vector{}
+		for _, x := range c.RHS {
+			if err := v.add(x.Index, x.Value, false); err != nil {
+				return nil, err
+			}
 		}
+		q.cols = append(q.cols, v)
+	}
+	for i, o := range outs {
+		v := &vector{}
+		for _, x := range o.G {
+			if err := v.add(x.Index, x.Value, false); err != nil {
+				return nil, err
+			}
+		}
+		for _, x := range o.C {
+			if err := v.add(x.Index, x.Value, true); err != nil {
+				return nil, err
+			}
+		}
+		q.outs = append(q.outs, v)
+		q.direct = append(q.direct, make([]double, len(cols)))
+		q.same[i] = -1
+		for j, c := range cols {
+			var ok bool
+			if q.direct[i][j], ok = doubleOf(direct(o, c)); !ok {
+				return nil, ErrRange
+			}
+			if s.symmetric && v.equal(q.cols[j]) {
+				q.same[i] = j
+			}
+		}
+	}
+	return q, nil
+}
+
+// answer solves for the columns, and the transposed equations for the outputs.
+func (q *query) answer(ctx context.Context, ask *question) (*Result, error) {
+	out := newResult(len(ask.outs), len(ask.cols), q.factor.method())
+	sols := make([]*solution, len(ask.cols))
+	var err error
+	for j, b := range ask.cols {
 		if sols[j], err = q.refine(ctx, b, false); err != nil {
 			return nil, err
 		}
 	}
-	for i, o := range outs {
-		out.Values[i], out.Radius[i] = make([]complex128, len(cols)), make([]float64, len(cols))
-		v, err := outputVector(o)
-		if err != nil {
+	for i, o := range ask.outs {
+		var dual *solution
+		if j := ask.same[i]; j >= 0 {
+			dual = sols[j]
+		} else if dual, err = q.refine(ctx, o, true); err != nil {
 			return nil, err
 		}
-		dual, err := q.refine(ctx, v, true)
-		if err != nil {
-			return nil, err
-		}
-		for j, c := range cols {
-			out.Values[i][j], out.Radius[i][j] = q.value(v, dual, sols[j], direct(o, c))
-			if !(out.Radius[i][j] < largest) {
+		for j := range sols {
+			v, radius, amplified := q.value(o, dual, sols[j], ask.direct[i][j])
+			if !(radius < largest) {
 				return nil, ErrRange
 			}
+			out.Values[i][j], out.Radius[i][j], out.Amplification[i][j] = v, radius, amplified
 		}
 	}
-	var err error
 	out.Condition, err = q.condition(ctx)
 	return out, err
-}
-
-func columnVector(c network.Column) (*vector, error) {
-	v := &vector{}
-	for _, x := range c.RHS {
-		if err := v.add(x.Index, x.Value, false); err != nil {
-			return nil, err
-		}
-	}
-	return v, nil
-}
-
-func outputVector(o network.Output) (*vector, error) {
-	v := &vector{}
-	for _, x := range o.G {
-		if err := v.add(x.Index, x.Value, false); err != nil {
-			return nil, err
-		}
-	}
-	for _, x := range o.C {
-		if err := v.add(x.Index, x.Value, true); err != nil {
-			return nil, err
-		}
-	}
-	return v, nil
 }
 
 // direct is what an output holds of a column without the network's doing.
@@ -368,16 +413,17 @@ func direct(o network.Output, c network.Column) *big.Rat {
 	return sum
 }
 
-// value returns oᵀ·A⁻¹·b + d with a bound of its error. For the solutions y of
-// Aᵀ·y = o and x̂ ≈ x, with the residual r of x̂,
+// value returns oᵀ·A⁻¹·b + d with a bound of its error and its amplification.
+// For the solution y of Aᵀ·y = o and the approximations x̂ and ŷ, with the
+// residual r of x̂,
 //
 //	oᵀ·x − oᵀ·x̂ = yᵀ·r = ŷᵀ·r + (y − ŷ)ᵀ·r, and (y − ŷ)ᵀ·r = ρᵀ·(x − x̂)
 //
 // with the residual ρ of ŷ. The first term is added, the second bounded with
 // the correction that r asks for in place of x − x̂, taken twice.
-func (q *query) value(o *vector, y, x *solution, d *big.Rat) (complex128, float64) {
-	var re, im double
-	radius := floor
+func (q *query) value(o *vector, y, x *solution, direct double) (v complex128, radius, amplified float64) {
+	re, im := direct, double{}
+	radius = floor + 64*unit2*math.Abs(direct.hi)
 	for k, i := range o.index {
 		g, c := o.at(k, q.omega)
 		a, b := real(x.x[i]), imag(x.x[i])
@@ -385,9 +431,6 @@ func (q *query) value(o *vector, y, x *solution, d *big.Rat) (complex128, float6
 		im = im.plus(g.scaled(b)).plus(c.scaled(a))
 		radius += 64 * unit2 * norm1(complex(g.hi, c.hi)) * norm1(x.x[i])
 	}
-	direct, _ := doubleOf(d)
-	re = re.plus(direct)
-	radius += 64 * unit2 * math.Abs(direct.hi)
 	var first complex128
 	size, rest := 0.0, 0.0
 	for i, v := range y.x {
@@ -395,10 +438,19 @@ func (q *query) value(o *vector, y, x *solution, d *big.Rat) (complex128, float6
 		size += norm1(v) * norm1(x.r[i])
 		rest += norm1(v) * x.slack[i]
 		rest += 2 * (norm1(y.r[i]) + y.slack[i]) * (norm1(x.next[i]) + unit*norm1(x.x[i]))
+		amplified += norm1(v) * x.size[i]
 	}
 	re, im = re.plus(double{real(first), 0}), im.plus(double{imag(first), 0})
 	radius += rest + float64(q.m.n+8)*2*unit*size
-	v := complex(re.value(), im.value())
+	v = complex(re.value(), im.value())
 	radius += unit*norm1(v) + 8*unit*radius
-	return v, radius
+	return v, radius, relative(amplified, v)
+}
+
+// relative is size/|v|.
+func relative(size float64, v complex128) float64 {
+	if size == 0 {
+		return 0
+	}
+	return size / modulus(v)
 }

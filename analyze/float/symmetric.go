@@ -9,24 +9,26 @@ import (
 // symmetrise looks for multipliers d of the rows that make the matrix
 // symmetric for every s, d[i]·a[i][j] = d[j]·a[j][i] up to rounding. Networks
 // of resistors, inductors, capacitors, couplings and independent sources have
-// them all 1. It returns nil where there are none.
-func (m *matrix) symmetrise() []float64 {
+// them all 1. It returns nil where there are none. exact tells that the matrix
+// is symmetric as it stands.
+func (m *matrix) symmetrise() (d []float64, exact bool) {
 	start, col, at := m.transposed()
 	opposite := make([]int32, len(m.row)) // the entry of (j, i) for that of (i, j)
 	for j := range m.n {
 		// Rows of column j and columns of row j, both ascending, must agree.
 		p, q := m.start[j], start[j]
 		if m.start[j+1]-p != start[j+1]-q {
-			return nil
+			return nil, false
 		}
 		for ; p < m.start[j+1]; p, q = p+1, q+1 {
 			if m.row[p] != col[q] {
-				return nil
+				return nil, false
 			}
 			opposite[p] = at[q]
 		}
 	}
-	d := make([]float64, m.n)
+	d = make([]float64, m.n)
+	exact = true
 	var queue []int32
 	for root := range int32(m.n) {
 		if d[root] != 0 {
@@ -42,17 +44,18 @@ func (m *matrix) symmetrise() []float64 {
 				if d[i] == 0 {
 					// d[i]·a[i][j] = d[j]·a[j][i]
 					if d[i] = d[j] * ratio(m, o, p); d[i] == 0 {
-						return nil
+						return nil, false
 					}
 					queue = append(queue, i)
 				}
 				if !m.balanced(p, o, d[i], d[j]) {
-					return nil
+					return nil, false
 				}
+				exact = exact && m.g[p] == m.g[o] && m.c[p] == m.c[o]
 			}
 		}
 	}
-	return d
+	return d, exact
 }
 
 // ratio returns entry o by entry p, 0 for none that makes sense.
