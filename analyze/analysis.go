@@ -13,6 +13,9 @@ type Analysis struct {
 	description *dialect.Description
 	memo        memo // what depends on places in the text
 
+	asWritten sync.Once  // guards stretches
+	stretches []interval // of the network as it is written
+
 	previous *Analysis  // until shared is first used
 	sharing  sync.Mutex // guards previous and common
 	common   *arithmetic

@@ -132,7 +132,10 @@ func (a *Analysis) model(_ context.Context, c configuration) *model {
 // switches not set by hand are taken; nil is after their last event.
 func (a *Analysis) build(c configuration, at *number.Exact) *network.Network {
 	d := a.description
-	n := &network.Network{Nodes: len(d.Nodes), Ground: d.Ground, Ported: make([]bool, len(d.Nodes))}
+	n := &network.Network{
+		Nodes: len(d.Nodes), Ground: d.Ground, Ported: make([]bool, len(d.Nodes)),
+		Elements: make([]network.Element, 0, len(d.Parts)+len(c.drives)),
+	}
 	for i := range d.Nodes {
 		n.Ported[i] = d.Nodes[i].Ported
 	}

@@ -2,6 +2,7 @@ package analyze
 
 import (
 	"sort"
+	"sync"
 
 	"portlight/analyze/network"
 	"portlight/dialect"
@@ -13,6 +14,8 @@ type interval struct {
 	start   number.Exact // s; the first is 0
 	network *network.Network
 	turned  []int // the switches that turn at start
+	// problems are those of the network's structure, found once.
+	problems func() []network.Problem
 }
 
 // turns lists the instants t ≥ 0 at which switches turn, in order, and the
@@ -49,6 +52,14 @@ func (a *Analysis) turns() (times []number.Exact, turned [][]int) {
 // intervals gives the networks from t = 0 on. A configuration whose switches
 // are set by hand has one interval only.
 func (a *Analysis) intervals(c configuration) []interval {
+	if len(c.switches) > 0 || len(c.without) > 0 || len(c.drives) > 0 {
+		return a.newIntervals(c)
+	}
+	a.asWritten.Do(func() { a.stretches = a.newIntervals(c) })
+	return a.stretches
+}
+
+func (a *Analysis) newIntervals(c configuration) []interval {
 	zero := number.FromInt(0)
 	times, turned := a.turns()
 	var out []interval
@@ -60,6 +71,7 @@ func (a *Analysis) intervals(c configuration) []interval {
 	}
 	for i := range out {
 		out[i].network = a.build(c, &out[i].start)
+		out[i].problems = sync.OnceValue(out[i].network.Inspect)
 	}
 	return out
 }
