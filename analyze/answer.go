@@ -199,10 +199,13 @@ type Verdict struct {
 	InTime   bool
 	Where    number.Ball
 	// InTolerance tells about values inside their tolerances: Broken names in
-	// Corner which ends of them break the limit, with the margin there; Holds
-	// means that no part has a tolerance; Undecided that no corner tried breaks it.
-	InTolerance               Decision
-	Corner                    string
+	// Corner values that break the limit; Holds means that no part has a
+	// tolerance; Undecided that a search found nothing that breaks it.
+	InTolerance Decision
+	Corner      string
+	// Searched says that CornerMargin and CornerWorst are the margin and the
+	// value at the worst point a search inside the tolerances has found.
+	Searched                  bool
 	CornerMargin, CornerWorst number.Ball
 	Why                       string // for undecided and refused limits
 }

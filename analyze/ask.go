@@ -41,6 +41,9 @@ func (a *Analysis) Ask(ctx context.Context, text string) (Answer, error) {
 // ended; everything a user can cause is a RefusedAnswer.
 func (a *Analysis) Answer(ctx context.Context, q *dialect.Question) (Answer, error) {
 	head := Question{Text: q.Text, Origin: q.Origin}
+	if q.Why != "" {
+		return &RefusedAnswer{head, "faults", q.Why + ": mend it first"}, nil
+	}
 	if a.description.Faults {
 		return &RefusedAnswer{head, "faults", "the network is not complete because of the errors reported: mend them first"}, nil
 	}

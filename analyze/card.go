@@ -175,7 +175,7 @@ func (a *Analysis) toleranceWords(v *Verdict) string {
 	case v.InTolerance == Holds:
 		return "no part has a tolerance"
 	}
-	return "no corner of the tolerances that was tried breaks it; that is a search, not a proof"
+	return "nothing found inside the tolerances breaks it; that is a search, not a proof"
 }
 
 // frequencyNear is the frequency, in Hz as text, to show impedances at: that

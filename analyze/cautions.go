@@ -29,6 +29,10 @@ var (
 // without a warning.
 const quickDischarge = 2.0
 
+// atOnce is a time, in s, below which nobody could reach what discharges
+// itself; nothing is said of it (common sense, no source).
+const atOnce = 0.1
+
 // mostCautioned is up to how many nodes the cautions look at each node.
 const mostCautioned = 200
 
@@ -248,7 +252,7 @@ func (a *Analysis) remainingVoltage(ctx context.Context) (*dialect.Finding, erro
 		if passOn(ctx, err) {
 			return nil, err
 		}
-		if err != nil || seconds <= longest {
+		if err != nil || seconds <= longest || seconds < atOnce {
 			continue
 		}
 		longest = seconds

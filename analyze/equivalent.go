@@ -14,6 +14,9 @@ import (
 func (a *Analysis) equivalentAnswer(ctx context.Context, q *dialect.Question, head Question, c configuration) (Answer, error) {
 	port := a.description.Ports[q.Ports[0]]
 	out := &EquivalentAnswer{Question: head, Norton: q.Sort == dialect.AskNorton}
+	if names := a.partNames(a.sourcesAcross(port.Plus, port.Minus)); len(names) > 0 {
+		out.Remarks = append(out.Remarks, fmt.Sprintf("%s stands across the port and belongs to the network here; z[%s] leaves it out", list(names), port.Name))
+	}
 	var err error
 	if out.Impedance, out.WhyImpedance, err = a.portImpedance(ctx, head, port, c); err != nil {
 		return nil, err

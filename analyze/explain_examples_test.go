@@ -1,4 +1,4 @@
-package analyze
+package analyze_test
 
 import (
 	"context"
@@ -6,6 +6,7 @@ import (
 	"testing"
 	"time"
 
+	"portlight/analyze"
 	"portlight/dialect"
 )
 
@@ -19,8 +20,10 @@ func checkText(name, text string, files map[string]string) *dialect.Checked {
 	})
 }
 
-// analysisOf analyses a text that uses no other file.
-func analysisOf(text string) *Analysis { return New(checkText("test.plight", text, nil)) }
+// analysisOfText analyses a text that uses no other file.
+func analysisOfText(text string) *analyze.Analysis {
+	return analyze.New(checkText("test.plight", text, nil))
+}
 
 // soon is a context that ends a test which hangs long before the test binary's own limit does.
 func soon(t *testing.T) context.Context {
@@ -45,7 +48,7 @@ func TestEveryExplanationExample(t *testing.T) {
 			if e.Example == "" {
 				t.Fatal("there is no example")
 			}
-			a := New(checkText("example.plight", e.Example, e.Files))
+			a := analyze.New(checkText("example.plight", e.Example, e.Files))
 			findings, err := a.Findings(soon(t))
 			if err != nil {
 				t.Fatal(err)
@@ -67,9 +70,9 @@ func TestEveryExplanationExample(t *testing.T) {
 				if err != nil {
 					t.Fatal(err)
 				}
-				refused, ok := answer.(*RefusedAnswer)
+				refused, ok := answer.(*analyze.RefusedAnswer)
 				if !ok || refused.Code != e.Code {
-					t.Fatalf("%s is answered with %T %v", e.Question, answer, Words(answer))
+					t.Fatalf("%s is answered with %T %v", e.Question, answer, analyze.Words(answer))
 				}
 				found = true
 			}

@@ -196,7 +196,7 @@ func (a *Analysis) activePlace() dialect.Origin {
 func (a *Analysis) conflicts(ctx context.Context) ([]dialect.Finding, error) {
 	var found []dialect.Finding
 	for i, iv := range a.intervals(configuration{}) {
-		for _, p := range iv.network.Inspect() {
+		for _, p := range iv.problems() {
 			if p.Kind != network.CapacitorLoop && p.Kind != network.InductorCutset {
 				continue
 			}
@@ -286,7 +286,7 @@ func (a *Analysis) limitFindings(ctx context.Context) ([]dialect.Finding, error)
 				Code: "limit-broken-in-tolerance", Severity: dialect.Warning, Origin: v.Limit.Origin,
 				Message: VerdictWords(*v),
 			})
-		case v.Decision == Undecided:
+		case v.Decision == Undecided && !a.checked.FaultyAt(v.Limit.Origin):
 			found = append(found, dialect.Finding{
 				Code: "limit-undecided", Severity: dialect.Information, Origin: v.Limit.Origin,
 				Message: VerdictWords(*v),
@@ -318,7 +318,7 @@ func (a *Analysis) hiddenModes(ctx context.Context) ([]dialect.Finding, error) {
 		}
 		if len(hidden) > 0 {
 			found = append(found, dialect.Finding{
-				Code: "hidden-mode", Severity: dialect.Information,
+				Code: "hidden-mode", Severity: dialect.Hint,
 				Origin:  dialect.Origin{File: fn.Origin.File, Span: fn.NameSpan, Use: fn.Origin.Use},
 				Message: fmt.Sprintf("%s does not show the natural frequenc%s %s of the network", fn.Name, plural(len(hidden)), list(rootFigures(hidden))),
 			})

@@ -57,10 +57,27 @@ func (a *Analysis) impedance(ctx context.Context, p dialect.Probe, c configurati
 	if err != nil {
 		return f, err
 	}
+	f.remarks = append([]string(nil), f.remarks...)
 	if held := a.holder(at); held != "" && f.constant.IsZero() {
-		f.remarks = append(append([]string(nil), f.remarks...), held)
+		f.remarks = append(f.remarks, held)
 	}
+	f.remarks = append(f.remarks, a.leftOut(p)...)
 	return f, nil
+}
+
+// leftOut says what an impedance is asked without: the part itself, or the
+// source that drives the port.
+func (a *Analysis) leftOut(p dialect.Probe) []string {
+	switch p.Of {
+	case dialect.OfPart:
+		return []string{fmt.Sprintf("what the rest of the network shows to %s, without %[1]s itself", a.description.Parts[p.Part].Name)}
+	case dialect.OfPort:
+		port := a.description.Ports[p.Port]
+		if names := a.partNames(a.sourcesAcross(port.Plus, port.Minus)); len(names) > 0 {
+			return []string{fmt.Sprintf("without %s, which drives the port; z[%s] keeps it, at zero", list(names), a.pairText(port.Plus, port.Minus))}
+		}
+	}
+	return nil
 }
 
 func (a *Analysis) impedanceAt(ctx context.Context, at pair) (form, error) {

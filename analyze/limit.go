@@ -16,6 +16,10 @@ func (a *Analysis) Verdicts(ctx context.Context) ([]Verdict, error) {
 		out := make([]Verdict, 0, len(a.description.Limits))
 		for i := range a.description.Limits {
 			l := &a.description.Limits[i]
+			if l.Why != "" {
+				out = append(out, Verdict{Limit: l, Decision: Undecided, InTolerance: Undecided, Why: l.Why})
+				continue
+			}
 			v, err := recall(ctx, &a.shared().memo, limitKey(l), func(ctx context.Context) (Verdict, error) {
 				return a.verdict(ctx, l)
 			})

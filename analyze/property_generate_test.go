@@ -1,4 +1,4 @@
-package analyze
+package analyze_test
 
 import (
 	"fmt"

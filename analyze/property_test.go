@@ -1,4 +1,4 @@
-package analyze
+package analyze_test
 
 import (
 	"context"
@@ -7,11 +7,13 @@ import (
 	"fmt"
 	"math"
 	"math/big"
+	"math/cmplx"
 	"testing"
 	"time"
 
 	"pgregory.net/rapid"
 
+	"portlight/analyze"
 	"portlight/analyze/response"
 	"portlight/dialect"
 )
@@ -39,7 +41,7 @@ func fewer(t *testing.T, checks, short int) {
 type networkAsker struct {
 	t   *rapid.T
 	g   *generator
-	a   *Analysis
+	a   *analyze.Analysis
 	ctx context.Context
 }
 
@@ -54,10 +56,10 @@ func drawAnalysis(t *rapid.T) *networkAsker {
 	}
 	ctx, cancel := context.WithTimeout(context.Background(), time.Minute)
 	t.Cleanup(cancel)
-	return &networkAsker{t, g, New(c), ctx}
+	return &networkAsker{t, g, analyze.New(c), ctx}
 }
 
-func (n *networkAsker) ask(question string) Answer {
+func (n *networkAsker) ask(question string) analyze.Answer {
 	answer, err := n.a.Ask(n.ctx, question)
 	if err != nil {
 		n.t.Fatalf("%s: %v\n%s", question, err, n.g.text())
@@ -102,7 +104,7 @@ func (n *networkAsker) plain(s *big.Rat, gone map[int]bool, fill func(t *tableau
 }
 
 // sameFunction compares an answer with the plain value at a point.
-func (n *networkAsker) sameFunction(question string, f *FunctionAnswer, s, want *big.Rat) {
+func (n *networkAsker) sameFunction(question string, f *analyze.FunctionAnswer, s, want *big.Rat) {
 	den := f.Ratio.Den.Eval(s)
 	if den.Sign() == 0 {
 		return // a pole, by accident
@@ -114,8 +116,8 @@ func (n *networkAsker) sameFunction(question string, f *FunctionAnswer, s, want 
 
 // refusedRightly fails when a network with a unique solution is refused, or
 // one without is not; it tells whether there is an answer to look at.
-func (n *networkAsker) refusedRightly(question string, answer Answer, sound bool) bool {
-	refused, no := answer.(*RefusedAnswer)
+func (n *networkAsker) refusedRightly(question string, answer analyze.Answer, sound bool) bool {
+	refused, no := answer.(*analyze.RefusedAnswer)
 	switch {
 	case no && sound:
 		n.fail("%s is refused (%s: %s), and the plain equations have one solution", question, refused.Code, refused.Why)
@@ -157,7 +159,7 @@ func (n *networkAsker) function(sound bool) bool {
 	source := rapid.SampledFrom(n.g.sources()).Draw(n.t, "excitation")
 	out := n.g.output("response")
 	name := n.g.branches[source].name
-	a := New(checkText("random.plight", n.g.text()+fmt.Sprintf("function H = %s/%s\n", out.text, name), nil))
+	a := analyze.New(checkText("random.plight", n.g.text()+fmt.Sprintf("function H = %s/%s\n", out.text, name), nil))
 	answer, err := a.Ask(n.ctx, "H")
 	if err != nil {
 		n.fail("H: %v", err)
@@ -171,7 +173,7 @@ func (n *networkAsker) function(sound bool) bool {
 			col[t.current(source)] = big.NewRat(1, 1)
 		})
 		if err == nil {
-			n.sameFunction(question, answer.(*FunctionAnswer), s, of(t, out, x))
+			n.sameFunction(question, answer.(*analyze.FunctionAnswer), s, of(t, out, x))
 		}
 	}
 	return true
@@ -200,7 +202,7 @@ func (n *networkAsker) impedance(sound bool) {
 	for _, s := range n.points() {
 		t, x, err := n.plain(s, nil, inject(a, b))
 		if err == nil {
-			n.sameFunction(question, answer.(*FunctionAnswer), s, of(t, plainOutput{plus: a, minus: b, branch: -1}, x))
+			n.sameFunction(question, answer.(*analyze.FunctionAnswer), s, of(t, plainOutput{plus: a, minus: b, branch: -1}, x))
 		}
 	}
 }
@@ -225,7 +227,7 @@ func (n *networkAsker) partImpedance() {
 	question := fmt.Sprintf("z[%s]", b.name)
 	answer := n.ask(question)
 	sound := n.solvable(n.g.at(nil), gone)
-	if _, refused := answer.(*RefusedAnswer); refused && sound && n.apart(part) {
+	if _, refused := answer.(*analyze.RefusedAnswer); refused && sound && n.apart(part) {
 		return // what is left falls in two: the impedance is infinite
 	}
 	if !n.refusedRightly(question, answer, sound) {
@@ -234,7 +236,7 @@ func (n *networkAsker) partImpedance() {
 	for _, s := range n.points() {
 		t, x, err := n.plain(s, gone, inject(b.a, b.b))
 		if err == nil {
-			n.sameFunction(question, answer.(*FunctionAnswer), s, of(t, plainOutput{plus: b.a, minus: b.b, branch: -1}, x))
+			n.sameFunction(question, answer.(*analyze.FunctionAnswer), s, of(t, plainOutput{plus: b.a, minus: b.b, branch: -1}, x))
 		}
 	}
 }
@@ -248,7 +250,7 @@ func (n *networkAsker) apart(part int) bool {
 // naturalFrequencies compares poles with the roots of the plain determinant,
 // found as a polynomial from its values.
 func (n *networkAsker) naturalFrequencies() {
-	answer, ok := n.ask("poles").(*RootsAnswer)
+	answer, ok := n.ask("poles").(*analyze.RootsAnswer)
 	if !ok {
 		n.fail("poles are refused")
 		return
@@ -298,18 +300,18 @@ func (n *networkAsker) response(out plainOutput, at *big.Rat) bool {
 		if n.solvable(n.g.at(start), nil) {
 			continue
 		}
-		if _, refused := answer.(*RefusedAnswer); !refused {
+		if _, refused := answer.(*analyze.RefusedAnswer); !refused {
 			n.fail("%s is answered, and the plain equations from %s s on have no unique solution", question, start.FloatString(6))
 		}
 		return false
 	}
-	if refused, ok := answer.(*RefusedAnswer); ok {
+	if refused, ok := answer.(*analyze.RefusedAnswer); ok {
 		if _, settled := n.g.initialMemory(); !settled || n.g.steady && refused.Code == "no-steady-state" {
 			return false
 		}
 		n.fail("%s is refused: %s: %s", question, refused.Code, refused.Why)
 	}
-	value := answer.(*SignalValueAnswer)
+	value := answer.(*analyze.SignalValueAnswer)
 	if !value.ZeroInput.Add(value.ZeroState).Overlaps(value.Total) {
 		n.fail("%s: zero-input %v and zero-state %v do not add up to %v", question, value.ZeroInput, value.ZeroState, value.Total)
 	}
@@ -350,14 +352,14 @@ func (n *networkAsker) power(at *big.Rat, x []float64, size float64) {
 	t := &tableau[float64]{f: floats, nodes: n.g.nodes}
 	want := of(t, plainOutput{plus: b.a, minus: b.b, branch: -1}, x) * of(t, plainOutput{branch: part}, x)
 	question := fmt.Sprintf("p[%s]", b.name)
-	value, ok := n.ask(fmt.Sprintf("%s at %s s", question, at.FloatString(30))).(*ValueAnswer)
+	value, ok := n.ask(fmt.Sprintf("%s at %s s", question, at.FloatString(30))).(*analyze.ValueAnswer)
 	if !ok {
 		n.fail("%s has no value", question)
 	}
 	n.close(question, value.Value.Re.MidFloat64(), want, size*size)
 	var pieces []response.Piece
 	switch answer := n.ask(question).(type) {
-	case *CurveAnswer:
+	case *analyze.CurveAnswer:
 		var err error
 		if pieces, err = answer.Curve.Pieces(n.ctx, 20); err != nil {
 			n.fail("%s: %v", question, err)
@@ -365,7 +367,7 @@ func (n *networkAsker) power(at *big.Rat, x []float64, size float64) {
 	default:
 		n.fail("%s has no closed form", question)
 	}
-	n.close("the terms of "+question, sampled(pieces, f64(at)), want, size*size)
+	n.close("the terms of "+question, addedUp(pieces, f64(at)), want, size*size)
 }
 
 // growth is the greatest real part, in 1/s, of the natural frequencies in any
@@ -377,7 +379,7 @@ func (n *networkAsker) growth() float64 {
 		for i, closed := range n.g.at(start) {
 			question += fmt.Sprintf(" with %s %s", n.g.branches[i].name, map[bool]string{true: "closed", false: "open"}[closed])
 		}
-		roots, ok := n.ask(question).(*RootsAnswer)
+		roots, ok := n.ask(question).(*analyze.RootsAnswer)
 		if !ok {
 			n.fail("%s is refused", question)
 		}
@@ -408,12 +410,12 @@ func (n *networkAsker) close(what string, got, want, size float64) {
 
 // parts checks that shares by source add up to the zero-state part, natural
 // and forced part to the whole, and one share against its own inversion.
-func (n *networkAsker) parts(out plainOutput, question string, value *SignalValueAnswer, at *big.Rat, size float64) {
+func (n *networkAsker) parts(out plainOutput, question string, value *analyze.SignalValueAnswer, at *big.Rat, size float64) {
 	when := fmt.Sprintf(" at %s s", at.FloatString(30))
 	sum := 0.0
 	for _, i := range n.g.sources() {
 		due := fmt.Sprintf("due(%s, %s)", out.text, n.g.branches[i].name)
-		share, ok := n.ask(due + when).(*SignalValueAnswer)
+		share, ok := n.ask(due + when).(*analyze.SignalValueAnswer)
 		if !ok {
 			n.fail("%s has no value", due)
 		}
@@ -424,11 +426,28 @@ func (n *networkAsker) parts(out plainOutput, question string, value *SignalValu
 		}
 	}
 	n.close("the sum of the shares of "+question, sum, value.ZeroState.MidFloat64(), size)
-	natural, ok := n.ask("natural(" + out.text + ")" + when).(*SignalValueAnswer)
-	forced, ok2 := n.ask("forced(" + out.text + ")" + when).(*SignalValueAnswer)
+	natural, ok := n.ask("natural(" + out.text + ")" + when).(*analyze.SignalValueAnswer)
+	forced, ok2 := n.ask("forced(" + out.text + ")" + when).(*analyze.SignalValueAnswer)
 	if !ok || !ok2 {
 		n.fail("natural or forced part of %s has no value", question)
 	}
 	n.close("natural and forced part of "+question, natural.Total.MidFloat64()+forced.Total.MidFloat64(), value.Total.MidFloat64(),
 		math.Max(size, math.Abs(forced.Total.MidFloat64())))
+}
+
+// addedUp adds up the terms of a closed form at a time.
+func addedUp(pieces []response.Piece, t float64) float64 {
+	sum := 0.0
+	for _, p := range pieces {
+		tau := t - p.From.Float()
+		if tau < 0 || p.Until != nil && t >= p.Until.Float() {
+			continue
+		}
+		for _, x := range p.Terms {
+			c := complex(x.Coefficient.Re.MidFloat64(), x.Coefficient.Im.MidFloat64())
+			pole := complex(x.Pole.Re.MidFloat64(), x.Pole.Im.MidFloat64())
+			sum += real(c*cmplx.Exp(pole*complex(tau, 0))) * math.Pow(tau, float64(x.Power))
+		}
+	}
+	return sum
 }

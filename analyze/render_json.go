@@ -245,6 +245,9 @@ func valueJSON(a *ValueAnswer) valueView {
 	if a.Dimension.Frequency && a.Hertz {
 		re, v.Unit = hertz(re), "Hz"
 	}
+	if a.Dimension.Angle && !a.Complex {
+		re, v.Unit = degrees(re), "°"
+	}
 	magnitude := a.Magnitude
 	if !a.Complex {
 		im, phase, magnitude = number.Ball{}, number.Ball{}, re.Abs()
@@ -457,6 +460,16 @@ type verdictView struct {
 	Margin  string `json:"margin"`
 	Unit    string `json:"unit"`
 	Why     string `json:"why,omitempty"`
+	// Worst is the worst value at the nominal values, AtHz or AtS where it is.
+	Worst string `json:"worst,omitempty"`
+	AtHz  string `json:"at_hz,omitempty"`
+	AtS   string `json:"at_s,omitempty"`
+	// InTolerance is "broken" where values inside the tolerances break the
+	// limit, "not broken" where a search found none; ToleranceMargin is the
+	// margin at the worst point found.
+	InTolerance     string `json:"in_tolerance,omitempty"`
+	ToleranceMargin string `json:"tolerance_margin,omitempty"`
+	With            string `json:"with,omitempty"`
 }
 
 // VerdictJSON gives the value whose encoding is a verdict's JSON object; line
@@ -471,6 +484,23 @@ func VerdictJSON(v Verdict, file string, line int) any {
 	}
 	if v.HasMargin {
 		view.Margin = decimal(v.Margin)
+		view.Worst = decimal(v.Worst)
+	}
+	switch {
+	case !v.HasWhere:
+	case v.InTime:
+		view.AtS = decimal(v.Where)
+	default:
+		view.AtHz = decimal(hertz(v.Where))
+	}
+	if v.Decision == Holds && v.InTolerance != Holds {
+		view.InTolerance, view.With = "not broken", v.Corner
+		if v.InTolerance == Broken {
+			view.InTolerance = "broken"
+		}
+		if v.Searched {
+			view.ToleranceMargin = decimal(v.CornerMargin)
+		}
 	}
 	return view
 }

@@ -389,6 +389,9 @@ func VerdictWords(v Verdict) string {
 	if v.Why != "" {
 		b.WriteString(": " + v.Why)
 	}
+	if v.Decision == Holds && v.InTolerance == Undecided && v.Searched {
+		b.WriteString("; within the tolerances " + quantity(v.CornerMargin, v.Dimension) + " to spare at the worst point found (searched, not proved)")
+	}
 	if v.Decision == Holds && v.InTolerance == Broken {
 		b.WriteString("; broken within the tolerances")
 		if sign, ok := v.CornerMargin.Sign(); ok && sign < 0 {

@@ -53,8 +53,8 @@ func (a *Analysis) echoes(k network.ProblemKind, incomplete bool) bool {
 func (a *Analysis) connectivity(incomplete bool) []dialect.Finding {
 	var found []dialect.Finding
 	seen := map[string]bool{}
-	inspect := func(n *network.Network, when string) {
-		for _, p := range n.Inspect() {
+	inspect := func(problems []network.Problem, when string) {
+		for _, p := range problems {
 			key := fmt.Sprint(p.Kind, sorted(p.Elements), sorted(p.Nodes))
 			if seen[key] || a.echoes(p.Kind, incomplete) || p.Kind == network.SelfLoop || p.Kind == network.InductorCutset && len(p.Elements) < 2 {
 				continue // a lone coil that a switch leaves open carries nothing
@@ -66,10 +66,10 @@ func (a *Analysis) connectivity(incomplete bool) []dialect.Finding {
 		}
 	}
 	for i, iv := range a.intervals(configuration{}) {
-		inspect(iv.network, a.whenText(i, iv))
+		inspect(iv.problems(), a.whenText(i, iv))
 	}
 	if a.description.Steady && len(a.allSwitches()) > 0 {
-		inspect(a.before(configuration{}), "before t = 0")
+		inspect(a.before(configuration{}).Inspect(), "before t = 0")
 	}
 	return found
 }
@@ -136,10 +136,10 @@ var problemTexts = map[network.ProblemKind]problemText{
 	network.CurrentCutset: {"current-cutset", dialect.Error, func(parts, nodes string, _ network.Problem) string {
 		return fmt.Sprintf("only %s reach %s: their currents are prescribed and have no other path", parts, nodes)
 	}},
-	network.CapacitorLoop: {"capacitor-loop", dialect.Information, func(parts, _ string, _ network.Problem) string {
+	network.CapacitorLoop: {"capacitor-loop", dialect.Hint, func(parts, _ string, _ network.Problem) string {
 		return fmt.Sprintf("%s form a loop: one of their voltages follows from the others, which lowers the order by one", parts)
 	}},
-	network.InductorCutset: {"inductor-cutset", dialect.Information, func(parts, nodes string, _ network.Problem) string {
+	network.InductorCutset: {"inductor-cutset", dialect.Hint, func(parts, nodes string, _ network.Problem) string {
 		return fmt.Sprintf("only %s meet at %s: one of their currents follows from the others, which lowers the order by one", parts, nodes)
 	}},
 	network.NoDCPath: {"no-dc-path", dialect.Information, func(parts, nodes string, _ network.Problem) string {

@@ -211,7 +211,8 @@ func (g *gathering) sum() *sum {
 
 func (f *family) termPole(j int, p number.ComplexBall) termPole {
 	k := f.poles[j]
-	id := fmt.Sprintf("%p.%d", f.factors[k.member], k.index)
+	// No digits first: only the id of a rational pole may read as a number.
+	id := fmt.Sprintf("root %p.%d", f.factors[k.member], k.index)
 	if k.rational != nil {
 		id = k.rational.RatString()
 	}

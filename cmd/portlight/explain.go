@@ -2,6 +2,7 @@ package main
 
 import (
 	"fmt"
+	"io"
 	"strings"
 
 	"github.com/spf13/cobra"
@@ -11,18 +12,28 @@ import (
 
 func newExplain(std streams) *cobra.Command {
 	return &cobra.Command{
-		Use:   "explain [CODE]",
+		Use:   "explain [CODE|WORD]",
 		Short: "What a finding means, and how to mend it",
+		Long: `Explains the code of a finding, or a word of the notation: a part kind, a unit,
+a statement, a function or measure. Without a word it lists the codes; with
+"measures" the functions and measures.`,
 		Args:  takes(0, 1),
 		RunE: func(_ *cobra.Command, args []string) error {
 			if len(args) == 0 {
-				fmt.Fprintln(std.out, "The codes are:")
+				fmt.Fprintln(std.out, "Words of the notation are explained too; `portlight explain measures` lists functions\nand measures. The codes of findings are:")
 				for _, e := range dialect.Explanations() {
 					fmt.Fprintf(std.out, "  %-26s %s\n", e.Code, e.Title)
 				}
 				return nil
 			}
+			if args[0] == "measures" {
+				listMeasures(std.out)
+				return nil
+			}
 			page, ok := explanation(dialect.Code(args[0]))
+			if !ok {
+				page, ok = wordPage(args[0])
+			}
 			if !ok {
 				return fmt.Errorf("there is no finding %q%s", args[0], similarCode(args[0]))
 			}
@@ -34,6 +45,37 @@ func newExplain(std streams) *cobra.Command {
 
 // page is the explanation of a code as text.
 type page struct{ title, text string }
+
+// listMeasures lists the functions and measures of the notation.
+func listMeasures(to io.Writer) {
+	for _, s := range dialect.Signatures() {
+		form := s.Name + "(" + strings.Join(s.Parameters, ", ") + ")"
+		fmt.Fprintf(to, "%s\n%s\n", form, indented(s.Definition, "    "))
+	}
+}
+
+// wordPage explains a word of the notation.
+func wordPage(word string) (page, bool) {
+	e, ok := dialect.ExplainWord(word)
+	if !ok {
+		return page{}, false
+	}
+	text := word + ": " + e.Title + "\n\n" + indented(e.Meaning, "") + "\n"
+	if e.Example != "" {
+		text += "\nFor example:\n\n" + indentLines(e.Example, "    ") + "\n"
+	}
+	return page{e.Title, text}, true
+}
+
+// indented sets a paragraph in lines, each after an indent.
+func indented(text, indent string) string {
+	return indent + strings.ReplaceAll(strings.TrimRight(wrapped(text, lineWidth-len(indent)), "\n"), "\n", "\n"+indent)
+}
+
+// indentLines puts an indent before every line as it is.
+func indentLines(text, indent string) string {
+	return indent + strings.ReplaceAll(strings.TrimRight(text, "\n"), "\n", "\n"+indent)
+}
 
 // similarCode offers codes that share a word with what was asked for.
 func similarCode(asked string) string {

@@ -45,18 +45,36 @@ func (p place) String() string { return fmt.Sprintf("%s:%d:%d", p.file, p.line, 
 func reportText(to io.Writer, src *sources, all []checked) {
 	counts := map[dialect.Severity]int{}
 	decided := map[analyze.Decision]int{}
+	outside := 0
 	for _, c := range all {
+		told := map[textPlace]bool{}
 		for _, f := range c.findings {
 			counts[f.Severity]++
 			writeFinding(to, src, f)
+			if strings.HasPrefix(string(f.Code), "limit-") {
+				told[placeKey(f.Origin)] = true
+			}
 		}
 		for _, v := range c.verdicts {
 			decided[v.Decision]++
-			writeVerdict(to, src, v)
+			if v.InTolerance == analyze.Broken && v.Decision == analyze.Holds {
+				outside++
+			}
+			if v.Limit == nil || !told[placeKey(v.Limit.Origin)] {
+				writeVerdict(to, src, v)
+			}
 		}
 	}
-	fmt.Fprintln(to, summary(len(all), counts, decided))
+	fmt.Fprintln(to, summary(len(all), counts, decided, outside))
 }
+
+// textPlace is a place in a file, to tell whether two things stand there.
+type textPlace struct {
+	file *dialect.File
+	span dialect.Span
+}
+
+func placeKey(o dialect.Origin) textPlace { return textPlace{o.File, o.Span} }
 
 // writeFinding writes one finding: where, what, the line with the fault
 // marked, other places that belong to it and how to mend it.
@@ -157,7 +175,7 @@ func writeVerdict(to io.Writer, src *sources, v analyze.Verdict) {
 }
 
 // summary counts what was told.
-func summary(files int, counts map[dialect.Severity]int, decided map[analyze.Decision]int) string {
+func summary(files int, counts map[dialect.Severity]int, decided map[analyze.Decision]int, outside int) string {
 	var parts []string
 	for _, s := range []dialect.Severity{dialect.Error, dialect.Warning} {
 		parts = append(parts, plural(counts[s], s.String(), s.String()+"s"))
@@ -169,6 +187,9 @@ func summary(files int, counts map[dialect.Severity]int, decided map[analyze.Dec
 	if n := decided[analyze.Holds] + decided[analyze.Broken] + decided[analyze.Undecided]; n > 0 {
 		text += fmt.Sprintf("; of %s %d hold, %d broken, %d undecided", plural(n, "limit", "limits"),
 			decided[analyze.Holds], decided[analyze.Broken], decided[analyze.Undecided])
+		if outside > 0 {
+			text += fmt.Sprintf("; %d of those that hold broken within the tolerances", outside)
+		}
 	}
 	return text
 }
