@@ -53,6 +53,7 @@ type checker struct {
 	suggested    int                       // searches for misspelt names so far
 	faults       bool
 	harmless     bool // an error now leaves nothing out of the network
+	blame        *blame
 }
 
 // Check looks up every name, checks every unit and works out the network that
@@ -63,7 +64,7 @@ func Check(main *File, read Reader) *Checked {
 		read: read, byFile: map[*File]*unit{}, byPath: map[string]*unit{},
 		table: &symbolTable{uses: map[*File][]SymbolUse{}}, seen: map[findingKey]bool{},
 		expectations: map[*File][]Expectation{}, numbers: map[string]operand{},
-		tolerances: map[toleranceKey]*Tolerance{}, angular: map[*big.Rat]number.Exact{},
+		tolerances: map[toleranceKey]*Tolerance{}, angular: map[*big.Rat]number.Exact{}, blame: newBlame(),
 	}
 	first := c.load(main, filepath.Clean(main.Name))
 	first.main = true
@@ -232,6 +233,18 @@ func (c *checker) result(main *unit, b *builder) *Checked {
 func (c *Checked) Allowed(code Code) bool {
 	_, ok := c.allowed[code]
 	return ok
+}
+
+// FaultyAt says that an error is told inside a place, such as a question's or
+// a limit's line.
+func (c *Checked) FaultyAt(o Origin) bool {
+	for _, f := range c.Findings {
+		s := f.Origin.Span
+		if f.Severity == Error && f.Origin.File == o.File && s.Start >= o.Span.Start && s.End <= o.Span.End {
+			return true
+		}
+	}
+	return false
 }
 
 // Keep drops the findings that the main file accepts.

@@ -235,6 +235,9 @@ type Question struct {
 	Unit       string // "Hz" or "rad/s" where the question ends in it ("in Hz")
 	Qualifiers Qualifiers
 	Origin     Origin
+	// Why is empty, or says what error keeps the question from being worked
+	// out; What is then nil.
+	Why string
 }
 
 // Limit is one require line, flattened out of subnetworks too.
@@ -246,6 +249,9 @@ type Limit struct {
 	Qualifiers Qualifiers
 	Nominal    bool
 	Origin     Origin
+	// Why is empty, or says what error keeps the limit from being worked out;
+	// Left and Right are then nil.
+	Why string
 }
 
 // Qualifiers restrict a question or a limit.

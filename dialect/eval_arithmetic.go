@@ -231,7 +231,7 @@ func (e *evaluator) warnCycles(x *BinaryExpr, a, b *operand) {
 	for i, o := range [...]*operand{a, b} {
 		if o.hz != 0 && !o.pi && o.has&hasS != 0 {
 			at := pick(i == 0, x.X, x.Y).Extent()
-			e.report(at, "frequency-kind", "%s sets s, which is in rad/s, against hertz: the factor 2π is missing", e.written(at)).as(Warning)
+			e.warn(at, "frequency-kind", "%s sets s, which is in rad/s, against hertz: the factor 2π is missing; as it stands 1 Hz is taken as 1 rad/s", e.written(at))
 			return
 		}
 	}

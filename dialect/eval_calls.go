@@ -121,8 +121,8 @@ func (e *evaluator) warnSine(at Span, a *operand) {
 		return
 	}
 	text := e.written(at)
-	e.report(at, "frequency-kind", "%s counts cycles, but the sine takes an angle: 2*pi times a frequency in Hz is meant", text).
-		repair(e.text(), at, "2*pi*"+e.bracketed(at), "multiply by 2*pi").as(Warning)
+	e.warn(at, "frequency-kind", "%s counts cycles, but a sine takes an angle in radians: 2*pi times a frequency in Hz is meant; as it stands 1 Hz is taken as 1 rad/s", text).
+		repair(e.text(), at, "2*pi*"+e.bracketed(at), "multiply by 2*pi")
 }
 
 // bracketed is the text of a factor, in brackets where it is a sum.

@@ -110,6 +110,9 @@ func (e *evaluator) constantOf(x *NameExpr, inst *instance, sym *Symbol) operand
 		return operand{}
 	}
 	o := at.b.constant(at, sym, inLet, x.Span, e)
+	if !o.ok {
+		e.b.c.blame.meet(sym)
+	}
 	if o.ok && at.b != e.b && o.has&hasQuantity != 0 {
 		if at.scope.unit != e.inst.scope.unit {
 			r := e.report(x.Span, "wrong-sort", "%s depends on quantities of the network in its own file, which has no part in this one", sym.Name)
@@ -157,7 +160,7 @@ func (b *builder) constant(inst *instance, sym *Symbol, in setting, span Span, a
 		return operand{}
 	}
 	m.busy = true
-	o := b.evaluateConstant(inst, sym, in)
+	o := b.c.blame.around(sym, func() operand { return b.evaluateConstant(inst, sym, in) })
 	m.busy = false
 	return m.keep(in, o)
 }
@@ -168,7 +171,7 @@ func (b *builder) evaluateConstant(inst *instance, sym *Symbol, in setting) oper
 		return b.parameter(inst, sym, e)
 	}
 	st, ok := sym.Statement.(*LetStatement)
-	if !ok {
+	if !ok || st.Broken {
 		return operand{}
 	}
 	harmless := b.c.harmless
@@ -243,6 +246,9 @@ func (e *evaluator) partOf(x *NameExpr, inst *instance, sym *Symbol) operand {
 	switch sym.Kind {
 	case Resistor, Inductor, Capacitor:
 		o := e.b.nominal(inst, sym, x.Span, e)
+		if !o.ok {
+			e.b.c.blame.meet(sym)
+		}
 		o.bare = false
 		return o
 	case VoltageSource, CurrentSource:
@@ -287,6 +293,7 @@ func (e *evaluator) functionOf(x *NameExpr, inst *instance, sym *Symbol) operand
 	}
 	f := e.b.function(inst, sym, x.Span, e)
 	if !f.ok {
+		e.b.c.blame.meet(sym)
 		return operand{}
 	}
 	o := operand{ok: true, dim: f.dim, hz: f.hz, rad: f.rad, shape: ShapeFunction, has: hasS, size: 1, span: x.Span}
@@ -305,14 +312,14 @@ func (b *builder) function(inst *instance, sym *Symbol, span Span, asker *evalua
 		return operand{}
 	}
 	m.busy = true
-	o := b.evaluateFunction(inst, sym)
+	o := b.c.blame.around(sym, func() operand { return b.evaluateFunction(inst, sym) })
 	m.busy = false
 	return m.keep(inFunction, o)
 }
 
 func (b *builder) evaluateFunction(inst *instance, sym *Symbol) operand {
 	st, ok := sym.Statement.(*FunctionStatement)
-	if !ok {
+	if !ok || st.Broken {
 		return operand{}
 	}
 	harmless := b.c.harmless

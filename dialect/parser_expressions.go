@@ -292,7 +292,7 @@ func (p *parser) closeParen(open token) Span {
 		p.failed = false
 		return p.take().span()
 	}
-	if !p.is(tEnd) && !p.failed && !p.is(tComma) && !p.is(tBars) && !p.is(tClose) {
+	if !p.is(tEnd) && !p.failed && !p.is(tComma) && !p.is(tBars) && !p.is(tClose) && !p.relationAhead() {
 		p.leftover()
 	}
 	if p.failed && p.parenCloseAhead() {

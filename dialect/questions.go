@@ -25,7 +25,7 @@ func (b *builder) question(main *unit, file *File, st *TellStatement) (*Question
 	c := &checker{
 		byFile: map[*File]*unit{}, table: &symbolTable{silent: true},
 		seen: map[findingKey]bool{}, expectations: map[*File][]Expectation{}, numbers: map[string]operand{}, harmless: true,
-		tolerances: map[toleranceKey]*Tolerance{}, angular: map[*big.Rat]number.Exact{},
+		tolerances: map[toleranceKey]*Tolerance{}, angular: map[*big.Rat]number.Exact{}, blame: b.c.blame,
 	}
 	// The names are looked up in the main file's scope; what is reported lies
 	// in the question's own text.
@@ -37,6 +37,7 @@ func (b *builder) question(main *unit, file *File, st *TellStatement) (*Question
 	b.c = c
 	defer func() { b.c = own }()
 	e := &evaluator{b: b, inst: main.static, in: inSignal, what: "a question", file: file}
+	c.blame.culprit = nil
 	q, _ := b.ask(e, st)
 	var findings []Finding
 	for _, f := range c.findings {
@@ -46,7 +47,7 @@ func (b *builder) question(main *unit, file *File, st *TellStatement) (*Question
 		if len(findings) == 0 {
 			findings = append(findings, Finding{
 				Code: "unknown-name", Severity: Error,
-				Message: "what the question names was left out of the network because of the file's errors",
+				Message: leftOutWhy(c.blame),
 				Origin:  Origin{File: file, Span: Span{0, len(file.Text)}},
 			})
 		}
@@ -55,6 +56,14 @@ func (b *builder) question(main *unit, file *File, st *TellStatement) (*Question
 	q.Text = trimQuestion(file.Text)
 	q.Origin = Origin{File: file, Span: st.Span}
 	return q, findings
+}
+
+// leftOutWhy tells why a sound question from outside has no answer.
+func leftOutWhy(m *blame) string {
+	if m.culprit != nil {
+		return m.why()
+	}
+	return "what the question names was left out of the network because of the file's errors"
 }
 
 // ask reads what tell asks.

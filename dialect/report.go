@@ -40,6 +40,17 @@ func (c *checker) reportAt(origin Origin, code Code, format string, args ...any)
 	return &reported{f}
 }
 
+// warn adds a warning of a code that is an error elsewhere: it leaves nothing
+// out of the network.
+func (e *evaluator) warn(span Span, code Code, format string, args ...any) *reported {
+	c := e.b.c
+	harmless := c.harmless
+	c.harmless = true
+	r := e.report(span, code, format, args...).as(Warning)
+	c.harmless = harmless
+	return r
+}
+
 // muted says that a finding lies in a statement of a used file that has no
 // effect here: only its lets, subnetworks and use statements do.
 func (c *checker) muted(origin Origin) bool {

@@ -52,16 +52,20 @@ func (b *builder) functions(inst *instance) {
 }
 
 func (b *builder) tell(inst *instance, st *TellStatement) {
-	if st.Broken {
-		return
+	m := b.c.blame
+	m.culprit = nil
+	var q *Question
+	ok := false
+	if !st.Broken {
+		q, ok = b.ask(&evaluator{b: b, inst: inst, in: inSignal, what: "a question"}, st)
 	}
-	if q, ok := b.ask(&evaluator{b: b, inst: inst, in: inSignal, what: "a question"}, st); ok {
-		file := inst.scope.unit.file
-		text := file.Text[st.Keyword.Span.End:st.Span.End]
-		q.Text = trimQuestion(text)
-		q.Origin = inst.origin(st.Span)
-		b.d.Questions = append(b.d.Questions, *q)
+	if !ok {
+		q = &Question{Ports: [2]int{-1, -1}, Why: m.why()}
 	}
+	file := inst.scope.unit.file
+	q.Text = trimQuestion(file.Text[st.Keyword.Span.End:st.Span.End])
+	q.Origin = inst.origin(st.Span)
+	b.d.Questions = append(b.d.Questions, *q)
 }
 
 func (b *builder) start(inst *instance, st *StartStatement) {
@@ -103,42 +107,49 @@ func (b *builder) allow(inst *instance, st *AllowStatement) {
 	b.allowed[code] = inst.origin(st.Span)
 }
 
-// require reads a limit or a fact.
+// require reads a limit or a fact. One that cannot be worked out is kept and
+// says why.
 func (b *builder) require(inst *instance, st *RequireStatement) {
-	if st.Broken {
-		return
-	}
-	e := &evaluator{b: b, inst: inst, in: inSignal, what: "a limit"}
-	left := e.eval(st.Left, 0)
 	limit := Limit{Relation: st.Relation.Text, Nominal: st.Nominal.Present(), Origin: inst.origin(st.Span)}
 	file := inst.scope.unit.file
 	limit.Text = trimQuestion(file.Text[st.Keyword.Span.End:st.Span.End])
+	m := b.c.blame
+	m.culprit = nil
+	if st.Broken || !b.limit(inst, st, &limit) {
+		limit.Left, limit.Right, limit.Qualifiers, limit.Why = nil, nil, Qualifiers{}, m.why()
+	}
+	b.d.Limits = append(b.d.Limits, limit)
+}
+
+// limit works out both sides of a limit and its qualifiers.
+func (b *builder) limit(inst *instance, st *RequireStatement, limit *Limit) bool {
+	e := &evaluator{b: b, inst: inst, in: inSignal, what: "a limit"}
+	left := e.eval(st.Left, 0)
 	if st.Right == nil {
 		if left.ok && left.shape != ShapeFact {
 			e.report(st.Left.Extent(), "wrong-sort", "%s is neither true nor false: compare it with a limit, such as <= %s",
 				e.written(st.Left.Extent()), e.exampleOf(&left))
-			return
+			return false
 		}
-		if left.ok {
-			limit.Left = left.finish()
-			b.finishLimit(e, st, &limit, &left)
+		if !left.ok {
+			return false
 		}
-		return
+		limit.Left = left.finish()
+		return b.finishLimit(e, st, limit, &left)
 	}
 	right := e.eval(st.Right, 0)
 	if !left.ok || !right.ok || !e.compared(st, &left, &right) {
-		return
+		return false
 	}
 	limit.Left, limit.Right = left.finish(), right.finish()
 	whole := joined(&left, &right, Span{st.Left.Extent().Start, st.Right.Extent().End})
-	b.finishLimit(e, st, &limit, &whole)
+	return b.finishLimit(e, st, limit, &whole)
 }
 
-func (b *builder) finishLimit(e *evaluator, st *RequireStatement, limit *Limit, whole *operand) {
+func (b *builder) finishLimit(e *evaluator, st *RequireStatement, limit *Limit, whole *operand) bool {
 	var ok bool
-	if limit.Qualifiers, ok = b.qualifiers(e, st.Qualifiers, whole, AskExpression, limit.Left, limit.Right); ok {
-		b.d.Limits = append(b.d.Limits, *limit)
-	}
+	limit.Qualifiers, ok = b.qualifiers(e, st.Qualifiers, whole, AskExpression, limit.Left, limit.Right)
+	return ok
 }
 
 // exampleOf is a value of an operand's unit, for messages.

@@ -16,7 +16,7 @@ func (b *builder) nominal(inst *instance, sym *Symbol, span Span, asker *evaluat
 		return operand{}
 	}
 	m.busy = true
-	o := b.evaluateNominal(inst, sym)
+	o := b.c.blame.around(sym, func() operand { return b.evaluateNominal(inst, sym) })
 	m.busy = false
 	return m.keep(inConstant, o)
 }

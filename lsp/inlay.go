@@ -91,7 +91,7 @@ func (h *inlays) answers(ctx context.Context) error {
 		if err != nil {
 			return err
 		}
-		if _, refused := answer.(*analyze.RefusedAnswer); refused && h.checked.Description.Faults {
+		if _, refused := answer.(*analyze.RefusedAnswer); refused && (h.checked.Description.Faults || h.checked.FaultyAt(q.Origin)) {
 			continue // the mistake is marked already
 		}
 		if words := analyze.Words(answer); len(words) > 0 {
@@ -124,7 +124,7 @@ func (h *inlays) verdicts(ctx context.Context) error {
 		return err
 	}
 	for _, v := range verdicts {
-		if v.Limit != nil && h.covers(v.Limit.Origin) {
+		if v.Limit != nil && h.covers(v.Limit.Origin) && !h.checked.FaultyAt(v.Limit.Origin) {
 			h.add(v.Limit.Origin.Span.End, verdictMark(v)+" "+analyze.VerdictWords(v), 0, "")
 		}
 	}
