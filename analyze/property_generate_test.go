@@ -263,12 +263,20 @@ func (g *generator) dependent(kind string) {
 			text, c.k = g.rational("coefficient", u)
 			text = fmt.Sprintf("%s * v[%s,%s]", text, nodeText(c.plus), nodeText(c.minus))
 		}
+		if len(b.controls) > 0 && sameControl(b.controls[0], c) {
+			continue // it would be one term, with the coefficients added up
+		}
 		b.controls = append(b.controls, c)
 		terms = append(terms, "("+text+")")
 	}
 	b.a, b.b = g.attached(kind == "voltage")
 	b.name = g.name("follow")
 	g.path(b, fmt.Sprintf("%s source %s = %s", kind, b.name, strings.Join(terms, " + ")))
+}
+
+// sameControl tells whether two terms follow one quantity, maybe turned around.
+func sameControl(a, b plainControl) bool {
+	return a.branch == b.branch && min(a.plus, a.minus) == min(b.plus, b.minus) && max(a.plus, a.minus) == max(b.plus, b.minus)
 }
 
 // carriers are the branches whose current the notation can name by the part.
