@@ -4,6 +4,7 @@ import (
 	"context"
 	"math"
 	"math/big"
+	"sort"
 
 	"portlight/dialect/number"
 )
@@ -16,6 +17,9 @@ type place struct {
 	hasAt    bool
 	left     bool
 	attained bool
+	// coarse: no more than bounds, which do not tell whether anything as great as
+	// another place's value is there at all.
+	coarse bool
 }
 
 // conclude refines every place where the maximum may be and takes the greatest.
@@ -29,14 +33,12 @@ func (s *search) conclude(ctx context.Context, limit *Extreme) (Extreme, error) 
 	if limit != nil {
 		places = append(places, place{value: limit.Value, exact: limit.Exact})
 	}
-	refined := 0
-	for _, c := range list {
+	closely := worthRefining(list)
+	for i, c := range list {
 		if err := ctx.Err(); err != nil {
 			return Extreme{}, err
 		}
-		if refined++; refined > 64 && len(places) > 0 {
-			// Equal peaks of an oscillation: the coarse bounds of the later ones
-			// do not change which is the first.
+		if !closely[i] && len(places) > 0 {
 			places = append(places, s.coarse(c))
 			continue
 		}
@@ -54,8 +56,38 @@ func (s *search) conclude(ctx context.Context, limit *Extreme) (Extreme, error) 
 	return greatestOf(places), nil
 }
 
+// firstRefined and highestRefined are how many places, the first ones in time and
+// the highest ones, are looked at to many digits: an oscillation has many peaks
+// that are nearly equal.
+const (
+	firstRefined   = 12
+	highestRefined = 12
+)
+
+// worthRefining chooses the clusters to look at to many digits.
+func worthRefining(list []cluster) map[int]bool {
+	out := map[int]bool{}
+	order := make([]int, len(list))
+	for i := range order {
+		order[i] = i
+		if i < firstRefined {
+			out[i] = true
+		}
+	}
+	hi := make([]float64, len(list))
+	for i := range list {
+		hi[i] = list[i].hi()
+	}
+	sort.SliceStable(order, func(i, j int) bool { return hi[order[i]] > hi[order[j]] })
+	for _, i := range order[:min(highestRefined, len(order))] {
+		out[i] = true
+	}
+	return out
+}
+
 // greatestOf takes the greatest of the places; where balls overlap, the first
-// one that is taken and not only approached names the instant.
+// one that is taken and not only approached names the instant, unless one of
+// them is coarse: then none is known to be the first.
 func greatestOf(places []place) Extreme {
 	lower := places[0].value.Lower()
 	for _, p := range places[1:] {
@@ -65,12 +97,15 @@ func greatestOf(places []place) Extreme {
 	}
 	var out *place
 	var upper *big.Float
+	rivals, coarse := 0, false
 	for i := range places {
 		p := &places[i]
 		u := p.value.Upper()
 		if u.Cmp(lower) < 0 {
 			continue
 		}
+		rivals++
+		coarse = coarse || p.coarse
 		if upper == nil || u.Cmp(upper) > 0 {
 			upper = u
 		}
@@ -79,6 +114,9 @@ func greatestOf(places []place) Extreme {
 		}
 	}
 	e := Extreme{At: out.at, HasAt: out.hasAt, Left: out.left, Attained: out.attained, Proved: true}
+	if coarse && rivals > 1 {
+		e.At, e.HasAt, e.Left = number.Ball{}, false, false
+	}
 	e.Value = number.Hull(lower, upper, out.value.Prec())
 	if out.exact != nil && out.value.Upper().Cmp(upper) >= 0 {
 		e.Exact, e.Value = out.exact, out.value
@@ -89,7 +127,10 @@ func greatestOf(places []place) Extreme {
 // coarse is what the search itself knows of a cluster.
 func (s *search) coarse(c cluster) place {
 	lo, hi := new(big.Float).SetFloat64(s.best), new(big.Float).SetFloat64(c.hi())
-	p := place{value: number.Hull(lo, hi, refinePrecision), attained: true, hasAt: true}
+	p := place{value: number.Hull(lo, hi, refinePrecision), attained: true, hasAt: true, coarse: true}
+	for _, b := range c.boxes {
+		p.hasAt = p.hasAt && b.models != nil // else the stretch says little
+	}
 	p.at = number.Hull(new(big.Float).SetFloat64(c.a), new(big.Float).SetFloat64(c.b), refinePrecision)
 	p.at = p.at.Add(number.BallFromRat(c.stage.origin, refinePrecision))
 	return p
@@ -243,6 +284,7 @@ func (s *search) end(ctx context.Context, c cluster, right bool) (place, bool, e
 		return p, false, err
 	}
 	if ok {
+		r = ratPow2(r, s.shift)
 		p.exact, p.value = r, number.BallFromRat(r, refinePrecision)
 	}
 	return p, true, nil
@@ -375,9 +417,9 @@ func (s *search) refineTail(ctx context.Context, c cluster) (place, bool, error)
 // cutThenRefine treats a tail that is monotone only from τ = t on: what lies
 // before is searched on its own.
 func (s *search) cutThenRefine(ctx context.Context, c cluster, t float64, sign int) (place, bool, error) {
-	inner := &search{curve: s.curve, stages: s.stages, scale: s.scale, best: s.best, ceiling: math.NaN()}
+	inner := &search{curve: s.curve, stages: s.stages, scale: s.scale, best: s.best, shift: s.shift}
 	if t > c.a {
-		inner.add(&box{stage: c.stage, index: c.index, a: c.a, b: t, on: c.stage.crude(s.curve, c.a, t)})
+		inner.add(&box{stage: c.stage, index: c.index, a: c.a, b: t, on: s.bound(c.stage, c.a, t)})
 	}
 	if err := inner.run(ctx); err != nil {
 		return place{}, false, err

@@ -20,7 +20,7 @@ func (c *Curve) edge(ctx context.Context, r Range, first bool) (number.Ball, err
 	if err != nil {
 		return number.Ball{}, err
 	}
-	s := &search{curve: c, stages: stages, best: math.Inf(-1), ceiling: math.NaN()}
+	s := &search{curve: c, stages: stages, best: math.Inf(-1)}
 	for _, st := range stages {
 		s.scale = math.Max(s.scale, st.scale)
 	}
@@ -71,7 +71,7 @@ func (e *edgeSearch) quietFrom(ctx context.Context, st *stage) (float64, error) 
 	}
 	if limit != nil {
 		if sign, decided := limit.Value.Sign(); decided && sign > 0 {
-			if math.IsNaN(e.ceiling) {
+			if st.lasting == nil {
 				return 0, undefined("it stays there for ever")
 			}
 			return 0, undefined("it comes back there for ever")
@@ -80,10 +80,7 @@ func (e *edgeSearch) quietFrom(ctx context.Context, st *stage) (float64, error) 
 	touching := limit != nil && limit.Exact != nil && limit.Exact.Sign() == 0
 	unitTime := st.unitTime()
 	for t, k := 0.0, 0; k < 200; k++ {
-		hi := st.crude(e.curve, t, math.Inf(1)).hi
-		if !math.IsNaN(e.ceiling) {
-			hi = math.Min(hi, e.ceiling+st.transientBound(t))
-		}
+		hi := e.bound(st, t, math.Inf(1)).hi
 		if hi <= 0 {
 			return t, nil
 		}
@@ -110,7 +107,7 @@ func (e *edgeSearch) quietFrom(ctx context.Context, st *stage) (float64, error) 
 func (e *edgeSearch) firstForward(ctx context.Context, st *stage, i int) (number.Ball, bool, error) {
 	from, step := 0.0, st.unitTime()
 	for range 200 {
-		if hi := st.crude(e.curve, from, math.Inf(1)).hi; hi <= 0 {
+		if hi := e.bound(st, from, math.Inf(1)).hi; hi <= 0 {
 			return number.Ball{}, false, nil
 		}
 		if t, ok, err := e.within(ctx, st, i, from, from+step); ok || err != nil {
@@ -129,7 +126,7 @@ func (e *edgeSearch) firstForward(ctx context.Context, st *stage, i int) (number
 // within looks for the edge in [a, b] of a stage, from the side it must be met
 // first. Everything passed over is proved not to be above zero.
 func (e *edgeSearch) within(ctx context.Context, st *stage, i int, a, b float64) (number.Ball, bool, error) {
-	stack := []*box{{stage: st, index: i, a: a, b: b, on: st.crude(e.curve, a, b)}}
+	stack := []*box{{stage: st, index: i, a: a, b: b, on: e.bound(st, a, b)}}
 	for len(stack) > 0 {
 		if e.steps++; e.steps > searchBudget {
 			return number.Ball{}, false, undecided("the curve is near the level for too long")
@@ -174,7 +171,7 @@ func (e *edgeSearch) halves(x *box) []*box {
 			return []*box{&y}
 		}
 		for _, p := range [][2]float64{{x.a, c}, {c, x.b}} {
-			out = append(out, &box{stage: x.stage, index: x.index, a: p[0], b: p[1], on: x.stage.crude(e.curve, p[0], p[1])})
+			out = append(out, &box{stage: x.stage, index: x.index, a: p[0], b: p[1], on: e.bound(x.stage, p[0], p[1])})
 		}
 	}
 	if e.first {

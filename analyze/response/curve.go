@@ -80,7 +80,7 @@ func (s *Signal) AddConstant(k number.Exact) *Signal {
 	if k.Rat().Sign() == 0 {
 		return s
 	}
-	f := newFraction(ratioOf(constantPoly(k.Rat()), polyS), polyS, one)
+	f := newFraction(ratioOf(constantPoly(k.Rat()), polyS), one, polyS)
 	comps := append(append([]component(nil), s.comps...), component{from: new(big.Rat), cause: noCause, weight: unitWeight, fraction: f})
 	before := s.before
 	return newSignal(s.solution, comps, func(ctx context.Context) (number.Exact, error) {
@@ -182,6 +182,7 @@ type stage struct {
 	floats      []*floatSum
 	scale       float64      // of the values, for tolerances
 	steady      bool         // only what oscillates for ever is left in it
+	lasting     *lasting     // set where a steady oscillation underlies it
 	period      *number.Ball // of a steady stage, when it is integrated
 }
 

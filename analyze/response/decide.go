@@ -43,9 +43,9 @@ func (c *Curve) Decide(ctx context.Context, relation string, level number.Exact,
 	switch {
 	case errors.Is(err, ErrUndefined):
 		return c.decideUnbounded(ctx, err, r, upper)
-	case errors.Is(err, ErrUndecided):
+	case errors.Is(err, ErrUndecided) && !worst.Bounds:
 		return Decision{Outcome: Undecided, Why: err.Error()}, nil
-	case err != nil:
+	case err != nil && !worst.Bounds:
 		return Decision{}, err
 	}
 	d := Decision{Worst: worst}
@@ -54,7 +54,9 @@ func (c *Curve) Decide(ctx context.Context, relation string, level number.Exact,
 		d.Margin = d.Margin.Neg()
 	}
 	d.Outcome = d.judge(level, strict, c.loose())
-	if d.Outcome == Undecided {
+	if d.Outcome == Undecided && err != nil {
+		d.Why = err.Error()
+	} else if d.Outcome == Undecided {
 		d.Why = "the worst value cannot be told from the limit"
 	}
 	return d, nil

@@ -32,6 +32,9 @@
 //	curve.go product.go
 //	              signals under sums, products, absolute value, least and greatest
 //	panel.go      Taylor models: what is true between samples
+//	beats.go      bounds of oscillations that cancel
+//	steady.go     the steady oscillation and what decays beside it
+//	normalise.go  curves too small for float64
 //	extreme.go conclude.go
 //	              peaks and troughs, proved
 //	crossing.go   first and last crossings of a level, proved

@@ -3,6 +3,7 @@ package response
 import (
 	"container/heap"
 	"context"
+	"errors"
 	"math"
 	"math/big"
 	"sort"
@@ -20,9 +21,18 @@ const (
 	// narrowest is the width in x at which a panel is cut no further.
 	narrowest = 1.0 / (1 << 46)
 	// searchBudget is how many boxes a search may look at: seconds of work.
-	searchBudget = 2_000_000
+	searchBudget = 200_000
+	// softBudget is after how many boxes a search stops that knows the value to
+	// softWidth of itself already: which of many nearly equal peaks is greatest
+	// is then left open. At searchBudget it makes do with hardWidth.
+	softBudget = 10_000
+	softWidth  = 1e-10
+	hardWidth  = 1e-6
+	// sharpenBudget is how many boxes that may hold the maximum, but were not
+	// looked at closely, are cut in the end to rule them out or to find the place.
+	sharpenBudget = 2_000
 	// clusterBudget is how many places may compete for the maximum in the end.
-	clusterBudget = 200_000
+	clusterBudget = 2_000
 	// refinePrecision is the working precision of the last refinement.
 	refinePrecision = 256
 )
@@ -38,8 +48,9 @@ type Extreme struct {
 	Left  bool
 	// Attained is false where the value is approached but maybe never taken.
 	Attained bool
-	// Proved is false only where ErrUndecided is returned beside the best bounds.
-	Proved bool
+	// Proved is false only where an error is returned. With ErrUndecided, Bounds
+	// tells that the greatest value is in Value all the same.
+	Proved, Bounds bool
 }
 
 // box is a stretch of time within a stage, and what is known of the curve there.
@@ -81,18 +92,20 @@ type search struct {
 	queue  boxes
 	stuck  []*box
 	steps  int
-	// ceiling bounds the steady oscillation of the last stage from above, when
-	// it goes on for ever and oscillates; otherwise it is NaN.
-	ceiling float64
+	// shift is the power of two by which all leaves were multiplied to bring
+	// them into the range of float64.
+	shift int
+	// spread widens the value found, by what was taken as nothing.
+	spread number.Ball
 	// enough, when set, replaces the question whether a box is below best.
 	enough func(enclosure) bool
 }
 
 func newSearch(c *Curve, stages []*stage) *search {
-	s := &search{curve: c, stages: stages, best: math.Inf(-1), ceiling: math.NaN()}
+	s := &search{curve: c, stages: stages, best: math.Inf(-1)}
 	for i, st := range stages {
 		s.scale = math.Max(s.scale, st.scale)
-		s.add(&box{stage: st, index: i, a: 0, b: st.length, on: st.crude(c, 0, st.length)})
+		s.add(&box{stage: st, index: i, a: 0, b: st.length, on: s.bound(st, 0, st.length)})
 	}
 	return s
 }
@@ -107,8 +120,8 @@ func (s *search) add(b *box) {
 // boxes that may hold the maximum are then in queue and stuck.
 func (s *search) run(ctx context.Context) error {
 	for len(s.queue) > 0 && s.queue[0].on.hi > s.best+tolerance*s.scale {
-		if s.steps++; s.steps > searchBudget {
-			return undecided("the curve has too many nearly equal peaks in the range")
+		if s.steps++; s.steps > searchBudget || s.steps > softBudget && s.knows(softWidth) {
+			return errTooMany
 		}
 		if s.steps%8 == 0 {
 			if err := ctx.Err(); err != nil {
@@ -116,6 +129,52 @@ func (s *search) run(ctx context.Context) error {
 			}
 		}
 		s.split(heap.Pop(&s.queue).(*box))
+	}
+	return nil
+}
+
+// errTooMany: the greatest value is known to be between two bounds only.
+var errTooMany = undecided("the curve has too many nearly equal peaks in the range")
+
+// knows tells whether the greatest value is known to a part of itself.
+func (s *search) knows(part float64) bool {
+	return len(s.queue) > 0 && s.queue[0].on.hi-s.best <= part*math.Abs(s.best)
+}
+
+// sharpen cuts boxes that may hold the maximum and were not looked at closely,
+// because their bounds came near enough to the best value seen.
+func (s *search) sharpen(ctx context.Context) error {
+	for steps := 0; steps < sharpenBudget; {
+		var kept boxes
+		var vague []*box
+		for _, b := range s.queue {
+			switch {
+			case b.on.hi < s.best:
+			case b.models == nil && !math.IsInf(b.b, 1):
+				vague = append(vague, b)
+			default:
+				kept = append(kept, b)
+			}
+		}
+		s.queue = kept
+		heap.Init(&s.queue)
+		if len(vague) == 0 {
+			return nil
+		}
+		for i, b := range vague {
+			if steps++; steps > sharpenBudget {
+				for _, rest := range vague[i:] {
+					heap.Push(&s.queue, rest)
+				}
+				return nil
+			}
+			if steps%8 == 0 {
+				if err := ctx.Err(); err != nil {
+					return err
+				}
+			}
+			s.split(b)
+		}
 	}
 	return nil
 }
@@ -142,7 +201,7 @@ func (s *search) split(b *box) {
 			return
 		}
 		for _, part := range [][2]float64{{b.a, c}, {c, b.b}} {
-			s.add(&box{stage: b.stage, index: b.index, a: part[0], b: part[1], on: b.stage.crude(s.curve, part[0], part[1])})
+			s.add(&box{stage: b.stage, index: b.index, a: part[0], b: part[1], on: s.bound(b.stage, part[0], part[1])})
 		}
 	}
 }
@@ -154,12 +213,8 @@ func (s *search) cutTail(b *box) {
 		s.stuck = append(s.stuck, b)
 		return
 	}
-	s.add(&box{stage: b.stage, index: b.index, a: b.a, b: cut, on: b.stage.crude(s.curve, b.a, cut)})
-	rest := &box{stage: b.stage, index: b.index, a: cut, b: b.b, on: b.stage.crude(s.curve, cut, b.b)}
-	if !math.IsNaN(s.ceiling) {
-		rest.on.hi = math.Min(rest.on.hi, s.ceiling+b.stage.transientBound(cut))
-	}
-	s.add(rest)
+	s.add(&box{stage: b.stage, index: b.index, a: b.a, b: cut, on: s.bound(b.stage, b.a, cut)})
+	s.add(&box{stage: b.stage, index: b.index, a: cut, b: b.b, on: s.bound(b.stage, cut, b.b)})
 }
 
 // slowest is the least |Re p| of what decays or grows, or the largest |p| when
@@ -188,19 +243,6 @@ func (st *stage) unitTime() float64 {
 		return 1 / slow
 	}
 	return 1
-}
-
-// transientBound bounds what all decaying terms add up to from τ on.
-func (st *stage) transientBound(tau float64) float64 {
-	total := 0.0
-	for _, x := range st.floats {
-		for i := range x.terms {
-			if f := &x.terms[i]; !f.zero && !f.axis {
-				total += f.bound(tau, math.Inf(1))
-			}
-		}
-	}
-	return total * (1 + 8*unit)
 }
 
 // makePanel builds the models of a box, if it is narrow enough for them. Where
@@ -382,17 +424,62 @@ func (c *Curve) greatest(ctx context.Context, r Range) (Extreme, error) {
 	if err != nil {
 		return Extreme{}, err
 	}
+	shift, err := normalise(stages)
+	if err != nil {
+		return Extreme{}, err
+	}
 	s := newSearch(c, stages)
+	s.shift = shift
+	e, err := s.whole(ctx)
+	return e.scaled(-shift), err
+}
+
+// whole finds the greatest value over all stages.
+func (s *search) whole(ctx context.Context) (Extreme, error) {
 	var floor *Extreme // the least upper limit for t → ∞
-	if last := stages[len(stages)-1]; last.end == nil {
-		if floor, err = s.prepareTail(ctx, last); err != nil {
+	var err error
+	for _, st := range s.stages {
+		if st.end == nil {
+			floor, err = s.prepareTail(ctx, st)
+		} else {
+			err = s.prepareLong(ctx, st)
+		}
+		if err != nil {
 			return Extreme{}, err
 		}
 	}
-	if err := s.run(ctx); err != nil {
-		return Extreme{}, err
+	if err = s.run(ctx); err == nil {
+		err = s.sharpen(ctx)
 	}
-	return s.conclude(ctx, floor)
+	var e Extreme
+	if err == nil {
+		e, err = s.conclude(ctx, floor)
+	}
+	if errors.Is(err, ErrUndecided) {
+		e, err = s.outer(err)
+	}
+	if s.spread.IsFinite() && !s.spread.ContainsZero() {
+		e.Value, e.Exact = e.Value.WithBound(s.spread), nil
+	}
+	return e, err
+}
+
+// outer is what a search that was given up knows: the greatest value is between
+// the best that was seen and the greatest bound. That is an answer without an
+// instant when it is good for a few digits, else why it was given up.
+func (s *search) outer(why error) (Extreme, error) {
+	hi := s.best
+	for _, b := range append(append([]*box(nil), s.queue...), s.stuck...) {
+		hi = math.Max(hi, b.on.hi)
+	}
+	if math.IsInf(s.best, 0) || math.IsInf(hi, 0) || math.IsNaN(hi) {
+		return Extreme{}, why
+	}
+	e := Extreme{Value: number.Hull(new(big.Float).SetFloat64(s.best), new(big.Float).SetFloat64(hi), refinePrecision), Bounds: true}
+	if hi-s.best <= hardWidth*math.Abs(s.best) {
+		e.Proved, why = true, nil
+	}
+	return e, why
 }
 
 // shortTime writes an instant for a message.
@@ -499,98 +586,4 @@ func (x *sum) fastest() []term {
 		}
 	}
 	return out
-}
-
-// replaceTail ends the last stage at τ = t for the search.
-func (s *search) replaceTail(st *stage, t float64) {
-	kept := s.queue[:0]
-	for _, b := range s.queue {
-		if b.stage == st && math.IsInf(b.b, 1) {
-			b.b = t
-			b.on = st.crude(s.curve, b.a, t)
-		}
-		kept = append(kept, b)
-	}
-	s.queue = kept
-	heap.Init(&s.queue)
-}
-
-// steadySupremum finds the least upper bound of the steady oscillation that
-// remains. It needs a period: one frequency, or several in rational ratios.
-func (s *search) steadySupremum(ctx context.Context, st *stage) (*Extreme, error) {
-	_, period, ok := periodBall(st.sums)
-	if !ok {
-		return nil, undecided("it oscillates for ever at several frequencies without a common period; ask over a range of time")
-	}
-	steady, transient, err := st.steadyStage(period)
-	if err != nil {
-		return nil, err
-	}
-	if !transient { // the first period shows everything
-		s.replaceTail(st, period)
-		return nil, nil
-	}
-	inner := newSearch(s.curve, []*stage{steady})
-	if err := inner.run(ctx); err != nil {
-		return nil, err
-	}
-	top, err := inner.conclude(ctx, nil)
-	if err != nil {
-		return nil, err
-	}
-	lower, _ := top.Value.Lower().Float64()
-	upper, _ := top.Value.Upper().Float64()
-	s.best = math.Max(s.best, math.Nextafter(lower, math.Inf(-1)))
-	s.ceiling = math.Nextafter(upper, math.Inf(1))
-	return &Extreme{Value: top.Value, Proved: true}, nil
-}
-
-// periodBall is the least common period of all oscillations that do not decay,
-// and a float64 that is not less.
-func periodBall(sums []*sum) (number.Ball, float64, bool) {
-	ids := map[string]termPole{}
-	for _, x := range sums {
-		for _, t := range x.terms {
-			if t.pole.axis && !t.pole.zero {
-				ids[t.pole.id] = t.pole
-			}
-		}
-	}
-	base := new(big.Rat)
-	var one termPole
-	for _, p := range ids {
-		one = p
-		if p.omega == nil {
-			base = nil
-			break
-		}
-		base = ratGCD(base, p.omega)
-	}
-	turn := number.PiBall(refinePrecision).MulPow2(1)
-	var period number.Ball
-	switch {
-	case base != nil:
-		period = turn.Quo(number.BallFromRat(base, refinePrecision))
-	case len(ids) == 1:
-		period = turn.Quo(one.p.Im)
-	default:
-		return period, 0, false
-	}
-	for _, p := range ids {
-		if cycles := upperFloat(p.p.Im.Mul(period).Abs()); cycles > 1e5 {
-			return period, 0, false
-		}
-	}
-	return period, upperFloat(period), true
-}
-
-// ratGCD is the greatest rational that divides both a whole number of times.
-func ratGCD(a, b *big.Rat) *big.Rat {
-	if a.Sign() == 0 {
-		return new(big.Rat).Abs(b)
-	}
-	l := new(big.Int).Mul(a.Denom(), b.Denom())
-	x := new(big.Int).Mul(a.Num(), b.Denom())
-	y := new(big.Int).Mul(b.Num(), a.Denom())
-	return new(big.Rat).SetFrac(new(big.Int).GCD(nil, nil, x.Abs(x), y.Abs(y)), l)
 }

@@ -2,6 +2,7 @@ package response
 
 import (
 	"context"
+	"errors"
 	"math/big"
 
 	"portlight/dialect/number"
@@ -23,12 +24,12 @@ func (c *Curve) Peak(ctx context.Context, r Range) (Extreme, error) {
 // value, which is near its maximum on both sides of zero.
 func (c *Curve) farthest(ctx context.Context, r Range) (Extreme, error) {
 	hi, err := c.Peak(ctx, r)
-	if err != nil {
+	if err != nil && !hi.Bounds {
 		return hi, err
 	}
-	lo, err := c.Trough(ctx, r)
-	if err != nil {
-		return lo, err
+	lo, late := c.Trough(ctx, r)
+	if late != nil && !lo.Bounds {
+		return lo, late
 	}
 	lo.Value = lo.Value.Neg()
 	if lo.Exact != nil {
@@ -37,12 +38,13 @@ func (c *Curve) farthest(ctx context.Context, r Range) (Extreme, error) {
 	order, sure := lo.Value.Cmp(hi.Value)
 	switch {
 	case sure && order > 0:
-		return lo, nil
-	case sure && order < 0 || lo.HasAt == hi.HasAt && hi.HasAt && hi.At.Mid().Cmp(lo.At.Mid()) <= 0:
-		return hi, nil
-	case !lo.HasAt:
-		return hi, nil
-	case hi.HasAt && hi.At.Mid().Cmp(lo.At.Mid()) <= 0:
+		return lo, late
+	case sure && order < 0:
+		return hi, err
+	case hi.Bounds || lo.Bounds:
+		both := Extreme{Value: betweenBalls(opGreatest, hi.Value, lo.Value), Bounds: true, Proved: hi.Proved && lo.Proved}
+		return both, errors.Join(err, late)
+	case !lo.HasAt, hi.HasAt && hi.At.Mid().Cmp(lo.At.Mid()) <= 0:
 		return hi, nil
 	}
 	return lo, nil

@@ -334,9 +334,13 @@ func (st *stage) crude(c *Curve, a, b float64) enclosure {
 // crude bounds the sum on [a, b] by the sizes of its terms, real ones of degree
 // 0 by their monotone course.
 func (x *floatSum) crude(a, b float64) enclosure {
-	lo, hi := 0.0, 0.0
+	together, grouped := x.beats(a, b)
+	lo, hi := -together, together
 	for i := range x.terms {
 		f := &x.terms[i]
+		if grouped != nil && grouped[i] {
+			continue
+		}
 		if !f.real || len(f.re) > 1 {
 			s := f.bound(a, b)
 			lo, hi = lo-s, hi+s
