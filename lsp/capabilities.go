@@ -5,17 +5,18 @@ import "go.lsp.dev/protocol"
 // capabilities is what the server says it can do. Every request of the table
 // in methods.go is announced here; a test compares the two.
 func (s *session) capabilities() protocol.ServerCapabilities {
+	long := protocol.WorkDoneProgressOptions{WorkDoneProgress: ptr(true)}
 	c := protocol.ServerCapabilities{
 		PositionEncoding: s.client.kind,
 		TextDocumentSync: &protocol.TextDocumentSyncOptions{
 			OpenClose: ptr(true), Change: ptr(protocol.TextDocumentSyncKindIncremental),
 			Save: &protocol.SaveOptions{IncludeText: ptr(false)},
 		},
-		HoverProvider:              protocol.Boolean(true),
+		HoverProvider:              &protocol.HoverOptions{WorkDoneProgressOptions: long},
 		DeclarationProvider:        protocol.Boolean(true),
 		DefinitionProvider:         protocol.Boolean(true),
 		TypeDefinitionProvider:     protocol.Boolean(true),
-		ReferencesProvider:         protocol.Boolean(true),
+		ReferencesProvider:         &protocol.ReferenceOptions{WorkDoneProgressOptions: long},
 		DocumentHighlightProvider:  protocol.Boolean(true),
 		DocumentSymbolProvider:     protocol.Boolean(true),
 		WorkspaceSymbolProvider:    protocol.Boolean(true),
@@ -27,7 +28,7 @@ func (s *session) capabilities() protocol.ServerCapabilities {
 		DocumentRangeFormattingProvider: &protocol.DocumentRangeFormattingOptions{
 			RangesSupport: ptr(true),
 		},
-		InlayHintProvider:    &protocol.InlayHintOptions{ResolveProvider: ptr(true)},
+		InlayHintProvider:    &protocol.InlayHintOptions{WorkDoneProgressOptions: long, ResolveProvider: ptr(true)},
 		CodeLensProvider:     &protocol.CodeLensOptions{ResolveProvider: ptr(true)},
 		DocumentLinkProvider: &protocol.DocumentLinkOptions{},
 		RenameProvider:       protocol.Boolean(true),
@@ -54,10 +55,10 @@ func (s *session) capabilities() protocol.ServerCapabilities {
 	c.CodeActionProvider = &protocol.CodeActionOptions{
 		CodeActionKinds: actionKinds, ResolveProvider: ptr(true),
 	}
-	c.ExecuteCommandProvider = protocol.ExecuteCommandOptions{Commands: commandNames()}
+	c.ExecuteCommandProvider = protocol.ExecuteCommandOptions{WorkDoneProgressOptions: long, Commands: commandNames()}
 	if s.pulled() || !s.client.pulls {
 		c.DiagnosticProvider = &protocol.DiagnosticOptions{
-			Identifier: ptr("portlight"), InterFileDependencies: true, WorkspaceDiagnostics: true,
+			WorkDoneProgressOptions: long, Identifier: ptr("portlight"), InterFileDependencies: true, WorkspaceDiagnostics: true,
 		}
 	}
 	return c

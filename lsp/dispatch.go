@@ -145,7 +145,9 @@ func (s *session) run(ctx context.Context, m method, r *request, params []byte) 
 			result, err = nil, jsonrpc2.Errorf(jsonrpc2.InternalError, "%s failed inside the server: %v", m.name, p)
 		}
 	}()
+	stop := s.requestProgress(ctx, tokenOf(params), "Portlight is working it out")
 	result, err = m.answer(ctx, r, params)
+	stop()
 	if ctx.Err() != nil && (err != nil || context.Cause(ctx) == errCancelled) {
 		if context.Cause(ctx) == errModified {
 			return nil, protocol.ErrContentModified

@@ -20,6 +20,9 @@ func initialize(_ context.Context, r *request, p *protocol.InitializeParams) (*p
 	s.client.countIn(chosen.positions)
 	s.mapper = mapper{encoding: s.client.encoding}
 	s.phase.Store(int32(inService))
+	if p.ProcessID != nil {
+		go s.watchParent(*p.ProcessID)
+	}
 	roots := s.rootsOf(p)
 	s.startWatching(roots)
 	s.change(func(next *snapshot) []string {

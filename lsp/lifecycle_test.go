@@ -166,6 +166,21 @@ func TestCancellation(t *testing.T) {
 	e.quit()
 }
 
+// TestProgressOfLongRequests takes longer than a second with a token.
+func TestProgressOfLongRequests(t *testing.T) {
+	wait := answers("test/long", "", func(context.Context, *request, *struct{}) (*struct{}, error) {
+		time.Sleep(slow + 300*time.Millisecond)
+		return nil, nil
+	})
+	e := newEditor(t, "{}", "", wait)
+	e.call("test/long", map[string]any{"workDoneToken": "work"}, nil)
+	e.wait("its progress", func() bool { return len(e.progress["work"]) == 2 })
+	if get(e.progress["work"][0], "kind") != "begin" || get(e.progress["work"][1], "kind") != "end" {
+		t.Errorf("the progress is %v", e.progress["work"])
+	}
+	e.quit()
+}
+
 func TestEditSupersedesRequests(t *testing.T) {
 	started := make(chan struct{}, 1)
 	wait := answers("test/wait", "", func(ctx context.Context, r *request, p *protocol.HoverParams) (*struct{}, error) {

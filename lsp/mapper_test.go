@@ -131,3 +131,5 @@ func TestURIsAndNames(t *testing.T) {
 		}
 	}
 }
+
+func lines(text string) *dialect.Lines { return dialect.NewLines(text) }

@@ -1,6 +1,7 @@
 package lsp
 
 import (
+	"bytes"
 	"context"
 	"encoding/json"
 	"fmt"
@@ -88,7 +89,7 @@ func (s *session) requestProgress(ctx context.Context, token protocol.ProgressTo
 		case <-done:
 		case <-ctx.Done():
 		case <-time.After(slow):
-			s.sayProgress(token, &protocol.WorkDoneProgressBegin{Kind: "begin", Title: title})
+			s.sayProgress(token, &protocol.WorkDoneProgressBegin{Kind: "begin", Title: title, Cancellable: ptr(true)})
 			<-done
 			s.sayProgress(token, &protocol.WorkDoneProgressEnd{Kind: "end"})
 		}
@@ -98,6 +99,9 @@ func (s *session) requestProgress(ctx context.Context, token protocol.ProgressTo
 
 // tokenOf finds the work-done token in a request's parameters.
 func tokenOf(raw []byte) protocol.ProgressToken {
+	if !bytes.Contains(raw, []byte(`"workDoneToken"`)) {
+		return nil
+	}
 	var p struct {
 		WorkDoneToken json.RawMessage `json:"workDoneToken"`
 	}

@@ -71,7 +71,7 @@ type process struct {
 	errors  bytes.Buffer
 }
 
-func startProcess(t *testing.T) *process {
+func startProcess(t testing.TB) *process {
 	t.Helper()
 	program, err := os.Executable()
 	if err != nil {
@@ -95,7 +95,7 @@ func startProcess(t *testing.T) *process {
 	return p
 }
 
-func (p *process) send(t *testing.T, message string) {
+func (p *process) send(t testing.TB, message string) {
 	t.Helper()
 	if _, err := fmt.Fprintf(p.in, "Content-Length: %d\r\n\r\n%s", len(message), message); err != nil {
 		t.Fatalf("sending %s: %v", message, err)
@@ -103,7 +103,7 @@ func (p *process) send(t *testing.T, message string) {
 }
 
 // receive reads one message and gives it with its keys in order.
-func (p *process) receive(t *testing.T) string {
+func (p *process) receive(t testing.TB) string {
 	t.Helper()
 	type outcome struct {
 		text string
