@@ -18,6 +18,46 @@ cal -[inductor Ltank = 1 mH]- tank -[capacitor Ctank = 1 nF]- hull
 function H = v[tank]/Vcal
 `
 
+// cableFrame is the buoy's cable in lumped sections, eight times as many with
+// every level of subnetworks.
+const cableFrame = `ground hull
+subnetwork Metre (in, out, ref) {
+  in -[resistor R = 0.1 Ω]- out -[capacitor C = 100 pF]- ref
+}
+subnetwork Span (in, out, ref) {
+  part A = Metre, in at in, out at m1, ref at ref
+  part B = Metre, in at m1, out at m2, ref at ref
+  part C = Metre, in at m2, out at m3, ref at ref
+  part D = Metre, in at m3, out at m4, ref at ref
+  part E = Metre, in at m4, out at m5, ref at ref
+  part F = Metre, in at m5, out at m6, ref at ref
+  part G = Metre, in at m6, out at m7, ref at ref
+  part H = Metre, in at m7, out at out, ref at ref
+}
+subnetwork Reel (in, out, ref) {
+  part A = Span, in at in, out at m1, ref at ref
+  part B = Span, in at m1, out at m2, ref at ref
+  part C = Span, in at m2, out at m3, ref at ref
+  part D = Span, in at m3, out at m4, ref at ref
+  part E = Span, in at m4, out at m5, ref at ref
+  part F = Span, in at m5, out at m6, ref at ref
+  part G = Span, in at m6, out at m7, ref at ref
+  part H = Span, in at m7, out at out, ref at ref
+}
+subnetwork Drum (in, out, ref) {
+  part A = Reel, in at in, out at m1, ref at ref
+  part B = Reel, in at m1, out at m2, ref at ref
+  part C = Reel, in at m2, out at m3, ref at ref
+  part D = Reel, in at m3, out at m4, ref at ref
+  part E = Reel, in at m4, out at m5, ref at ref
+  part F = Reel, in at m5, out at m6, ref at ref
+  part G = Reel, in at m6, out at m7, ref at ref
+  part H = Reel, in at m7, out at out, ref at ref
+}
+voltage source Vbat = 12 V * u(t)
+supply -[Vbat]- hull
+`
+
 // answerExplanations are the codes of refused answers that are no findings of
 // their own: a question that is well formed, but has no answer.
 var answerExplanations = []Explanation{
@@ -30,6 +70,33 @@ var answerExplanations = []Explanation{
 voltage source Vbat = 12 V * u(t)
 supply -[Vbat]- hull
 supply -[resistor Rfeed = 47 F]- rail -[capacitor Crail = 10 µF]- hull
+`,
+	},
+	{
+		Code: "too-many-modes", Severity: Error, Analysis: true, Question: "poles",
+		Title:   "Too many natural frequencies to list",
+		Meaning: "The network has more natural frequencies than anyone reads in one answer (400).",
+		Mend:    "Ask for the poles of a function, or look at a part of the network with without.",
+		Example: cableFrame + `part Cable = Drum, in at supply, out at rail, ref at hull
+rail -[resistor Rload = 50 Ω]- hull
+`,
+	},
+	{
+		Code: "network-too-large", Severity: Error, Analysis: true, Question: "poles",
+		Title:   "Too large for exact answers",
+		Meaning: "The polynomials of a network of this size, written exactly, would take longer than anyone waits. Values at a frequency and tables over frequency are still answered, in double precision with a bound of their error; closed forms, poles and limits over a range are not.",
+		Mend:    "Ask for values at a frequency, or describe the network with fewer sections.",
+		Example: cableFrame + `part One = Drum, in at supply, out at j1, ref at hull
+part Two = Drum, in at j1, out at j2, ref at hull
+part Three = Drum, in at j2, out at j3, ref at hull
+part Four = Drum, in at j3, out at j4, ref at hull
+part Five = Drum, in at j4, out at j5, ref at hull
+part Six = Drum, in at j5, out at j6, ref at hull
+part Seven = Drum, in at j6, out at j7, ref at hull
+part Eight = Drum, in at j7, out at j8, ref at hull
+part Nine = Drum, in at j8, out at j9, ref at hull
+part Ten = Drum, in at j9, out at rail, ref at hull
+rail -[resistor Rload = 50 Ω]- hull
 `,
 	},
 	{

@@ -74,7 +74,7 @@ hull -[Iled]- node -[Ibias]- far -[resistor Rload = 100 Ω]- hull
 `,
 	},
 	{
-		Code: "capacitor-loop", Severity: Information, Analysis: true,
+		Code: "capacitor-loop", Severity: Hint, Analysis: true,
 		Title:   "A loop of capacitors and voltage sources",
 		Meaning: "The voltages around the loop sum to zero, so one of the capacitor voltages follows from the others: the order of the network is lower than the number of capacitors and inductors, and the initial values are tied.",
 		Mend:    "Nothing need be done. If the initial values conflict, charge is shared in an impulse, which is reported.",
@@ -87,7 +87,7 @@ mid -[resistor Rmid = 100 Ω]- hull
 `,
 	},
 	{
-		Code: "inductor-cutset", Severity: Information, Analysis: true,
+		Code: "inductor-cutset", Severity: Hint, Analysis: true,
 		Title:   "A cutset of inductors and current sources",
 		Meaning: "The currents into a part of the network sum to zero, so one of the inductor currents follows from the others: the order of the network is lower than the number of capacitors and inductors, and the initial values are tied.",
 		Mend:    "Nothing need be done. If the initial values conflict, flux is shared in an impulse, which is reported.",
@@ -151,7 +151,7 @@ out -[resistor Rload = 1 kΩ]- hull
 `,
 	},
 	{
-		Code: "hidden-mode", Severity: Information, Analysis: true,
+		Code: "hidden-mode", Severity: Hint, Analysis: true,
 		Title:   "A natural frequency that a function does not show",
 		Meaning: "The network has a natural frequency that cancels in this function: it is excited or observed elsewhere, but a measurement of this function would not reveal it.",
 		Mend:    "Nothing need be done; watch the quantity it belongs to.",
