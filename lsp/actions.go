@@ -41,14 +41,15 @@ func codeActions(ctx context.Context, r *request, p *protocol.CodeActionParams) 
 	}
 	var actions, acceptances []*protocol.CodeAction
 	span := r.mapper.span(at.file.Lines, p.Range)
-	for _, f := range found {
-		if f.Origin.File == at.file && f.Origin.Span.Start <= span.End && f.Origin.Span.End >= span.Start {
-			mend, accept := r.repairs(at, f, p.Context.Diagnostics)
-			actions, acceptances = append(actions, mend...), append(acceptances, accept...)
-		}
+	for _, f := range r.asked(at, found, span, p.Context.Diagnostics) {
+		mend, accept := r.repairs(at, f, p.Context.Diagnostics)
+		actions, acceptances = append(actions, mend...), append(acceptances, accept...)
 	}
 	actions = append(actions, acceptances...) // the first one offered is a repair where there is one
-	if list := obvious(at.file, found); len(list) > 0 {
+	// A client that asks about one diagnostic and knows no preferred action may
+	// apply all that it gets (Kate does).
+	alone := len(p.Context.Diagnostics) > 0 && len(p.Context.Only) == 0 && !r.client.preferredActions
+	if list := obvious(at.file, found); len(list) > 0 && !alone {
 		actions = append(actions, r.fixAll(at, list))
 	}
 	out := []protocol.CommandOrCodeAction{}
@@ -63,6 +64,28 @@ func codeActions(ctx context.Context, r *request, p *protocol.CodeActionParams) 
 		}
 	}
 	return out, nil
+}
+
+// asked are the findings that a client asks about: those that touch the span
+// and, where it names diagnostics, are among them. Kate asks about one
+// diagnostic with the whole document as the span. Diagnostics that are all of
+// an older version say nothing.
+func (r *request) asked(at *place, found []dialect.Finding, span dialect.Span, named []protocol.Diagnostic) []dialect.Finding {
+	var touching, among []dialect.Finding
+	for _, f := range found {
+		if f.Origin.File != at.file || f.Origin.Span.Start > span.End || f.Origin.Span.End < span.Start {
+			continue
+		}
+		touching = append(touching, f)
+		d := r.diagnostic(f)
+		if slices.ContainsFunc(named, func(n protocol.Diagnostic) bool { return n.Range == d.Range && n.Code == d.Code }) {
+			among = append(among, f)
+		}
+	}
+	if len(among) > 0 {
+		return among
+	}
+	return touching
 }
 
 // wanted says that the client asked for a kind or one above it.

@@ -2,6 +2,7 @@ package lsp
 
 import (
 	"encoding/json"
+	"maps"
 	"slices"
 	"strings"
 	"sync"
@@ -14,8 +15,9 @@ import (
 
 // publisher remembers what the client shows, file by file.
 type publisher struct {
-	mu    sync.Mutex
-	shown map[string]published
+	mu      sync.Mutex
+	shown   map[string]published
+	waiting map[string]bool // files whose findings were not whole yet
 }
 
 type published struct {
@@ -63,9 +65,15 @@ func (s *session) publishChanged(names []string) {
 	s.publisher.mu.Lock()
 	defer s.publisher.mu.Unlock()
 	snap := s.current.Load()
-	slices.Sort(names)
-	for _, name := range slices.Compact(names) {
+	if s.publisher.waiting == nil {
+		s.publisher.waiting = map[string]bool{}
+	}
+	for _, name := range names {
+		s.publisher.waiting[name] = true
+	}
+	for _, name := range slices.Sorted(maps.Keys(s.publisher.waiting)) {
 		if list, whole := snap.findingsOf(name); whole {
+			delete(s.publisher.waiting, name)
 			s.publish(snap, name, list)
 		}
 	}
