@@ -92,7 +92,7 @@ func BenchmarkFactorAndSolve(b *testing.B) {
 		omega := 1e5
 		for b.Loop() {
 			omega *= 1.0001
-			if err := f.factorise(ctx, omega, usedLimit); err != nil {
+			if err := f.factorise(ctx, complex(0, omega), usedLimit); err != nil {
 				b.Fatal(err)
 			}
 			clear(x)
@@ -115,7 +115,7 @@ func BenchmarkSweep(b *testing.B) {
 		omega := 1e5
 		for b.Loop() {
 			omega *= 1.0001
-			if _, err := w.at(context.Background(), omega); err != nil {
+			if _, err := w.answerAt(context.Background(), omega); err != nil {
 				b.Fatal(err)
 			}
 		}

@@ -147,13 +147,14 @@ func (p *symmetricPlan) factor() *symmetricFactor {
 	return f
 }
 
-// factorise computes the values at an angular frequency. It fails with errPivot
-// where an entry of L exceeds limit.
-func (f *symmetricFactor) factorise(ctx context.Context, omega, limit float64) error {
+// factorise computes the values at a point. It fails with errPivot where the
+// entries of L are too large.
+func (f *symmetricFactor) factorise(ctx context.Context, s complex128, limit float64) error {
 	clear(f.x)
 	g, c := f.g, f.c[:len(f.g)]
-	for k, s := range f.slot[:len(g)] {
-		f.x[s] = complex(g[k], omega*c[k])
+	re, im := real(s), imag(s)
+	for k, to := range f.slot[:len(g)] {
+		f.x[to] = complex(g[k]+re*c[k], im*c[k])
 	}
 	if f.compiled != nil {
 		return f.compiled.factorise(ctx, f.x, limit)

@@ -55,10 +55,32 @@ func compile(p *exact.Pencil) (*matrix, error) {
 	return m, nil
 }
 
-// values fills a with G + jω·C, rounded.
-func (m *matrix) values(omega float64, a []complex128) {
+// values fills a with G + s·C, rounded.
+func (m *matrix) values(s complex128, a []complex128) {
+	re, im := real(s), imag(s)
 	for k := range a {
-		a[k] = complex(m.g[k].hi, omega*m.c[k].hi)
+		c := m.c[k].hi
+		a[k] = complex(m.g[k].hi+re*c, im*c)
+	}
+}
+
+// point is a value of s in doubles.
+type point struct{ re, im double }
+
+func (p point) rounded() complex128 { return complex(p.re.hi, p.im.hi) }
+
+// of returns g + s·c.
+func (p point) of(g, c double) (re, im double) {
+	if p.re.hi != 0 {
+		g = g.plus(c.times(p.re))
+	}
+	return g, c.times(p.im)
+}
+
+// doubles fills re and im with G + s·C in doubles.
+func (m *matrix) doubles(s point, re, im []double) {
+	for k := range re {
+		re[k], im[k] = s.of(m.g[k], m.c[k])
 	}
 }
 

@@ -11,10 +11,8 @@ type vector struct {
 	g, c  []double
 }
 
-// at returns the entry k at s = jω.
-func (v *vector) at(k int, omega double) (re, im double) {
-	return v.g[k], v.c[k].times(omega)
-}
+// at returns the entry k at a point.
+func (v *vector) at(k int, s point) (re, im double) { return s.of(v.g[k], v.c[k]) }
 
 // add puts g or s·c into the vector.
 func (v *vector) add(i int, value *big.Rat, reactive bool) error {
@@ -59,19 +57,19 @@ func newResidue(n int) *residue {
 }
 
 // start sets the residue to b.
-func (r *residue) start(b *vector, omega double) {
+func (r *residue) start(b *vector, s point) {
 	clear(r.re)
 	clear(r.im)
 	clear(r.size)
 	for k, i := range b.index {
-		re, im := b.at(k, omega)
+		re, im := b.at(k, s)
 		r.re[i], r.im[i] = r.re[i].plus(re), r.im[i].plus(im)
 		r.size[i] += norm1(complex(re.hi, im.hi))
 	}
 }
 
-// subtract takes A·x off, or Aᵀ·x; w holds ω·C.
-func (r *residue) subtract(m *matrix, w []double, x []complex128, transposed bool) {
+// subtract takes A·x off, or Aᵀ·x; are and aim hold the entries of A.
+func (r *residue) subtract(m *matrix, are, aim []double, x []complex128, transposed bool) {
 	for j := range m.n {
 		for k := m.start[j]; k < m.start[j+1]; k++ {
 			to, from := m.row[k], int32(j)
@@ -82,7 +80,7 @@ func (r *residue) subtract(m *matrix, w []double, x []complex128, transposed boo
 			if v == 0 {
 				continue
 			}
-			g, h, re, im := m.g[k], w[k], -real(v), -imag(v)
+			g, h, re, im := are[k], aim[k], -real(v), -imag(v)
 			r.re[to] = r.re[to].plus(g.scaled(re)).plus(h.scaled(-im))
 			r.im[to] = r.im[to].plus(g.scaled(im)).plus(h.scaled(re))
 			r.size[to] += norm1(complex(g.hi, h.hi)) * norm1(v)

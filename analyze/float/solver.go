@@ -77,7 +77,7 @@ func (s *Solver) At(ctx context.Context, omega float64, outs []network.Output, c
 	if math.IsNaN(omega) || math.Abs(omega) > largest {
 		return nil, ErrRange
 	}
-	return s.at(ctx, double{omega, 0}, outs, cols)
+	return s.at(ctx, point{im: double{omega, 0}}, outs, cols)
 }
 
 // AtRat is At for a frequency that is not a float64: with a sharp resonance
@@ -87,14 +87,14 @@ func (s *Solver) AtRat(ctx context.Context, omega *big.Rat, outs []network.Outpu
 	if !ok {
 		return nil, ErrRange
 	}
-	return s.at(ctx, w, outs, cols)
+	return s.at(ctx, point{im: w}, outs, cols)
 }
 
 // workspace is what one solution needs besides the pattern.
 type workspace struct {
 	a, scaled, x, y []complex128
-	w               []double
-	factor          factor // one of the next two
+	re, im          []double // entries, for residuals in doubles
+	factor          factor   // one of the next two
 	ldl             *symmetricFactor
 	lu              *luFactor
 }
@@ -110,7 +110,6 @@ func (s *Solver) workspace() *workspace {
 	n, e := s.m.n, len(s.m.row)
 	return &workspace{
 		a: make([]complex128, e), scaled: make([]complex128, e), x: make([]complex128, n), y: make([]complex128, n),
-		w: make([]double, e),
 	}
 }
 
@@ -122,25 +121,21 @@ func (s *Solver) release(w *workspace) {
 	}
 }
 
-func (s *Solver) at(ctx context.Context, omega double, outs []network.Output, cols []network.Column) (*Result, error) {
+func (s *Solver) at(ctx context.Context, at point, outs []network.Output, cols []network.Column) (*Result, error) {
 	ask, err := s.question(outs, cols)
 	if err != nil {
 		return nil, err
 	}
-	return s.precise(ctx, omega, ask)
+	return s.precise(ctx, at, ask)
 }
 
 // precise answers with residuals of double length.
-func (s *Solver) precise(ctx context.Context, omega double, ask *question) (*Result, error) {
+func (s *Solver) precise(ctx context.Context, at point, ask *question) (*Result, error) {
 	if err := ctx.Err(); err != nil {
 		return nil, err
 	}
-	q := &query{Solver: s, omega: omega, workspace: s.workspace(), residue: newResidue(s.m.n)}
+	q := s.query(at)
 	defer s.release(q.workspace)
-	s.m.values(omega.hi, q.a)
-	for k, c := range s.m.c {
-		q.w[k] = c.times(omega)
-	}
 	return attempt(q, ctx, func() (*Result, error) { return q.answer(ctx, ask) })
 }
 
@@ -174,12 +169,23 @@ const (
 	ways
 )
 
-// query is the solution at one frequency.
+// query is the solution at one point.
 type query struct {
 	*Solver
 	*workspace
-	omega   double
+	at      point
 	residue *residue
+}
+
+// query prepares the matrix at a point; its workspace must be released.
+func (s *Solver) query(at point) *query {
+	q := &query{Solver: s, at: at, workspace: s.workspace(), residue: newResidue(s.m.n)}
+	s.m.values(at.rounded(), q.a)
+	if q.re == nil {
+		q.re, q.im = make([]double, len(s.m.row)), make([]double, len(s.m.row))
+	}
+	s.m.doubles(at, q.re, q.im)
+	return q
 }
 
 // factorise factorises the matrix in one way. It fails with errPivot where that
@@ -194,7 +200,7 @@ func (q *query) factorise(ctx context.Context, way int) error {
 			q.ldl = plan.factor()
 		}
 		q.factor = q.ldl
-		return q.ldl.factorise(ctx, q.omega.hi, usedLimit)
+		return q.ldl.factorise(ctx, q.at.rounded(), usedLimit)
 	case way == symmetricAnew && q.multipliers != nil:
 		return q.symmetricAnew(ctx)
 	case way == generalAgain && pattern != nil:
@@ -219,7 +225,7 @@ func (q *query) symmetricAnew(ctx context.Context) error {
 	}
 	q.ldl = plan.factor()
 	q.factor = q.ldl
-	if err := q.ldl.factorise(ctx, q.omega.hi, freshLimit); err != nil {
+	if err := q.ldl.factorise(ctx, q.at.rounded(), freshLimit); err != nil {
 		return err
 	}
 	q.mu.Lock()
@@ -278,7 +284,7 @@ func (q *query) refine(ctx context.Context, b *vector, transposed bool) (*soluti
 	if transposed {
 		weight = q.factor.scaling().row
 	}
-	q.residue.start(b, q.omega)
+	q.residue.start(b, q.at)
 	before := math.Inf(1)
 	for round := range 8 {
 		if err := ctx.Err(); err != nil {
@@ -312,8 +318,8 @@ func (q *query) refine(ctx context.Context, b *vector, transposed bool) (*soluti
 		for i, d := range s.next {
 			s.x[i] += d
 		}
-		q.residue.start(b, q.omega)
-		q.residue.subtract(q.m, q.w, s.x, transposed)
+		q.residue.start(b, q.at)
+		q.residue.subtract(q.m, q.re, q.im, s.x, transposed)
 	}
 	s.size = append([]float64(nil), q.residue.size...)
 	for i := range n {
@@ -425,7 +431,7 @@ func (q *query) value(o *vector, y, x *solution, direct double) (v complex128, r
 	re, im := direct, double{}
 	radius = floor + 64*unit2*math.Abs(direct.hi)
 	for k, i := range o.index {
-		g, c := o.at(k, q.omega)
+		g, c := o.at(k, q.at)
 		a, b := real(x.x[i]), imag(x.x[i])
 		re = re.plus(g.scaled(a)).plus(c.scaled(-b))
 		im = im.plus(g.scaled(b)).plus(c.scaled(a))

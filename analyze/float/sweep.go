@@ -40,7 +40,7 @@ func (s *Solver) Sweep(ctx context.Context, omegas []float64, outs []network.Out
 			w := s.sweeper(ask)
 			defer s.release(w.workspace)
 			for i := from; i < to && !failed.Load(); i++ {
-				r, err := w.at(ctx, omegas[i])
+				r, err := w.answerAt(ctx, omegas[i])
 				if err != nil && !errors.Is(err, ErrSingular) {
 					errs[k] = err
 					failed.Store(true)
@@ -111,13 +111,13 @@ func (s *Solver) sweeper(ask *question) *sweeper {
 	return w
 }
 
-// at answers at one frequency, in double precision if that is good enough.
-func (w *sweeper) at(ctx context.Context, omega float64) (*Result, error) {
+// answerAt answers at one frequency, in double precision if that is good enough.
+func (w *sweeper) answerAt(ctx context.Context, omega float64) (*Result, error) {
 	if err := ctx.Err(); err != nil {
 		return nil, err
 	}
-	w.omega = double{omega, 0}
-	w.m.values(omega, w.a)
+	w.at = point{im: double{omega, 0}}
+	w.m.values(complex(0, omega), w.a)
 	for way := range ways {
 		switch err := w.factorise(ctx, way); {
 		case errors.Is(err, errPivot):
@@ -131,7 +131,7 @@ func (w *sweeper) at(ctx context.Context, omega float64) (*Result, error) {
 		}
 		break
 	}
-	return w.precise(ctx, w.omega, w.ask)
+	return w.precise(ctx, w.at, w.ask)
 }
 
 // fineEnough is the relative backward error, and the relative radius, up to
@@ -186,7 +186,7 @@ func (w *sweeper) solvePlain(p *plain, b *vector, transposed bool) bool {
 	clear(p.x)
 	clear(p.r)
 	clear(p.size)
-	omega := w.omega.hi
+	omega := w.at.im.hi
 	for k, i := range b.index {
 		v := complex(b.g[k].hi, omega*b.c[k].hi)
 		p.x[i] += v
@@ -241,7 +241,7 @@ func (w *sweeper) plainValue(i, j int) (v complex128, radius, amplified float64)
 	v = complex(direct.hi, 0)
 	rough := math.Abs(direct.hi)
 	for k, r := range o.index {
-		c := complex(o.g[k].hi, w.omega.hi*o.c[k].hi)
+		c := complex(o.g[k].hi, w.at.im.hi*o.c[k].hi)
 		v += c * x.x[r]
 		rough += norm1(c) * norm1(x.x[r])
 	}
