@@ -274,8 +274,12 @@ func (g *generator) dependent(kind string) {
 	g.path(b, fmt.Sprintf("%s source %s = %s", kind, b.name, strings.Join(terms, " + ")))
 }
 
-// sameControl tells whether two terms follow one quantity, maybe turned around.
+// sameControl tells whether two terms follow one quantity, maybe turned around,
+// or share a denominator: then one state serves both.
 func sameControl(a, b plainControl) bool {
+	if len(a.k.den) > 1 && len(a.k.den) == len(b.k.den) && proportional(a.k.den, b.k.den) {
+		return true
+	}
 	return a.branch == b.branch && min(a.plus, a.minus) == min(b.plus, b.minus) && max(a.plus, a.minus) == max(b.plus, b.minus)
 }
 

@@ -367,7 +367,8 @@ func (n *networkAsker) power(at *big.Rat, x []float64, size float64) {
 	default:
 		n.fail("%s has no closed form", question)
 	}
-	n.close("the terms of "+question, addedUp(pieces, f64(at)), want, size*size)
+	sum, largest := addedUp(pieces, f64(at))
+	n.close("the terms of "+question, sum, want, math.Max(size*size, 1e-7*largest))
 }
 
 // growth is the greatest real part, in 1/s, of the natural frequencies in any
@@ -435,9 +436,9 @@ func (n *networkAsker) parts(out plainOutput, question string, value *analyze.Si
 		math.Max(size, math.Abs(forced.Total.MidFloat64())))
 }
 
-// addedUp adds up the terms of a closed form at a time.
-func addedUp(pieces []response.Piece, t float64) float64 {
-	sum := 0.0
+// addedUp adds up the terms of a closed form at a time, and gives the size of the
+// largest: where terms cancel, digits of double precision go.
+func addedUp(pieces []response.Piece, t float64) (sum, largest float64) {
 	for _, p := range pieces {
 		tau := t - p.From.Float()
 		if tau < 0 || p.Until != nil && t >= p.Until.Float() {
@@ -446,8 +447,9 @@ func addedUp(pieces []response.Piece, t float64) float64 {
 		for _, x := range p.Terms {
 			c := complex(x.Coefficient.Re.MidFloat64(), x.Coefficient.Im.MidFloat64())
 			pole := complex(x.Pole.Re.MidFloat64(), x.Pole.Im.MidFloat64())
-			sum += real(c*cmplx.Exp(pole*complex(tau, 0))) * math.Pow(tau, float64(x.Power))
+			v := c * cmplx.Exp(pole*complex(tau, 0)) * complex(math.Pow(tau, float64(x.Power)), 0)
+			sum, largest = sum+real(v), math.Max(largest, cmplx.Abs(v))
 		}
 	}
-	return sum
+	return sum, largest
 }
