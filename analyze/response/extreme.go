@@ -25,7 +25,7 @@ const (
 	// softBudget is after how many boxes a search stops that knows the value to
 	// softWidth of itself already: which of many nearly equal peaks is greatest
 	// is then left open. At searchBudget it makes do with hardWidth.
-	softBudget = 10_000
+	softBudget = 3_000
 	softWidth  = 1e-10
 	hardWidth  = 1e-6
 	// sharpenBudget is how many boxes that may hold the maximum, but were not
@@ -136,9 +136,9 @@ func (s *search) run(ctx context.Context) error {
 // errTooMany: the greatest value is known to be between two bounds only.
 var errTooMany = undecided("the curve has too many nearly equal peaks in the range")
 
-// knows tells whether the greatest value is known to a part of itself.
+// knows tells whether the greatest value is known to a part of the curve's size.
 func (s *search) knows(part float64) bool {
-	return len(s.queue) > 0 && s.queue[0].on.hi-s.best <= part*math.Abs(s.best)
+	return len(s.queue) > 0 && s.queue[0].on.hi-s.best <= part*s.scale
 }
 
 // sharpen cuts boxes that may hold the maximum and were not looked at closely,
@@ -307,6 +307,7 @@ func (s *search) addPart(b *box, u, v float64) {
 	part.a = math.Max(b.a, down(b.m+b.h*u, b.m))
 	part.b = math.Min(b.b, up(b.m+b.h*v, b.m))
 	part.on = s.evaluate(b.models, u, v)
+	part.on.hi = math.Min(part.on.hi, b.on.hi) // a wide panel says less than what it was cut from
 	c := (u + v) / 2
 	s.best = math.Max(s.best, s.evaluate(b.models, c, c).lo)
 	s.add(part)
@@ -437,8 +438,8 @@ func (c *Curve) greatest(ctx context.Context, r Range) (Extreme, error) {
 // whole finds the greatest value over all stages.
 func (s *search) whole(ctx context.Context) (Extreme, error) {
 	var floor *Extreme // the least upper limit for t → ∞
-	var err error
 	for _, st := range s.stages {
+		var err error
 		if st.end == nil {
 			floor, err = s.prepareTail(ctx, st)
 		} else {
@@ -448,18 +449,25 @@ func (s *search) whole(ctx context.Context) (Extreme, error) {
 			return Extreme{}, err
 		}
 	}
-	if err = s.run(ctx); err == nil {
+	e, err := s.find(ctx, floor)
+	if s.spread.IsFinite() && !s.spread.ContainsZero() {
+		e.Value, e.Exact = e.Value.WithBound(s.spread), nil
+	}
+	return e, err
+}
+
+// find searches and concludes; limit, where there is one, competes.
+func (s *search) find(ctx context.Context, limit *Extreme) (Extreme, error) {
+	err := s.run(ctx)
+	if err == nil {
 		err = s.sharpen(ctx)
 	}
 	var e Extreme
 	if err == nil {
-		e, err = s.conclude(ctx, floor)
+		e, err = s.conclude(ctx, limit)
 	}
 	if errors.Is(err, ErrUndecided) {
-		e, err = s.outer(err)
-	}
-	if s.spread.IsFinite() && !s.spread.ContainsZero() {
-		e.Value, e.Exact = e.Value.WithBound(s.spread), nil
+		return s.outer(err)
 	}
 	return e, err
 }
@@ -476,7 +484,7 @@ func (s *search) outer(why error) (Extreme, error) {
 		return Extreme{}, why
 	}
 	e := Extreme{Value: number.Hull(new(big.Float).SetFloat64(s.best), new(big.Float).SetFloat64(hi), refinePrecision), Bounds: true}
-	if hi-s.best <= hardWidth*math.Abs(s.best) {
+	if hi-s.best <= hardWidth*math.Abs(s.best) || hi-s.best <= softWidth*s.scale {
 		e.Proved, why = true, nil
 	}
 	return e, why

@@ -2,63 +2,10 @@ package response
 
 import (
 	"context"
-	"errors"
 	"math/big"
 
 	"portlight/dialect/number"
 )
-
-// Peak is the greatest value over the range (its least upper bound), and where
-// it is first taken. Both limits count at a jump. The error is ErrUndefined with
-// the reason (it grows, there is an impulse), ErrUndecided, ErrRange, or the
-// context's.
-func (c *Curve) Peak(ctx context.Context, r Range) (Extreme, error) {
-	if c.op == opAbs {
-		return c.args[0].farthest(ctx, r)
-	}
-	return c.greatest(ctx, r)
-}
-
-// farthest is the greatest distance from zero: the greater of peak and
-// negative trough. Either search is much easier than one for the absolute
-// value, which is near its maximum on both sides of zero.
-func (c *Curve) farthest(ctx context.Context, r Range) (Extreme, error) {
-	hi, err := c.Peak(ctx, r)
-	if err != nil && !hi.Bounds {
-		return hi, err
-	}
-	lo, late := c.Trough(ctx, r)
-	if late != nil && !lo.Bounds {
-		return lo, late
-	}
-	lo.Value = lo.Value.Neg()
-	if lo.Exact != nil {
-		lo.Exact = new(big.Rat).Neg(lo.Exact)
-	}
-	order, sure := lo.Value.Cmp(hi.Value)
-	switch {
-	case sure && order > 0:
-		return lo, late
-	case sure && order < 0:
-		return hi, err
-	case hi.Bounds || lo.Bounds:
-		both := Extreme{Value: betweenBalls(opGreatest, hi.Value, lo.Value), Bounds: true, Proved: hi.Proved && lo.Proved}
-		return both, errors.Join(err, late)
-	case !lo.HasAt, hi.HasAt && hi.At.Mid().Cmp(lo.At.Mid()) <= 0:
-		return hi, nil
-	}
-	return lo, nil
-}
-
-// Trough is the least value over the range (its greatest lower bound).
-func (c *Curve) Trough(ctx context.Context, r Range) (Extreme, error) {
-	e, err := c.Neg().greatest(ctx, r)
-	e.Value = e.Value.Neg()
-	if e.Exact != nil {
-		e.Exact = new(big.Rat).Neg(e.Exact)
-	}
-	return e, err
-}
 
 // Bound is a ball that holds every value the curve takes in the range, the
 // hull of trough and peak.

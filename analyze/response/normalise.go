@@ -69,6 +69,15 @@ func (e Extreme) scaled(k int) Extreme {
 	return e
 }
 
+// negated is minus an extreme.
+func (e Extreme) negated() Extreme {
+	e.Value = e.Value.Neg()
+	if e.Exact != nil {
+		e.Exact = new(big.Rat).Neg(e.Exact)
+	}
+	return e
+}
+
 // ratPow2 is 2^k·r.
 func ratPow2(r *big.Rat, k int) *big.Rat {
 	if k == 0 {

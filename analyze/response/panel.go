@@ -334,8 +334,8 @@ func (st *stage) crude(c *Curve, a, b float64) enclosure {
 // crude bounds the sum on [a, b] by the sizes of its terms, real ones of degree
 // 0 by their monotone course.
 func (x *floatSum) crude(a, b float64) enclosure {
-	together, grouped := x.beats(a, b)
-	lo, hi := -together, together
+	span, grouped := x.together(a, b)
+	lo, hi := span.lo, span.hi
 	for i := range x.terms {
 		f := &x.terms[i]
 		if grouped != nil && grouped[i] {

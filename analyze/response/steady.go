@@ -208,11 +208,7 @@ func (s *search) findLasting(ctx context.Context, st *stage, period float64) (wh
 		s.replaceTail(st, period)
 		return true, nil
 	}
-	inner := newSearch(s.curve, []*stage{steady})
-	if err := inner.run(ctx); err != nil {
-		return false, err
-	}
-	if l.top, err = inner.conclude(ctx, nil); err != nil {
+	if l.top, err = newSearch(s.curve, []*stage{steady}).find(ctx, nil); err != nil {
 		return false, err
 	}
 	upper, _ := l.top.Value.Upper().Float64()

@@ -190,14 +190,45 @@ func (b Ball) Abs() Ball {
 
 // Add returns x+y.
 func (b Ball) Add(y Ball) Ball {
+	if b.swallows(&y) {
+		return b.widenedBy(&y)
+	}
+	if y.swallows(&b) {
+		return y.widenedBy(&b)
+	}
 	var z Ball
 	z.mid.SetPrec(resultPrecision(&b, &y)).Add(&b.mid, &y.mid)
 	z.rad = b.rad.addUp(y.rad)
 	return z.rounded()
 }
 
+// farApart is by how many powers of two beyond the precision the midpoints of a
+// sum may differ: aligning them would need that many bits.
+const farApart = 4096
+
+// swallows tells whether y is nothing beside b at the precision of the sum.
+func (b *Ball) swallows(y *Ball) bool {
+	if b.mid.Sign() == 0 || y.mid.Sign() == 0 || b.mid.IsInf() || y.mid.IsInf() {
+		return false
+	}
+	return b.mid.MantExp(nil)-y.mid.MantExp(nil) > int(resultPrecision(b, y))+farApart
+}
+
+// widenedBy is b ± |y| at the precision of the sum.
+func (b Ball) widenedBy(y *Ball) Ball {
+	z := Ball{rad: b.rad.addUp(y.magnitudeUp())}
+	z.mid.SetPrec(resultPrecision(&b, y)).Set(&b.mid)
+	return z.rounded()
+}
+
 // Sub returns x−y.
 func (b Ball) Sub(y Ball) Ball {
+	if b.swallows(&y) {
+		return b.widenedBy(&y)
+	}
+	if y.swallows(&b) {
+		return y.Neg().widenedBy(&b)
+	}
 	var z Ball
 	z.mid.SetPrec(resultPrecision(&b, &y)).Sub(&b.mid, &y.mid)
 	z.rad = b.rad.addUp(y.rad)

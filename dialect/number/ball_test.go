@@ -222,3 +222,32 @@ func TestConcurrentUseIsDeterministic(t *testing.T) {
 	}
 	all.Wait()
 }
+
+// Sums of numbers so far apart that they are not aligned hold the exact result,
+// and those of 2^(±10^8) come at once.
+func TestSumsOfNumbersFarApart(t *testing.T) {
+	one := BallFromInt(1, 128)
+	for _, k := range []int{100, 4096, 4300, 20000} {
+		for _, sign := range []int64{1, -1} {
+			small := BallFromInt(3*sign, 64).MulPow2(-k)
+			x := new(big.Rat).SetFrac(big.NewInt(3*sign), new(big.Int).Lsh(big.NewInt(1), uint(k)))
+			whole := big.NewRat(1, 1)
+			for what, c := range map[string]struct {
+				got  Ball
+				want *big.Rat
+			}{
+				"1+x": {one.Add(small), new(big.Rat).Add(whole, x)},
+				"x+1": {small.Add(one), new(big.Rat).Add(whole, x)},
+				"1-x": {one.Sub(small), new(big.Rat).Sub(whole, x)},
+				"x-1": {small.Sub(one), new(big.Rat).Sub(x, whole)},
+			} {
+				if !c.got.Contains(c.want) || c.got.RelativeBits() < 100 || k > 4300 && c.got.IsExact() {
+					t.Errorf("%s for x = %d·2^-%d: %s", what, 3*sign, k, c.got)
+				}
+			}
+		}
+	}
+	if z := one.MulPow2(1e8).Add(one.MulPow2(-1e8)); z.RelativeBits() < 1e8 {
+		t.Errorf("2^(10^8) + 2^(-10^8) has %d bits", z.RelativeBits())
+	}
+}
