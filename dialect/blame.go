@@ -38,11 +38,31 @@ func (m *blame) around(sym *Symbol, work func() operand) operand {
 	return o
 }
 
-// why tells what stands in the way of a question or limit.
-func (m *blame) why() string {
-	if m.culprit == nil {
+// why tells what stands in the way of a question or limit; own says that its
+// own line has an error.
+func (m *blame) why(own bool) string {
+	if own {
 		return "its own line has an error"
+	}
+	if m.culprit == nil {
+		return "the network is not complete because of the errors reported"
 	}
 	sym := m.culprit
 	return fmt.Sprintf("the line that defines the %s %s has an error", sym.describe(), sym.Name)
+}
+
+// errorIn says that something has been told about the line of a statement.
+func (b *builder) errorIn(inst *instance, st Statement) bool {
+	head := st.Headline()
+	file := inst.scope.unit.file
+	if head.Broken || b.c.brokenAt(Origin{File: file, Span: Span{head.Span.Start, head.Span.Start}}) {
+		return true
+	}
+	for _, f := range b.c.findings {
+		s := f.Origin.Span
+		if f.Severity == Error && f.Origin.File == file && s.Start >= head.Span.Start && s.End <= head.Span.End {
+			return true
+		}
+	}
+	return false
 }

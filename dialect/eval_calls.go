@@ -48,6 +48,15 @@ func (e *evaluator) countArguments(x *CallExpr, info *callInfo) bool {
 	if n >= most-info.Optional && (n <= most || info.many) {
 		return true
 	}
+	if meant := map[string]string{"max": "peak", "min": "trough"}[info.Name]; meant != "" && n == 1 {
+		if sub, ok := x.Args[0].(*SubscriptExpr); ok && e.in == inSignal {
+			at := x.Callee.Extent()
+			e.report(x.Span, "arguments", "%s compares two values or more; the %s value of a signal is %s(%s)", info.Name,
+				pickWord(info.Name == "max", "largest", "smallest"), meant, e.written(sub.Span)).
+				repair(e.text(), at, meant, "write "+meant)
+			return false
+		}
+	}
 	form := info.Name + "("
 	for i, p := range info.Parameters {
 		if i > 0 {

@@ -54,6 +54,19 @@ tell z[source] at 1000 1/s
 `,
 	},
 	{
+		Code: "level-missing", Severity: Warning,
+		Title:   "A magnitude compared with a negative number",
+		Meaning: "gain(H), and abs of a function, is a magnitude: a ratio that is never negative. A limit with a negative plain number always holds or never does. A level in dB was probably meant.",
+		Mend:    "Write the unit of the level: gain(H) >= -3 dB.",
+		Example: `ground hull
+voltage source Vs = 1 V * u(t)
+supply -[Vs]- hull
+supply -[resistor Rfeed = 47 Ω]- rail -[capacitor Crail = 10 µF]- hull
+function H = v[rail]/Vs
+require gain(H) >= -3 to 100 Hz
+`,
+	},
+	{
 		Code: "not-dimensionless", Severity: Error,
 		Title:   "A function that takes plain numbers",
 		Meaning: "exp, log, sin, cos and dB are defined for plain numbers (the sine and cosine for angles too), and an exponent is one. The exponential of 2 V has no meaning.",

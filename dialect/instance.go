@@ -72,6 +72,7 @@ type builder struct {
 	prefixed   bool                // a resistor is in mΩ or MΩ
 	sound      map[*Tolerance]bool // values in the series of their tolerance
 	coilJoints map[int]bool        // joints that an inductor touches
+	lossy      map[int]bool        // nodes that an inductor or capacitor touches
 }
 
 // maxParts bounds the size of an expanded network, which nested uses could

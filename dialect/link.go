@@ -45,6 +45,9 @@ func (c *checker) existingNode(s *scope, name Word, st Statement, format string)
 		c.table.record(sym, s.unit.file, name.Span, false)
 		return sym
 	}
+	if c.lostName(s.unit, name.Text) {
+		return c.add(s, NodeSymbol, name, st)
+	}
 	f := c.report(s.unit.file, name.Span, "unknown-name", format, name.Text)
 	c.offerNames(f, s, name, func(sym *Symbol) bool { return sym.Sort == NodeSymbol })
 	return c.add(s, NodeSymbol, name, st)
@@ -53,7 +56,8 @@ func (c *checker) existingNode(s *scope, name Word, st Statement, format string)
 // linkPort resolves the nodes of a port.
 func (c *checker) linkPort(s *scope, st *PortStatement) {
 	plus, minus := s.nodes[st.Plus.Text], s.nodes[st.Minus.Text]
-	if plus == nil && minus == nil && st.Plus.Present() && st.Minus.Present() {
+	lost := c.lostName(s.unit, st.Plus.Text) || c.lostName(s.unit, st.Minus.Text)
+	if plus == nil && minus == nil && !lost && st.Plus.Present() && st.Minus.Present() {
 		span := Span{st.Plus.Span.Start, st.Minus.Span.End}
 		c.report(s.unit.file, span, "unknown-name", "no part is connected to %s or %s", st.Plus.Text, st.Minus.Text)
 		c.add(s, NodeSymbol, st.Plus, st)
@@ -146,6 +150,10 @@ func (c *checker) linkWord(s *scope, name Word, what string, fits func(*Symbol) 
 	sym := s.visible(name.Text)
 	if sym == nil {
 		sym = s.nodes[name.Text]
+	}
+	if sym == nil && c.lostName(s.unit, name.Text) {
+		c.fault()
+		return nil
 	}
 	if sym == nil {
 		f := c.report(s.unit.file, name.Span, "unknown-name", "there is no %s named %s", what, name.Text)
@@ -296,6 +304,12 @@ func (c *checker) linkInside(s *scope, names map[string]*Symbol, name Word, sub 
 	sym := names[name.Text]
 	if sym != nil && sym.Sort == sort && (sort != NodeSymbol || sym.Terminal) {
 		c.table.record(sym, s.unit.file, name.Span, false)
+		return
+	}
+	if sym != nil && sym.Sort == LetSymbol && sort == ParameterSymbol {
+		f := c.report(s.unit.file, name.Span, "unknown-name", "%s is a let inside %s, not a parameter: parameters stand in its first line, after with: subnetwork %s (…) with %s = …",
+			name.Text, sub.Name, sub.Name, name.Text)
+		f.relate(sym.File, sym.Span, "the let %s", name.Text)
 		return
 	}
 	f := c.report(s.unit.file, name.Span, "unknown-name", "%s has no %s %s", sub.Name, what, name.Text)

@@ -39,7 +39,7 @@ func (c *checker) linkExpr(s *scope, e Expr, depth int) {
 	case *CallExpr:
 		if name, ok := e.Callee.(*NameExpr); ok {
 			if _, builtin := callTable[name.Text()]; !builtin || s.visible(name.Text()) != nil && callsUser(s, name) {
-				c.linkName(s, name, nil)
+				c.linkCallee(s, name, e)
 			}
 		} else {
 			c.linkExpr(s, e.Callee, depth+1)
@@ -209,6 +209,14 @@ func (c *checker) reportUnknown(s, at *scope, n *NameExpr, i int, letter *Word) 
 		c.offerNamesIn(f, s, at, w)
 		return
 	}
+	if c.lostName(s.unit, w.Text) {
+		c.fault()
+		return
+	}
+	if _, word := callTable[w.Text]; word && letter == nil {
+		c.reportUncalled(s, w)
+		return
+	}
 	what := "nothing named"
 	if letter != nil {
 		what = map[string]string{
@@ -223,10 +231,6 @@ func (c *checker) reportUnknown(s, at *scope, n *NameExpr, i int, letter *Word) 
 	if sym := s.unit.scope.lookup(w.Text, true, false); sym != nil && s.body != nil && f.f != nil {
 		f.f.Message += ": " + article(sym.describe()) + " of the file is not seen inside a subnetwork"
 		f.relate(sym.File, sym.Span, "the %s %s of the file", sym.describe(), sym.Name)
-		return
-	}
-	if _, word := callTable[w.Text]; word && letter == nil && f.f != nil {
-		f.f.Message += ": " + w.Text + " is a function and takes arguments in brackets"
 		return
 	}
 	c.offerNames(f, s, w, func(sym *Symbol) bool {

@@ -54,12 +54,14 @@ type parser struct {
 	file *File
 	text string
 
-	line    int        // the next line to read
-	pending []*Comment // ## lines directly above the next line
-	bodies  int        // nesting of subnetwork bodies
-	omitted int        // findings beyond maxFindings
-	invalid int        // bytes that are not UTF-8
-	foul    bool       // some of them are in a statement
+	line    int             // the next line to read
+	pending []*Comment      // ## lines directly above the next line
+	bodies  int             // nesting of subnetwork bodies
+	omitted int             // findings beyond maxFindings
+	invalid int             // bytes that are not UTF-8
+	foul    bool            // some of them are in a statement
+	defined map[string]bool // names before an equals sign, once needed
+	joined  int             // wires offered to join nodes
 
 	// The statement being read.
 	tokens []token

@@ -25,6 +25,8 @@ func (p *parser) convert(x Expr) Expr {
 		second := knownFactor(p.word(p.take()))
 		second.Divide = true
 		c.Unit.Factors = []UnitFactor{knownFactor(p.word(t)), second}
+	case t.kind == tWord && p.conversion(c, t):
+		return c
 	default:
 		p.missing(WantFrequencyUnit, "`Hz` or `rad/s`, the two ways to give a frequency,")
 		c.Unit.Span = p.hole(WantFrequencyUnit, frequencyUnits).Span
@@ -37,6 +39,30 @@ func (p *parser) convert(x Expr) Expr {
 	c.Unit.Span = Span{t.start, p.last()}
 	c.Span.End = p.last()
 	return c
+}
+
+// conversion reports a unit after "in" that is none of the two: with a prefix,
+// or of another quantity. It says whether it did.
+func (p *parser) conversion(c *ConvertExpr, t token) bool {
+	_, base, ok := lookupUnit(p.read(t))
+	if !ok || base == "rad" {
+		return false
+	}
+	if base == "Hz" {
+		p.fail(t.span(), "a frequency is given in Hz or in rad/s; the answer chooses the prefix itself", p.only("write `Hz`", t.span(), "Hz"))
+		p.take()
+		c.Unit.Factors = []UnitFactor{{Span: t.span(), Symbol: Word{t.span(), "Hz"}, Power: 1, Known: true, Base: "Hz"}}
+		c.Unit.Span = t.span()
+	} else {
+		whole := Span{c.X.Extent().End, t.end}
+		p.fail(Span{c.In.Span.Start, t.end}, "only frequencies are converted, to Hz or rad/s; every other answer chooses its unit and prefix itself",
+			p.only("remove it", whole, ""))
+		c.Unit.Span = p.hole(WantFrequencyUnit, frequencyUnits).Span
+		p.take()
+	}
+	p.failed = false
+	c.Span.End = max(p.last(), c.Span.End)
+	return true
 }
 
 var frequencyUnits = []string{"Hz", "rad/s"}
@@ -79,6 +105,7 @@ func (p *parser) sum() Expr {
 
 // plusMinus reads what follows "+-" where it is an addition of a negative.
 func (p *parser) plusMinus(t token, x Expr) Expr {
+	p.slashedTolerance(t)
 	plus := token{tPlus, t.start, t.start + 1}
 	minus := token{tMinus, t.start + 1, t.end}
 	return p.binary(plus, '+', x, p.termFrom(p.unary(minus, p.power())))

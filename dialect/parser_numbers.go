@@ -107,6 +107,9 @@ func (p *parser) decimalComma(n *NumberExpr) bool {
 	if !p.is(tComma) || !p.touches(0) || !p.touches(1) || p.commas > 0 || next.kind != tNumber && next.kind != tDigits {
 		return false
 	}
+	if p.thousands(n) {
+		return true
+	}
 	p.take()
 	p.take()
 	text := p.read(next)
@@ -117,11 +120,7 @@ func (p *parser) decimalComma(n *NumberExpr) bool {
 	p.failed = false
 	n.Number = Word{span, write}
 	n.Span.End = next.end
-	if rest := text[split:]; rest != "" {
-		if f := knownFactor(Word{Span{next.start + split, next.end}, rest}); f.Known {
-			p.unitFrom(n, f)
-		}
-	}
+	p.unitInside(n, next, split)
 	return true
 }
 
@@ -318,8 +317,18 @@ func (p *parser) badUnit(n *NumberExpr, symbol Word) Expr {
 		p.complain(unitUnknownCode, symbol.Span, fmt.Sprintf("`%s` is a prefix; the unit after it is missing", symbol.Text))
 		return p.unknownFactor(n, symbol)
 	}
+	if meaning, unit := valueWord(symbol.Text); meaning != "" && !p.defines(symbol.Text) {
+		t := token{tWord, symbol.Span.Start, symbol.Span.End}
+		p.explainValueWord(t, meaning, unit)
+		p.failed = false
+		return n
+	}
 	if namelike(symbol.Text) || p.nextIs(tParen, tOpen, tDot) {
 		return p.timesName(n, symbol)
+	}
+	if !p.defines(symbol.Text) {
+		p.complain(unitUnknownCode, symbol.Span, fmt.Sprintf("`%s` is no unit (a product with a name is written with *)", symbol.Text))
+		return p.unknownFactor(n, symbol)
 	}
 	whole := Span{n.Number.Span.Start, symbol.Span.End}
 	write := n.Number.Text + "*" + symbol.Text
@@ -402,7 +411,11 @@ func namelike(s string) bool {
 func (p *parser) timesName(n *NumberExpr, w Word) Expr {
 	whole := Span{n.Number.Span.Start, w.Span.End}
 	write := n.Number.Text + "*" + w.Text
-	p.fail(whole, fmt.Sprintf("multiplication is written: `%s`", write), p.only("write `"+write+"`", whole, write))
+	if p.defines(w.Text) || p.nextIs(tParen, tOpen, tDot) {
+		p.fail(whole, fmt.Sprintf("multiplication is written: `%s`", write), p.only("write `"+write+"`", whole, write))
+	} else {
+		p.fail(whole, fmt.Sprintf("multiplication is written `%s`", write))
+	}
 	p.failed = false
 	n.Span = n.Number.Span
 	at := n.Span.End

@@ -305,6 +305,7 @@ func (p *parser) tolerance() *ToleranceClause {
 func (p *parser) bound() ToleranceBound {
 	sign := p.take()
 	b := ToleranceBound{Sign: sign.span(), Signs: "±"}
+	p.slashedTolerance(sign)
 	switch sign.kind {
 	case tPlus:
 		b.Signs = "+"

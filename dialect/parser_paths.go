@@ -49,6 +49,9 @@ func (p *parser) path(head Head) Statement {
 		p.missing(WantMark, "a box -[…]-")
 		p.hole(WantMark, markBox)
 	}
+	if len(s.Chains) > 0 && !p.failed && p.bareJoin() {
+		p.at = len(p.tokens) - 1
+	}
 	p.finish()
 	return s
 }
@@ -197,7 +200,7 @@ func (p *parser) closeBox(open Span) Span {
 func (p *parser) boxJunk() {
 	t := p.peek()
 	switch {
-	case t.kind == tSlashes || t.kind == tBar:
+	case t.kind == tSlashes || t.kind == tBar || t.kind == tSlash:
 		p.fail(t.span(), fmt.Sprintf("`%s` has no meaning here; parts in parallel are written `||`", p.read(t)), p.only("write `||`", t.span(), " || "))
 		p.become(tBars)
 		return
@@ -272,6 +275,8 @@ func (p *parser) box() Box {
 	}
 	if t.kind == tDigits || t.kind == tNumber {
 		p.fail(t.span(), "a box holds a part by name, or a whole part statement: -[resistor R1 = 4k7]-")
+	} else if t.kind == tParen {
+		p.fail(t.span(), "a box holds no brackets, only a part or parts in parallel: a branch with several parts is a path of its own between the same nodes, a -[R4]-[C1]- b")
 	} else {
 		p.missing(WantBox, "a part")
 	}

@@ -116,7 +116,9 @@ func (p *parser) require(head Head) Statement {
 	p.begin(&s.Head)
 	s.Left = p.expr()
 	var chained Span
-	if rel, ok := p.relation(); ok {
+	if p.isWord("between") {
+		p.between(s)
+	} else if rel, ok := p.relation(); ok {
 		s.Relation = rel
 		s.Right = p.expr()
 		if p.relationAhead() {
@@ -358,6 +360,11 @@ func (p *parser) bareBoxes() {
 		}
 	}
 	message := "a part in a path stands in a box: in -[R1]- out"
+	if len(p.tokens) == 4 && !strings.Contains(b.String(), "!") {
+		from, to := p.tokens[0].end, p.tokens[2].start
+		p.joinNodes(Span{from, to}, span, " ", " ")
+		return
+	}
 	if write := b.String(); len(p.tokens)%4 == 2 && !strings.Contains(write, "!") {
 		p.fail(span, message, p.only("write `"+shorten(write)+"`", span, write))
 		return

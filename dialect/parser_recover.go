@@ -263,6 +263,8 @@ func (p *parser) leftover() {
 		p.fail(t.span(), "a comma is missing before this option", p.only("insert `,`", Span{at, at}, ","))
 	case t.kind == tComma:
 		p.fail(t.span(), "nothing can follow a comma here")
+	case t.kind == tBars:
+		p.fail(t.span(), "parts in parallel stand in a box, -[R1 || R2]-; as a value, two resistances in parallel are 1/(1/R1 + 1/R2)")
 	case t.kind == tEquals:
 		p.fail(t.span(), "`=` is not expected here; limits are written with <= >= < >")
 	case t.kind == tOpenBox:
@@ -284,6 +286,18 @@ func (p *parser) missingOperator(t token) {
 		}
 		if near != "" {
 			p.fail(t.span(), fmt.Sprintf("`%s` is not expected here; `%s` may be meant", p.read(t), near), p.only("write `"+near+"`", t.span(), near))
+			return
+		}
+		if meaning, unit := valueWord(p.read(t)); meaning != "" && unit == "" && !p.defines(p.read(t)) {
+			p.explainValueWord(t, meaning, unit)
+			return
+		}
+		if p.read(t) == "and" || p.read(t) == "or" {
+			p.fail(t.span(), "a question or a limit says one thing; write a line for each")
+			return
+		}
+		if next := p.peekAt(1).kind; !p.defines(p.read(t)) && next != tParen && next != tOpen {
+			p.fail(t.span(), fmt.Sprintf("%s is not expected here", p.describe()))
 			return
 		}
 	}

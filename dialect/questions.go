@@ -61,7 +61,7 @@ func (b *builder) question(main *unit, file *File, st *TellStatement) (*Question
 // leftOutWhy tells why a sound question from outside has no answer.
 func leftOutWhy(m *blame) string {
 	if m.culprit != nil {
-		return m.why()
+		return m.why(false)
 	}
 	return "what the question names was left out of the network because of the file's errors"
 }

@@ -3,6 +3,8 @@ package dialect
 import (
 	"fmt"
 	"sort"
+	"strings"
+	"unicode"
 )
 
 // findingKey tells findings apart: the same code at the same place is told
@@ -102,8 +104,33 @@ func (u *unit) collectBroken(statements []Statement) {
 		i := sort.Search(len(u.file.Findings), func(i int) bool { return u.file.Findings[i].Origin.Span.Start >= span.Start })
 		if i < len(u.file.Findings) && u.file.Findings[i].Origin.Span.Start <= span.End && u.file.Findings[i].Severity == Error {
 			u.broken = append(u.broken, span)
+			switch st.(type) {
+			case *BrokenStatement, *PathStatement, *PartStatement, *UsePartStatement:
+				u.collectLost(span)
+			}
 		}
 	}
+}
+
+// collectLost notes the words of a part or path that cannot be read: what it
+// defines or connects is not known.
+func (u *unit) collectLost(span Span) {
+	if u.lost == nil {
+		u.lost = map[string]bool{}
+	}
+	for word := range strings.FieldsFuncSeq(u.file.Text[span.Start:span.End], func(r rune) bool { return !nameRune(r) }) {
+		u.lost[word] = true
+	}
+}
+
+// nameRune says that a character can be part of a name.
+func nameRune(r rune) bool { return r == '_' || unicode.IsLetter(r) || unicode.IsDigit(r) }
+
+// lostName says that a broken statement names something, which is why it
+// seems to be missing or not to be wired.
+func (c *checker) lostName(u *unit, name string) bool {
+	c.brokenAt(Origin{File: u.file})
+	return u.lost[name]
 }
 
 // withoutEchoes drops the warning that a part is not wired where something

@@ -85,6 +85,11 @@ func scanMark(line string, at int) (tokenKind, int) {
 			return tOpenBox, at + 2
 		}
 	case '+':
+		if next == '/' {
+			if n := minusAt(line, at+2); n > 0 {
+				return tPlusMinus, at + 2 + n // a slip of ±
+			}
+		}
 		if n := minusAt(line, at+1); n > 0 && (at+1+n >= len(line) || line[at+1+n] != '[') {
 			return tPlusMinus, at + 1 + n
 		}

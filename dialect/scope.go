@@ -42,7 +42,8 @@ type unit struct {
 	used   []*unit // by its use statements, nil where not read
 	doing  bool    // its use statements are being followed
 	static *instance
-	broken []Span // statements that the parser has told about; nil: not collected
+	broken []Span          // statements that the parser has told about; nil: not collected
+	lost   map[string]bool // words of broken parts and paths, collected with broken
 }
 
 func (c *checker) newScope(u *unit, statements []Statement) *scope {

@@ -60,7 +60,7 @@ func (b *builder) tell(inst *instance, st *TellStatement) {
 		q, ok = b.ask(&evaluator{b: b, inst: inst, in: inSignal, what: "a question"}, st)
 	}
 	if !ok {
-		q = &Question{Ports: [2]int{-1, -1}, Why: m.why()}
+		q = &Question{Ports: [2]int{-1, -1}, Why: m.why(b.errorIn(inst, st))}
 	}
 	file := inst.scope.unit.file
 	q.Text = trimQuestion(file.Text[st.Keyword.Span.End:st.Span.End])
@@ -116,7 +116,7 @@ func (b *builder) require(inst *instance, st *RequireStatement) {
 	m := b.c.blame
 	m.culprit = nil
 	if st.Broken || !b.limit(inst, st, &limit) {
-		limit.Left, limit.Right, limit.Qualifiers, limit.Why = nil, nil, Qualifiers{}, m.why()
+		limit.Left, limit.Right, limit.Qualifiers, limit.Why = nil, nil, Qualifiers{}, m.why(b.errorIn(inst, st))
 	}
 	b.d.Limits = append(b.d.Limits, limit)
 }
@@ -196,5 +196,46 @@ func (e *evaluator) compared(st *RequireStatement, left, right *operand) bool {
 			}
 		}
 	}
-	return e.alike(st.Left, st.Right, left, right, "compared")
+	if !e.alike(st.Left, st.Right, left, right, "compared") {
+		return false
+	}
+	e.warnMagnitude(st.Left, st.Right, left, right)
+	e.warnMagnitude(st.Right, st.Left, right, left)
+	return true
+}
+
+// warnMagnitude warns of a magnitude that is compared with a negative number:
+// a level in dB was probably meant.
+func (e *evaluator) warnMagnitude(side, limit Expr, magnitude, value *operand) {
+	if !value.constant || !value.bare || value.dim != DimensionNumber || !magnitude.plainNumber() || !isMagnitude(magnitude.x) {
+		return
+	}
+	if sign, decided := value.value.Sign(); !decided || sign >= 0 {
+		return
+	}
+	at := limit.Extent()
+	r := e.report(at, "level-missing", "%s is a magnitude and never negative: is the level %s dB meant?",
+		e.written(side.Extent()), roundedDigits(value.value.Rat(), 6))
+	if sign, ok := limit.(*UnaryExpr); ok {
+		if _, ok := sign.X.(*NumberExpr); ok {
+			r.repair(e.text(), Span{at.End, at.End}, " dB", "write "+e.written(at)+" dB")
+		}
+	}
+}
+
+// isMagnitude says that an expression is the magnitude of a function of s.
+func isMagnitude(x Expression) bool {
+	switch x := x.(type) {
+	case *At:
+		return isMagnitude(x.X)
+	case *Call:
+		if x.Name == "gain" {
+			return true
+		}
+		if x.Name == "abs" && len(x.Args) == 1 {
+			_, value := x.Args[0].(*At)
+			return value || x.Args[0].Shape() == ShapeFunction
+		}
+	}
+	return false
 }

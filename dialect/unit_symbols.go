@@ -114,6 +114,12 @@ var unitWords = map[string][]string{
 	"megohm": {"MΩ"}, "megohms": {"MΩ"}, "kilohm": {"kΩ"}, "kilohms": {"kΩ"},
 }
 
+// prefixWords are the usual prefixes spelled out, as in nanofarad.
+var prefixWords = [][2]string{
+	{"femto", "f"}, {"pico", "p"}, {"nano", "n"}, {"micro", "µ"}, {"milli", "m"},
+	{"kilo", "k"}, {"mega", "M"}, {"giga", "G"}, {"tera", "T"},
+}
+
 // suggestUnits guesses what a spelling that is no unit was meant to be,
 // likeliest first. bare is the unit that the place expects, "" if unknown.
 func suggestUnits(text, bare string) []string {
@@ -133,6 +139,13 @@ func suggestUnits(text, bare string) []string {
 	}
 	if s, ok := unitWords[folded]; ok {
 		return s
+	}
+	for _, p := range prefixWords {
+		if rest, ok := strings.CutPrefix(folded, p[0]); ok {
+			if base := baseUnitFold(rest); base != "" && len(rest) > 2 {
+				return []string{p[1] + base}
+			}
+		}
 	}
 	return suggestPrefixed(text, folded)
 }

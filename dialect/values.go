@@ -62,12 +62,28 @@ func (b *builder) evaluateNominal(inst *instance, sym *Symbol) operand {
 			}
 		}
 		what := "the value of " + sym.Kind.String() + " " + sym.Name
+		if sym.Kind == Resistor && o.ok && o.constant && o.dim == DimensionResistance && b.zeroResistor(e, st, &o) {
+			return operand{}
+		}
 		if !o.ok || !e.fits(v, &o, kindDimension(sym.Kind), what) || !e.mustBeConstant(v, &o) || !e.positive(v, &o, what) {
 			return operand{}
 		}
 		return o
 	}
 	return operand{} // missing: reported by the parser
+}
+
+// zeroResistor reports a resistor of 0 Ω, which is a wire.
+func (b *builder) zeroResistor(e *evaluator, st *PartStatement, o *operand) bool {
+	if sign, decided := o.value.Sign(); !decided || sign != 0 {
+		return false
+	}
+	at := st.Value.Extent()
+	r := e.report(at, "not-positive", "the value of a resistor must be positive, and %s is zero: an ideal connection is a wire, wire %s", e.written(at), st.Name.Text)
+	if len(st.Options) == 0 && st.Tolerance == nil && st.Name.Present() {
+		r.repair(e.text(), Span{st.Keyword.Span.Start, at.End}, "wire "+st.Name.Text, "write wire "+st.Name.Text)
+	}
+	return true
 }
 
 // codeValue reads a value in the code of IEC 60062.

@@ -25,6 +25,9 @@ func (c *checker) checkPartWired(s *scope, sym *Symbol) {
 	case OpAmp, Transformer, NoKind:
 		return // told as options that are missing
 	}
+	if c.lostName(s.unit, sym.Name) {
+		return
+	}
 	f := c.report(s.unit.file, sym.Span, "never-wired", "%s %s is not wired: no path leads through it", sym.Kind, sym.Name)
 	f.remove(s.unit.file, sym.Statement.Headline().Span, "remove "+sym.Name)
 	f.choose()
