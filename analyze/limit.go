@@ -173,6 +173,11 @@ func onTheLimit(relation string) Decision {
 // decideSignal decides a limit on a signal over a range of time.
 func (a *Analysis) decideSignal(ctx context.Context, l *dialect.Limit) (Verdict, error) {
 	c := configurationOf(l.Qualifiers)
+	inexact := workedOut(l.Left) || workedOut(l.Right)
+	l, err := a.limitWithNumbers(ctx, l, c)
+	if err != nil {
+		return Verdict{}, err
+	}
 	curve, level, relation, err := a.againstConstant(ctx, l, c)
 	if err != nil {
 		return Verdict{}, err
@@ -193,7 +198,28 @@ func (a *Analysis) decideSignal(ctx context.Context, l *dialect.Limit) (Verdict,
 	if d.Worst.HasAt {
 		v.HasWhere, v.Where = true, d.Worst.At
 	}
+	if v.HasMargin && (inexact || !level.IsExact()) && negligibleBeside(v.Margin, v.Worst) {
+		v.Decision, v.Proved, v.HasMargin = Undecided, false, false
+		v.Why = "the worst value cannot be told from the limit"
+	}
 	return v, nil
+}
+
+// negligibleBeside tells whether a margin is below what numbers known to
+// within a bound leave undecided.
+func negligibleBeside(margin, size number.Ball) bool {
+	return margin.Abs().Lower().Cmp(size.Abs().MulPow2(-190).Upper()) <= 0
+}
+
+// limitWithNumbers is a limit with its numbers worked out.
+func (a *Analysis) limitWithNumbers(ctx context.Context, l *dialect.Limit, c configuration) (*dialect.Limit, error) {
+	out := *l
+	var err error
+	if out.Left, err = a.withNumbers(ctx, l.Left, c); err != nil {
+		return nil, err
+	}
+	out.Right, err = a.withNumbers(ctx, l.Right, c)
+	return &out, err
 }
 
 // againstConstant writes a limit as curve REL constant.

@@ -180,6 +180,10 @@ var errNotLinear = errors.New("not a sum of signals")
 // linear evaluates an expression to one signal: sums of quantities with
 // constant factors, and the parts of them by cause.
 func (a *Analysis) linear(ctx context.Context, e dialect.Expression, c configuration) (*response.Signal, error) {
+	e, err := a.withNumbers(ctx, e, c)
+	if err != nil {
+		return nil, err
+	}
 	switch e := e.(type) {
 	case *dialect.Quantity:
 		if e.Probe.Letter == 'p' {
@@ -297,6 +301,10 @@ func (a *Analysis) partSignal(ctx context.Context, e *dialect.Call, c configurat
 
 // curve evaluates an expression to what measures and limits look at.
 func (a *Analysis) curve(ctx context.Context, e dialect.Expression, c configuration) (*response.Curve, error) {
+	e, err := a.withNumbers(ctx, e, c)
+	if err != nil {
+		return nil, err
+	}
 	s, err := a.linear(ctx, e, c)
 	if err == nil {
 		return s.Curve(), nil
@@ -412,9 +420,10 @@ func (a *Analysis) curveScaled(ctx context.Context, e *dialect.Binary, x, y *dia
 
 func (a *Analysis) curveCall(ctx context.Context, e *dialect.Call, c configuration) (*response.Curve, error) {
 	var args []*response.Curve
+	var constants []number.Exact
 	for _, x := range e.Args {
-		if k, ok := x.(*dialect.Constant); ok && len(args) > 0 {
-			args = append(args, args[0].Sub(args[0]).AddConstant(k.Value))
+		if k, ok := x.(*dialect.Constant); ok {
+			constants = append(constants, k.Value)
 			continue
 		}
 		s, err := a.curve(ctx, x, c)
@@ -422,6 +431,9 @@ func (a *Analysis) curveCall(ctx context.Context, e *dialect.Call, c configurati
 			return nil, err
 		}
 		args = append(args, s)
+	}
+	for _, k := range constants {
+		args = append(args, args[0].Scale(number.FromInt(0)).AddConstant(k))
 	}
 	switch e.Name {
 	case "stored":
