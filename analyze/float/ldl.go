@@ -24,6 +24,7 @@ type symmetricFactor struct {
 	x       []complex128
 	work    *frontWork
 	scratch []complex128
+	jitter  uint64
 }
 
 // Limits of the entries of L: beyond them digits are lost, and other pivots are
@@ -156,6 +157,7 @@ func (f *symmetricFactor) factorise(ctx context.Context, s complex128, limit flo
 	for k, to := range f.slot[:len(g)] {
 		f.x[to] = complex(g[k]+re*c[k], im*c[k])
 	}
+	shake(f.x, f.jitter)
 	if f.compiled != nil {
 		return f.compiled.factorise(ctx, f.x, limit)
 	}
@@ -165,6 +167,14 @@ func (f *symmetricFactor) factorise(ctx context.Context, s complex128, limit flo
 func (f *symmetricFactor) scaling() scaling { return f.scale }
 
 func (f *symmetricFactor) method() string { return "LDLᵀ" }
+
+func (f *symmetricFactor) entries() int {
+	sum := len(f.x)
+	if f.work != nil {
+		sum += len(f.work.stack)
+	}
+	return sum
+}
 
 // solve overwrites b, by rows of the matrix, with the solution by columns; y is
 // scratch.

@@ -307,6 +307,8 @@ func (f *luFactor) scaling() scaling { return f.scale }
 
 func (f *luFactor) method() string { return "LU" }
 
+func (f *luFactor) entries() int { return len(f.l) + len(f.u) + len(f.inverse) }
+
 // solve overwrites b, by rows of the matrix, with the solution by columns; y
 // is scratch.
 func (f *luFactor) solve(b, y []complex128) {

@@ -157,3 +157,25 @@ func (t *transversal) take(i int32) {
 		i = old
 	}
 }
+
+// shake multiplies every number by 1 + ε with |ε| about 2^-53, at random from a
+// seed; 0 leaves them alone.
+func shake(a []complex128, seed uint64) {
+	if seed == 0 {
+		return
+	}
+	r := seed*0x9e3779b97f4a7c15 | 1
+	for k, z := range a {
+		r ^= r << 13 // G. Marsaglia, Xorshift RNGs, J. Stat. Softw. 8 (2003)
+		r ^= r >> 7
+		r ^= r << 17
+		f := 1.0
+		switch r >> 62 {
+		case 0:
+			f = 1 + 2*unit
+		case 1:
+			f = 1 - unit
+		}
+		a[k] = complex(real(z)*f, imag(z)*f)
+	}
+}

@@ -6,6 +6,7 @@ import (
 	"math"
 	"math/big"
 	"sync"
+	"sync/atomic"
 
 	"portlight/analyze/network"
 )
@@ -19,9 +20,14 @@ var ErrSingular = errors.New("the equations are singular at this frequency in do
 // for concurrent use. What depends on the structure alone is found once and
 // used for every frequency.
 type Solver struct {
+	system      *network.System
 	m           *matrix
 	multipliers []float64 // of rows that make the matrix symmetric, or nil
 	symmetric   bool      // it is symmetric as it stands, exactly
+	memories    []form    // the values that the network carries
+	states      []form    // the right-hand sides that stand for them
+	weights     []float64 // their largest entries
+	jitter      atomic.Uint32
 
 	mu      sync.Mutex
 	plan    *symmetricPlan // the last that served
@@ -65,8 +71,23 @@ func New(sys *network.System) (*Solver, error) {
 	if err != nil {
 		return nil, err
 	}
-	s := &Solver{m: m}
+	s := &Solver{system: sys, m: m}
 	s.multipliers, s.symmetric = m.symmetrise()
+	for k := range sys.Memories() {
+		memory, err := newForm(sys.MemoryValue(k).G)
+		if err != nil {
+			return nil, err
+		}
+		state, err := newForm(sys.StateColumn(k).RHS)
+		if err != nil {
+			return nil, err
+		}
+		weight := 0.0
+		for _, v := range state.value {
+			weight = max(weight, math.Abs(v))
+		}
+		s.memories, s.states, s.weights = append(s.memories, memory), append(s.states, state), append(s.weights, weight)
+	}
 	return s, nil
 }
 
@@ -174,6 +195,7 @@ type query struct {
 	*Solver
 	*workspace
 	at      point
+	jitter  uint64 // moves the entries by about a unit in the last place; 0 for none
 	residue *residue
 }
 
@@ -200,6 +222,7 @@ func (q *query) factorise(ctx context.Context, way int) error {
 			q.ldl = plan.factor()
 		}
 		q.factor = q.ldl
+		q.ldl.jitter = q.jitter
 		return q.ldl.factorise(ctx, q.at.rounded(), usedLimit)
 	case way == symmetricAnew && q.multipliers != nil:
 		return q.symmetricAnew(ctx)
@@ -209,6 +232,7 @@ func (q *query) factorise(ctx context.Context, way int) error {
 		}
 		copy(q.scaled, q.a)
 		pattern.scale.apply(q.m, q.scaled)
+		shake(q.scaled, q.jitter)
 		clear(q.x)
 		q.factor = q.lu
 		return pattern.refactorise(ctx, q.scaled, q.lu, q.x)
@@ -225,6 +249,7 @@ func (q *query) symmetricAnew(ctx context.Context) error {
 	}
 	q.ldl = plan.factor()
 	q.factor = q.ldl
+	q.ldl.jitter = q.jitter
 	if err := q.ldl.factorise(ctx, q.at.rounded(), freshLimit); err != nil {
 		return err
 	}
@@ -238,6 +263,7 @@ func (q *query) generalAnew(ctx context.Context) error {
 	scale := q.m.equilibrate(q.a, false)
 	copy(q.scaled, q.a)
 	scale.apply(q.m, q.scaled)
+	shake(q.scaled, q.jitter)
 	cols, preferred, err := q.m.luPreorder(ctx, q.scaled)
 	if err != nil {
 		return err
@@ -263,6 +289,8 @@ type factor interface {
 	solveTransposed(b, y []complex128)
 	// method names the kind.
 	method() string
+	// entries is how many numbers it holds.
+	entries() int
 }
 
 // solution is a refined solution of A·x = b or Aᵀ·x = b.
@@ -350,16 +378,9 @@ func (s *Solver) question(outs []network.Output, cols []network.Column) (*questi
 		q.cols = append(q.cols, v)
 	}
 	for i, o := range outs {
-		v := &vector{}
-		for _, x := range o.G {
-			if err := v.add(x.Index, x.Value, false); err != nil {
-				return nil, err
-			}
-		}
-		for _, x := range o.C {
-			if err := v.add(x.Index, x.Value, true); err != nil {
-				return nil, err
-			}
+		v, err := outputVector(o)
+		if err != nil {
+			return nil, err
 		}
 		q.outs = append(q.outs, v)
 		q.direct = append(q.direct, make([]double, len(cols)))
@@ -375,6 +396,21 @@ func (s *Solver) question(outs []network.Output, cols []network.Column) (*questi
 		}
 	}
 	return q, nil
+}
+
+func outputVector(o network.Output) (*vector, error) {
+	v := &vector{}
+	for _, x := range o.G {
+		if err := v.add(x.Index, x.Value, false); err != nil {
+			return nil, err
+		}
+	}
+	for _, x := range o.C {
+		if err := v.add(x.Index, x.Value, true); err != nil {
+			return nil, err
+		}
+	}
+	return v, nil
 }
 
 // answer solves for the columns, and the transposed equations for the outputs.

@@ -1,0 +1,200 @@
+package float
+
+import (
+	"context"
+	"errors"
+	"math"
+)
+
+// poles are the poles in the upper half-plane, with their residues, of the
+// Padé approximant r(z) = P₆(z)/Q₈(z) of e^z, as printed by the calculation
+// that the test of them repeats. It has order 14, decays like z⁻² and |r(z)| ≤ 1
+// in the left half-plane (B. L. Ehle, A-stable methods and Padé approximations
+// to the exponential, SIAM J. Math. Anal. 4 (1973)), so that motions too fast
+// to be followed die out, and impulses leave nothing behind.
+var poles = [...]struct{ at, residue complex128 }{
+	{complex(9.1616288675846683733, 1.5583773940619034399), complex(501.71555875795917802, -4734.9973098000839974)},
+	{complex(8.4022529851495197874, 4.6911627560543325855), complex(-782.68480848475045126, 2253.940546158093266)},
+	{complex(6.7412618178789648814, 7.8859496894854112027), complex(312.81797603338503183, -428.59461337512327225)},
+	{complex(3.6948563293868469578, 11.269699300097056971), complex(-31.848726306593758587, 14.952818662368041023)},
+}
+
+// stepper advances the state of a network by a fixed time. The state is the
+// right-hand side q = C·x, charges and fluxes, that stands for the past in
+//
+//	(G + s·C)·X(s) = q + B·U(s).
+//
+// With r(z) = Σ ρ/(z − θ) in place of e^z in the solution for U = 0,
+// x(h) = −Σ (ρ/h)·(G + θ/h·C)⁻¹·q; a source adds its transform to q, which is
+// the same as letting it be the output of a network of its own.
+type stepper struct {
+	m       *matrix
+	h       float64
+	factors [len(poles)]factor
+	s       [len(poles)]complex128
+	scratch []complex128
+	b       []complex128
+}
+
+// stepper factorises the matrices for a step.
+func (s *Solver) stepper(ctx context.Context, h float64) (*stepper, error) {
+	t := &stepper{m: s.m, h: h, scratch: make([]complex128, s.m.n), b: make([]complex128, s.m.n)}
+	for i, p := range poles {
+		t.s[i] = p.at / complex(h, 0)
+		var err error
+		if t.factors[i], err = s.factorAt(ctx, t.s[i]); err != nil {
+			return nil, err
+		}
+	}
+	return t, nil
+}
+
+// entries is how many numbers the factors hold.
+func (t *stepper) entries() (sum int) {
+	for _, f := range t.factors {
+		sum += f.entries()
+	}
+	return sum
+}
+
+// drive is a source in a segment: a column of B and what it does.
+type drive struct {
+	index []int32
+	value []float64
+	wave  *Wave
+	start float64 // of the segment
+}
+
+// reading is an output in a segment, over the unknowns, the sources and the
+// derivatives of the unknowns.
+type reading struct {
+	index []int32
+	g, c  []float64
+	input []float64 // by drive
+}
+
+// step sets x to the solution a step after the instant t, where the state was
+// q, and y to the readings there.
+func (t *stepper) step(q []float64, now float64, drives []drive, x []float64, readings []reading, y []float64) {
+	clear(x)
+	clear(y)
+	for i, f := range t.factors {
+		for k, v := range q {
+			t.b[k] = complex(v, 0)
+		}
+		s := t.s[i]
+		for _, d := range drives {
+			u := d.wave.transform(s, d.start, now)
+			for k, r := range d.index {
+				t.b[r] += complex(d.value[k], 0) * u
+			}
+		}
+		f.solve(t.b, t.scratch)
+		// Twice the real part: the pole below the axis gives the conjugate.
+		w := -2 * poles[i].residue / complex(t.h, 0)
+		re, im := real(w), imag(w)
+		for k, v := range t.b {
+			x[k] += re*real(v) - im*imag(v)
+		}
+		for j := range readings {
+			r := &readings[j]
+			var sum complex128
+			for k, at := range r.index {
+				sum += (complex(r.g[k], 0) + s*complex(r.c[k], 0)) * t.b[at]
+			}
+			y[j] += real(w * sum)
+		}
+	}
+	for k, d := range drives {
+		for j := range readings {
+			if f := readings[j].input[k]; f != 0 {
+				y[j] += f * d.wave.value(d.start, now+t.h)
+			}
+		}
+	}
+}
+
+// echo is what the step makes of a wave itself: how well it follows it.
+func (t *stepper) echo(d *drive, now float64) float64 {
+	sum := 0.0
+	for i := range t.factors {
+		w := -2 * poles[i].residue / complex(t.h, 0)
+		sum += real(w * d.wave.transform(t.s[i], d.start, now))
+	}
+	return sum
+}
+
+// state sets q to C·x.
+func (m *matrix) state(x, q []float64) {
+	clear(q)
+	for j := range m.n {
+		v := x[j]
+		if v == 0 {
+			continue
+		}
+		for k := m.start[j]; k < m.start[j+1]; k++ {
+			q[m.row[k]] += m.c[k].hi * v
+		}
+	}
+}
+
+// sound are the backward errors up to which factors are taken for a step: if
+// no way of factorising gives the first, the second will do.
+var sound = []float64{1e-13, 1e-10}
+
+// factorAt factorises the matrix at a point with values of its own. The entries
+// are moved by about half a unit in the last place, each time otherwise: what
+// is computed with different factors then differs by as much as rounded entries
+// may falsify it (after J. Vignes, A stochastic arithmetic for reliable
+// scientific computation, Math. Comput. Simul. 35 (1993)). The factors are tried
+// on one right-hand side.
+func (s *Solver) factorAt(ctx context.Context, at complex128) (factor, error) {
+	q := &query{Solver: s, at: point{double{real(at), 0}, double{imag(at), 0}}, workspace: s.workspace()}
+	defer func() {
+		q.ldl, q.lu = nil, nil // they belong to the caller
+		s.release(q.workspace)
+	}()
+	q.ldl, q.lu = nil, nil
+	q.jitter = uint64(s.jitter.Add(1))
+	s.m.values(at, q.a)
+	for _, limit := range sound {
+		for way := range ways {
+			err := q.factorise(ctx, way)
+			if err == nil && q.tried(limit) {
+				return q.factor, nil
+			}
+			if err != nil && !errors.Is(err, errPivot) {
+				return nil, err
+			}
+		}
+	}
+	return nil, ErrSingular
+}
+
+// tried solves once and looks at the backward error.
+func (q *query) tried(limit float64) bool {
+	n := q.m.n
+	b, x := make([]complex128, n), make([]complex128, n)
+	size := make([]float64, n)
+	scale := q.factor.scaling()
+	for i := range b {
+		b[i] = complex(math.Cos(float64(i))/scale.row[i], 0)
+		size[i] = norm1(b[i])
+	}
+	copy(x, b)
+	q.factor.solve(x, q.y)
+	for j := range n {
+		v := x[j]
+		for k := q.m.start[j]; k < q.m.start[j+1]; k++ {
+			i := q.m.row[k]
+			b[i] -= q.a[k] * v
+			size[i] += norm1(q.a[k]) * norm1(v)
+		}
+	}
+	for i, r := range b {
+		if !(norm1(r) <= limit*size[i]) {
+			return false
+		}
+	}
+	return true
+}
