@@ -19,6 +19,13 @@ import (
 //	BenchmarkHighQPeak           peak of a ringing of Q = 10^5: < 2 ms
 //	BenchmarkSwitched            40 intervals of a first-order network: < 20 ms
 //	BenchmarkDecideLadder        a limit on the ladder's answer, decided: < 30 ms
+//	BenchmarkFrontEndPeak        a least upper bound that is only approached, beside a
+//	                             transient of 75 periods and poles at 10 MHz: < 5 ms
+//	BenchmarkResonancePeak       Q = 10^5 driven at resonance, for ever: < 20 ms
+//	BenchmarkNearResonancePeak   Q = 1000 driven beside resonance, for ever: < 5 ms
+//	BenchmarkTwoTonesPeak        10 and 10001 rad/s, one common period: < 20 ms
+//	BenchmarkManyPeaks           the last of 10^4 nearly equal peaks, to 10^-15: < 20 ms
+//	BenchmarkDecideLongDecayed   |v| <= 60 V long after all has decayed: < 5 ms
 
 func degree20(b *testing.B) *Signal {
 	d := poly(1)
@@ -110,6 +117,52 @@ func BenchmarkSwitched(b *testing.B) {
 		}
 		if _, err := voltage(b, c.solve(), 3, 0).Value(background, big.NewRat(1, 20), Right, 17); err != nil {
 			b.Fatal(err)
+		}
+	}
+}
+
+// benchmarkPeak finds the peak of a curve whose terms are known.
+func benchmarkPeak(b *testing.B, c *Curve, r Range) {
+	for b.Loop() {
+		if e, err := c.Peak(background, r); err != nil || e.Value.RelativeBits() < 36 {
+			b.Fatal(e, err)
+		}
+	}
+}
+
+func BenchmarkFrontEndPeak(b *testing.B) {
+	benchmarkPeak(b, voltage(b, frontEnd(b), 6, 0).Curve(), Range{})
+}
+
+// ringing is numerator/(s² + 1000/q·s + 10⁶) at a tone of 1 V.
+func ringing(b *testing.B, numerator exact.Poly, q, omega string) *Curve {
+	d := exact.NewPoly(rat(b, "1000000"), new(big.Rat).Quo(rat(b, "1000"), rat(b, q)), rat(b, "1"))
+	return through(b, numerator, d, sineWave(b, "1", omega))
+}
+
+func BenchmarkResonancePeak(b *testing.B) {
+	benchmarkPeak(b, ringing(b, poly(0, 1000), "100000", "1000"), Range{})
+}
+
+func BenchmarkNearResonancePeak(b *testing.B) {
+	benchmarkPeak(b, ringing(b, poly(0, 1000), "1000", "1010"), Range{})
+}
+
+func BenchmarkTwoTonesPeak(b *testing.B) {
+	w := Wave{Always: []WaveTerm{{Omega: num(b, "10"), Sine: num(b, "1")}, {Omega: num(b, "10001"), Sine: num(b, "1/3")}}}
+	benchmarkPeak(b, through(b, poly(1), poly(1, 1), w), Range{})
+}
+
+func BenchmarkManyPeaks(b *testing.B) {
+	benchmarkPeak(b, through(b, poly(0, 1), poly(1, 1), sineWave(b, "1", "1000")), Range{To: rat(b, "60")})
+}
+
+func BenchmarkDecideLongDecayed(b *testing.B) {
+	c := through(b, poly(0, 1000), poly(1000000, 200, 1), step(num(b, "1"))).Abs()
+	level, late := num(b, "60"), Range{From: rat(b, "50")}
+	for b.Loop() {
+		if d, err := c.Decide(background, "<=", level, late); err != nil || d.Outcome != Holds {
+			b.Fatal(d, err)
 		}
 	}
 }
