@@ -1,15 +1,15 @@
 #!/usr/bin/env bash
-# Unpacks the next Debian release's Neovim 0.10 and Helix into a folder, with
+# Unpacks the next Debian release's Neovim 0.10, Helix and tree-sitter into a folder, with
 # all libraries that they need, and prints the folder. Nothing of the running
 # system is touched. Usage: next.sh
 set -euo pipefail
 . "$(dirname "$0")/common.sh"
 
 RELEASE=trixie
-PACKAGES=(neovim hx)
+PACKAGES=(neovim hx tree-sitter-cli)
 ROOT="$CACHE/$RELEASE"
 
-if [ -e "$ROOT/complete" ]; then
+if [ "$(cat "$ROOT/complete" 2>/dev/null)" = "${PACKAGES[*]}" ]; then
   printf '%s\n' "$ROOT"
   exit
 fi
@@ -40,5 +40,5 @@ for package in "$part"/apt/cache/archives/*.deb; do
 done
 rm -rf "$ROOT" "$part/apt"
 mv "$part" "$ROOT"
-: >"$ROOT/complete"
+printf '%s\n' "${PACKAGES[*]}" >"$ROOT/complete"
 printf '%s\n' "$ROOT"
