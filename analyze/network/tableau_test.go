@@ -400,7 +400,7 @@ func TestAgainstTableau(t *testing.T) {
 		compareAll(t, s, point, cols, want)
 	})
 	t.Logf("%d regular, %d singular networks", regular, singular)
-	if regular < 20 {
+	if regular < 5 { // of 20 drawn in a short run
 		t.Errorf("only %d regular networks drawn", regular)
 	}
 }
