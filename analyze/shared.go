@@ -23,14 +23,15 @@ type arithmetic struct {
 func NewAfter(checked *dialect.Checked, previous *Analysis) *Analysis {
 	a := New(checked)
 	if previous != nil {
-		a.previous = previous.computed()
+		a.previous = previous.Computed()
 	}
 	return a
 }
 
-// computed is this analysis if anything has been computed on it, else the
-// latest before it that has: one that was asked nothing is not worth keeping.
-func (a *Analysis) computed() *Analysis {
+// Computed is this analysis if anything has been computed on it, else the
+// latest before it that has, nil if none: one that was asked nothing is not
+// worth keeping.
+func (a *Analysis) Computed() *Analysis {
 	a.sharing.Lock()
 	defer a.sharing.Unlock()
 	if a.common != nil {

@@ -182,6 +182,9 @@ func resolveCompletion(ctx context.Context, r *request, i *protocol.CompletionIt
 		return i, nil
 	}
 	checked, analysis := unit.check()
+	if checked == nil {
+		return i, nil
+	}
 	for _, file := range checked.Files {
 		if file.Name != data.File {
 			continue

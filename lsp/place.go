@@ -1,8 +1,10 @@
 package lsp
 
 import (
+	"fmt"
 	"unicode"
 
+	"go.lsp.dev/jsonrpc2"
 	"go.lsp.dev/protocol"
 	"go.lsp.dev/uri"
 
@@ -40,6 +42,9 @@ func (r *request) whole(u uri.URI) (*place, error) {
 		return nil, err
 	}
 	checked, analysis := unit.check()
+	if checked == nil {
+		return nil, jsonrpc2.Errorf(requestFailed, "%s", fmt.Sprint(unit.problem))
+	}
 	return &place{unit: unit, file: file, checked: checked, analysis: analysis}, nil
 }
 

@@ -157,7 +157,9 @@ func (s *session) askSettings() {
 	var result []protocol.LSPAny
 	params := &protocol.ConfigurationParams{Items: []protocol.ConfigurationItem{{Section: ptr("portlight")}}}
 	s.call(protocol.MethodWorkspaceConfiguration, params, &result, func(err error) {
-		if err == nil && len(result) == 1 {
+		// A client without settings for us answers null; what the
+		// initialization options said stays.
+		if err == nil && len(result) == 1 && strings.TrimSpace(string(result[0])) != "null" {
 			s.takeSettings(result[0])
 		}
 	})

@@ -2,6 +2,7 @@ package lsp
 
 import (
 	"context"
+	"fmt"
 	"path/filepath"
 	"slices"
 	"strings"
@@ -43,12 +44,11 @@ type unit struct {
 	before atomic.Pointer[analyze.Analysis]
 }
 
-// latest is the analysis that the next version may take over from: this
-// version's once it is complete, until then the one before. So versions that
-// are superseded half-way do not pile up behind one another.
+// latest is the analysis that the next version may take over from, nil where
+// nothing was computed that is worth it.
 func (u *unit) latest() *analyze.Analysis {
-	if u.found.Load() != nil {
-		return u.analysis
+	if u.settled.Load() && u.analysis != nil {
+		return u.analysis.Computed()
 	}
 	return u.before.Load()
 }
@@ -87,10 +87,18 @@ func (u *unit) file() (*dialect.File, error) {
 	return u.view.Read(u.name)
 }
 
-// check checks the document. The result is nil only when it cannot be read.
+// check checks the document. The result is nil when it cannot be read, or when
+// checking failed inside the server; then problem says so.
 func (u *unit) check() (*dialect.Checked, *analyze.Analysis) {
 	u.once.Do(func() {
-		defer u.settled.Store(true)
+		defer func() {
+			if p := recover(); p != nil {
+				u.session.logPanic("checking "+u.name, p)
+				u.checked, u.analysis, u.problem = nil, nil, fmt.Errorf("%s cannot be checked: %v", u.name, p)
+			}
+			u.settled.Store(true)
+			u.before.Store(nil) // the analysis keeps what it needs
+		}()
 		file, err := u.file()
 		if err != nil {
 			u.problem = err
@@ -116,7 +124,6 @@ func (u *unit) findings(ctx context.Context) ([]dialect.Finding, error) {
 		}
 	}
 	u.found.Store(&list)
-	u.before.Store(nil)
 	return list, nil
 }
 

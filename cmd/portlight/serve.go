@@ -4,6 +4,7 @@ import (
 	"context"
 	"errors"
 	"log"
+	"os"
 
 	"github.com/spf13/cobra"
 
@@ -30,6 +31,7 @@ func serve(ctx context.Context, std streams, verbose bool) error {
 	if verbose {
 		options.Log = log.New(std.err, "portlight: ", log.LstdFlags)
 	}
+	lsp.TuneCollector(os.Getenv)
 	err := lsp.Serve(ctx, std.in, std.out, options)
 	if errors.Is(err, lsp.ErrNoShutdown) {
 		// The protocol's own rule for a client that leaves without asking.
