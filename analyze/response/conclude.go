@@ -157,6 +157,9 @@ func (s *search) refine(ctx context.Context, c cluster) (place, bool, error) {
 	if len(d1.terms) == 0 { // constant
 		return s.end(ctx, c, false)
 	}
+	if s.fallsFromStart(c, sums) {
+		return s.end(ctx, c, false)
+	}
 	bend := c.bendTau()
 	if !(bend.hi < 0) {
 		return s.coarse(c), true, nil
