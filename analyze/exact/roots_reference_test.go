@@ -59,6 +59,67 @@ func TestRootsAgainstMpmath(t *testing.T) {
 	}
 }
 
+// Every root that MPSolve found (testdata/adversarial_roots.txt, made by the script
+// beside it) is in one ball and in one only: clusters of real roots and of pairs, a
+// ring around one point, coefficients that are differences of nearly equal ones or
+// spread over 600 decades, and a network of degree 400.
+func TestHardRootsAgainstMPSolve(t *testing.T) {
+	built := map[string]func() Poly{"ladder-200": func() Poly { return unequalLadder(200) }}
+	var name string
+	var roots []Root
+	var found []int
+	count, polynomials := 0, 0
+	begin := func(called string, p Poly) {
+		name, roots = called, rootsAt(t, p, 130)
+		if p.Degree() <= 60 {
+			checkRoots(t, p, 300)
+		}
+		found = make([]int, len(roots))
+		polynomials++
+	}
+	finish := func() {
+		for i, n := range found {
+			if n != 1 {
+				t.Errorf("%s: %d reference roots in %v %v", name, n, roots[i].Re, roots[i].Im)
+			}
+		}
+	}
+	eachLine(t, "adversarial_roots.txt", func(w []string) {
+		switch w[0] {
+		case "poly":
+			finish()
+			begin(w[1], readPoly(t, w[2:]))
+		case "build":
+			finish()
+			begin(w[1], built[w[1]]())
+		case "root":
+			count++
+			want := reference(readRat(t, w[1]), readRat(t, w[2]))
+			for i, r := range roots {
+				if r.Ball().Overlaps(want) {
+					found[i]++
+					if (w[2] == "0") != r.Real || (w[1] == "0") != r.Imaginary {
+						t.Errorf("%s: %v %v, want %v %v", name, r.Re, r.Im, w[1], w[2])
+					}
+				}
+			}
+		default:
+			t.Fatalf("unknown line %q", w[0])
+		}
+	})
+	finish()
+	if polynomials < 9 || count < 620 {
+		t.Errorf("only %d polynomials with %d roots", polynomials, count)
+	}
+}
+
+// reference is a ball around a root known to 48 digits, of 1e-46 of its magnitude.
+func reference(re, im *big.Rat) number.ComplexBall {
+	size := new(big.Float).SetRat(new(big.Rat).Add(new(big.Rat).Abs(re), new(big.Rat).Abs(im)))
+	width := size.SetPrec(53).Mul(size, big.NewFloat(1e-46))
+	return number.ComplexBall{Re: number.BallFromRat(re, 256).WithRadius(width), Im: number.BallFromRat(im, 256).WithRadius(width)}
+}
+
 func rationals(t *testing.T, fields []string) []*big.Rat {
 	t.Helper()
 	var out []*big.Rat
