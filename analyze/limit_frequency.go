@@ -3,6 +3,7 @@ package analyze
 import (
 	"context"
 	"errors"
+	"math/big"
 
 	"portlight/analyze/exact"
 	"portlight/analyze/frequency"
@@ -114,8 +115,23 @@ func (v view) points(ctx context.Context, r frequency.Range) ([]frequency.Point,
 	points, err := frequency.MagnitudeSquared(v.h).Extremes(ctx, r, limitBits)
 	for i := range points {
 		points[i].Value = points[i].Value.Sqrt()
+		points[i].Exact = rootOf(points[i].Exact)
 	}
 	return points, err
+}
+
+// rootOf is the square root of a rational square, nil for every other number.
+func rootOf(x *number.Exact) *number.Exact {
+	if x == nil || x.Rat().Sign() < 0 {
+		return nil
+	}
+	num, den := new(big.Int).Sqrt(x.Rat().Num()), new(big.Int).Sqrt(x.Rat().Denom())
+	r := new(big.Rat).SetFrac(num, den)
+	if new(big.Rat).Mul(r, r).Cmp(x.Rat()) != 0 {
+		return nil
+	}
+	root := number.FromRat(r)
+	return &root
 }
 
 // views finds the functions of frequency in an expression.
@@ -214,6 +230,8 @@ func (a *Analysis) judgePlaces(ctx context.Context, l *dialect.Limit, places []f
 		switch {
 		case sure && sign < 0:
 			v.Decision = Broken
+		case sure && sign == 0 && p.Infinite:
+			v.Decision = Holds // it is approached, and not reached
 		case sure && sign == 0:
 			v.Decision = onTheLimit(l.Relation)
 		case !sure:
@@ -230,16 +248,27 @@ func (a *Analysis) judgePlaces(ctx context.Context, l *dialect.Limit, places []f
 }
 
 // decideTouch settles a worst value that cannot be told from the limit by
-// numbers: exactly, where the value is rational.
+// numbers: exactly, where the value is rational, or a multiple of π, and one side
+// is nothing but the curve.
 func (a *Analysis) decideTouch(l *dialect.Limit, p frequency.Point) Decision {
-	k, ok := l.Right.(*dialect.Constant)
-	if !ok || !k.Value.IsExact() || !p.Value.IsExact() {
+	side, k := l.Left, l.Right
+	if _, turned := side.(*dialect.Constant); turned {
+		side, k = k, side
+	}
+	call, plain := side.(*dialect.Call)
+	level, constant := k.(*dialect.Constant)
+	if !plain || !constant || p.Exact == nil || call.Name == "dB" || !isRational(call.Args[0]) ||
+		call.Dim().Level != level.Dim().Level {
 		return Undecided
 	}
-	if p.Value.MidRat().Cmp(k.Value.Rat()) == 0 {
-		return onTheLimit(l.Relation)
+	order, sure := p.Exact.Cmp(level.Value)
+	if !sure || order != 0 {
+		return Undecided // the margin would have told
 	}
-	return Undecided
+	if p.Infinite {
+		return Holds // it is approached, and not reached
+	}
+	return onTheLimit(l.Relation)
 }
 
 // unboundedDecision is for a pole on the axis or a growth towards infinite

@@ -31,6 +31,8 @@ func (a *Analysis) frequencyTable(ctx context.Context, q *dialect.Question, head
 	out := &TableAnswer{Question: head, Proved: true, Columns: []Column{{Name: "Hz", Dimension: dialect.DimensionFrequency}}}
 	if complexValued {
 		out.Columns = append(out.Columns, Column{"magnitude", q.What.Dim()}, Column{"phase_deg", dialect.DimensionAngle})
+	} else if q.What.Dim().Angle {
+		out.Columns = append(out.Columns, Column{"phase_deg", q.What.Dim()})
 	} else {
 		out.Columns = append(out.Columns, Column{"value", q.What.Dim()})
 	}
@@ -167,6 +169,9 @@ func (a *Analysis) frequencyRow(ctx context.Context, e dialect.Expression, c con
 	row = []number.Ball{number.BallFromRat(f, 96)}
 	if complexValued {
 		return append(row, v.Abs(), degrees(angle(v))), double, nil
+	}
+	if e.Dim().Angle {
+		v.Re = degrees(v.Re)
 	}
 	return append(row, v.Re), double, nil
 }

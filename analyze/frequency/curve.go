@@ -106,6 +106,15 @@ type Point struct {
 	AtZero    bool // the end is ω = 0 exactly
 	Infinite  bool // the end at ω → ∞
 	Unbounded bool // the curve has a pole here; Value then carries only a sign
+	// Exact is the value where it is known as a rational number, or as a
+	// rational multiple of π for a phase: at ends of the range. Nil elsewhere.
+	Exact *number.Exact
+}
+
+// exactly puts a rational value into a point.
+func (p *Point) exactly(r *big.Rat, prec uint) {
+	x := number.FromRat(r)
+	p.Exact, p.Value = &x, number.BallFromRat(r, prec)
 }
 
 var errNoRoots = errors.New("no polynomial to take roots of")
@@ -232,13 +241,18 @@ func (c Curve) end(w number.Exact, prec uint) Point {
 			p.Unbounded = true
 			return p
 		}
-		v := new(big.Rat).Quo(c.Num.Coeff(0), c.Den.Coeff(0))
-		p.Value = number.BallFromRat(v, prec)
+		p.exactly(new(big.Rat).Quo(c.Num.Coeff(0), c.Den.Coeff(0)), prec)
 		return p
 	}
 	x := c.argument(w, prec)
-	if w.IsExact() && c.Den.Eval(square(w.Rat(), c.Squared)).Sign() == 0 {
-		p.Unbounded = true
+	if w.IsExact() {
+		at := square(w.Rat(), c.Squared)
+		den := c.Den.Eval(at)
+		if den.Sign() == 0 {
+			p.Unbounded = true
+			return p
+		}
+		p.exactly(new(big.Rat).Quo(c.Num.Eval(at), den), prec)
 		return p
 	}
 	p.Value = c.at(x)
@@ -259,9 +273,9 @@ func (c Curve) atInfinity(prec uint) Point {
 		p.Unbounded = true
 		p.Value = number.BallFromRat(big.NewRat(int64(c.Num.Leading().Sign()*c.Den.Leading().Sign()), 1), prec)
 	case n < d:
-		p.Value = number.BallFromRat(new(big.Rat), prec)
+		p.exactly(new(big.Rat), prec)
 	default:
-		p.Value = number.BallFromRat(new(big.Rat).Quo(c.Num.Leading(), c.Den.Leading()), prec)
+		p.exactly(new(big.Rat).Quo(c.Num.Leading(), c.Den.Leading()), prec)
 	}
 	return p
 }

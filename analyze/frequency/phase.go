@@ -138,7 +138,7 @@ func (p *Phase) end(w number.Exact, prec uint) Point {
 	point := Point{Omega: omega, End: true}
 	if sign, sure := w.Sign(); sure && sign == 0 {
 		point.AtZero = true
-		point.Value = number.BallFromExact(number.Pi(), prec).MulRat(p.start())
+		point.halfTurns(p.start(), prec)
 		return point
 	}
 	point.Value = p.At(omega)
@@ -166,5 +166,13 @@ func (p *Phase) atInfinity(prec uint) Point {
 			halves = new(big.Rat).Add(halves, n.Mul(n, quarter))
 		}
 	}
-	return Point{End: true, Infinite: true, Value: number.BallFromExact(number.Pi(), prec).MulRat(halves)}
+	point := Point{End: true, Infinite: true}
+	point.halfTurns(halves, prec)
+	return point
+}
+
+// halfTurns puts a multiple of π into a point.
+func (p *Point) halfTurns(r *big.Rat, prec uint) {
+	x := number.Pi().Mul(number.FromRat(r))
+	p.Exact, p.Value = &x, number.BallFromExact(number.Pi(), prec).MulRat(r)
 }
