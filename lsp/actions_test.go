@@ -16,7 +16,7 @@ import (
 func TestActionsOfOneDiagnostic(t *testing.T) {
 	e := newEditor(t, `{"textDocument":{"codeAction":{"codeActionLiteralSupport":{"codeActionKind":{"valueSet":["quickfix"]}}}}}`, "")
 	u := uri.File(filepath.Join(t.TempDir(), "a.plight"))
-	e.open(u, "ground hull\nvoltage source Vs = 1 V\nresistor R1 = 1 Ω\nresistor R2 = 1 Ω\na -[Vs]- hull\na -[R1]- hull\ntell v[b]\n")
+	e.open(u, "ground hull\nvoltage source Vs = 1 V\nresistor R1 = 1 Ω\nresistor R2 = 1 Ω\nplus -[Vs]- hull\nplus -[R1]- hull\ntell v[plis]\n")
 	found := e.findings(u)
 	at := slices.IndexFunc(found, func(d protocol.Diagnostic) bool { return d.Code == protocol.String("unknown-name") })
 	if at < 0 || len(found) < 2 {
@@ -36,7 +36,7 @@ func TestActionsOfOneDiagnostic(t *testing.T) {
 		}
 		return titles
 	}
-	if got := titles(found[at : at+1]); len(got) != 1 || got[0] != "Write a" {
+	if got := titles(found[at : at+1]); len(got) != 1 || got[0] != "Write plus" {
 		t.Errorf("for one diagnostic the actions are %q, want its repair alone", got)
 	}
 	if got := titles([]protocol.Diagnostic{}); len(got) < 3 {

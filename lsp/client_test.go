@@ -36,6 +36,7 @@ type editor struct {
 	answer   map[string]func(params rawMessage) any
 	result   protocol.InitializeResult
 	versions map[string]int32
+	note     string // shown when waiting is in vain
 }
 
 // capabilities of the test client, as JSON; tests change them.
@@ -173,7 +174,7 @@ func (e *editor) wait(what string, holds func() bool) {
 	defer e.mu.Unlock()
 	for !holds() {
 		if time.Now().After(deadline) {
-			e.t.Fatalf("waited %v for %s", patience, what)
+			e.t.Fatalf("waited %v for %s\n%s", patience, what, e.note)
 		}
 		e.news.Wait()
 	}

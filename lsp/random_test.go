@@ -68,6 +68,7 @@ func TestRandomTyping(t *testing.T) {
 				rt.Fatalf("%s of %q: %v", method, content, err)
 			}
 		}
+		e.note, fresh.note = content, content
 		fresh.open(u, content)
 		sameText(rt, e, fresh, u)
 		for _, ed := range []*editor{e, fresh} {

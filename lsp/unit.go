@@ -115,16 +115,28 @@ func (u *unit) findings(ctx context.Context) ([]dialect.Finding, error) {
 	if found := u.found.Load(); found != nil {
 		return *found, nil
 	}
-	_, analysis := u.check()
-	var list []dialect.Finding
-	if analysis != nil {
-		var err error
-		if list, err = analysis.Findings(ctx); err != nil {
-			return nil, err
-		}
+	u.check()
+	list, err := u.analyse(ctx)
+	if err != nil {
+		return nil, err
 	}
 	u.found.Store(&list)
 	return list, nil
+}
+
+// analyse finds what the analysis finds. Should it fail inside the server,
+// what checking found is still told.
+func (u *unit) analyse(ctx context.Context) (list []dialect.Finding, err error) {
+	if u.analysis == nil {
+		return nil, nil
+	}
+	defer func() {
+		if p := recover(); p != nil {
+			u.session.logPanic("analysing "+u.name, p)
+			list, err = u.checked.Findings, nil
+		}
+	}()
+	return u.analysis.Findings(ctx)
 }
 
 // dependsOn says that the unit may be different because files changed. As
