@@ -1,7 +1,7 @@
 ;;; portlight-mode.el --- Portlight networks -*- lexical-binding: t; -*-
 
 ;; A major mode for .plight files: colours, comments, and the server for eglot
-;; and lsp-mode.  Works with Emacs 27 and later.
+;; and lsp-mode.  Works with Emacs 28 and later.
 
 ;;; Code:
 
