@@ -36,7 +36,9 @@ type FunctionAnswer struct {
 	Exact        bool // false when a coefficient is a stand-in for an irrational
 	Zeros, Poles []exact.Root
 	Hidden       []exact.Root // natural frequencies the function does not show
-	Formula      string       // with element names, "" when it would not be readable
+	// Formula is the function in element names, proved by their values; "" when
+	// it would not be readable.
+	Formula string
 }
 
 // ValueAnswer is a number, complex when Complex is set.

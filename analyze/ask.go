@@ -159,6 +159,9 @@ func (a *Analysis) functionAnswer(ctx context.Context, head Question, d dialect.
 	out := &FunctionAnswer{Question: head, Dimension: d, Ratio: f.constant, Exact: f.exact}
 	out.Remarks = append(out.Remarks, f.remarks...)
 	var err error
+	if out.Formula, err = a.formula(ctx, f); err != nil {
+		return nil, err
+	}
 	if out.Zeros, err = rootsOf(ctx, f.constant.Num); err != nil {
 		return nil, err
 	}

@@ -245,7 +245,7 @@ func (c *cardMaker) node(n int) {
 	c.askAt("z[" + node.Name + "]")
 	c.signal("v[" + node.Name + "]")
 	if z, ok := c.ask("z[" + node.Name + "]").(*FunctionAnswer); ok && !z.Ratio.IsZero() {
-		c.Detail = append(c.Detail, limited(Words(z), 2)...)
+		c.Detail = append(c.Detail, limited(Words(z), 3)...)
 	}
 }
 
@@ -274,7 +274,7 @@ func (c *cardMaker) port(i int) {
 	c.Title = fmt.Sprintf("port %s, + at %s, − at %s", p.Name, c.a.nodeName(p.Plus), c.a.nodeName(p.Minus))
 	c.askAt("z[" + p.Name + "]")
 	if answer, ok := c.ask("thevenin[" + p.Name + "]").(*EquivalentAnswer); ok {
-		c.Detail = append(c.Detail, limited(Words(answer), 8)...)
+		c.Detail = append(c.Detail, limited(Words(answer), 9)...)
 		if answer.OpenCircuit != nil {
 			c.Picture = pictureOf(c.ctx, answer.OpenCircuit)
 		}

@@ -22,11 +22,13 @@ type form struct {
 	// after arithmetic between functions.
 	of      *configuration
 	remarks []string
+	names   *naming // how constant follows from the network, nil for no formula
 }
 
 type formTerm struct {
 	coefficient exact.Ratio
 	probe       dialect.Probe
+	names       *naming // of the coefficient
 }
 
 func constantForm(r exact.Ratio, isExact bool) form { return form{constant: r, exact: isExact} }
@@ -49,12 +51,16 @@ func (a *Analysis) function(ctx context.Context, e dialect.Expression, c configu
 func (a *Analysis) form(ctx context.Context, e dialect.Expression, c configuration) (form, error) {
 	switch e := e.(type) {
 	case *dialect.Constant:
-		return constantForm(exact.ConstantRatio(e.Value.Rat()), e.Value.IsExact()), nil
+		f := constantForm(exact.ConstantRatio(e.Value.Rat()), e.Value.IsExact())
+		f.names = constantNaming(e)
+		return f, nil
 	case *dialect.Variable:
-		return constantForm(exact.PolyRatio(exact.PolyFromInt64s(0, 1)), true), nil
+		f := constantForm(exact.PolyRatio(exact.PolyFromInt64s(0, 1)), true)
+		f.names = &naming{op: 's'}
+		return f, nil
 	case *dialect.Negate:
 		x, err := a.form(ctx, e.X, c)
-		return x.scaled(exact.PolyRatio(exact.PolyFromInt64s(-1))), err
+		return x.negated(), err
 	case *dialect.FunctionValue:
 		return a.namedFunction(ctx, e.Function, c)
 	case *dialect.Quantity:
@@ -80,7 +86,10 @@ func (a *Analysis) quantityForm(ctx context.Context, p dialect.Probe, c configur
 	case 'y':
 		return a.admittance(ctx, p, c)
 	case 'v', 'i':
-		return form{terms: []formTerm{{exact.PolyRatio(exact.PolyFromInt64s(1)), p}}, exact: true}, nil
+		return form{
+			terms: []formTerm{{exact.PolyRatio(exact.PolyFromInt64s(1)), p, numberNaming(1)}},
+			exact: true, names: numberNaming(0),
+		}, nil
 	}
 	return form{}, refuse("function-form", "power is not linear in the sources, so it has no network function")
 }
@@ -101,7 +110,7 @@ func (a *Analysis) binaryForm(ctx context.Context, e *dialect.Binary, c configur
 	case '+':
 		return x.plus(y), nil
 	case '-':
-		return x.plus(y.scaled(exact.PolyRatio(exact.PolyFromInt64s(-1)))), nil
+		return x.plus(y.negated()), nil
 	case '*':
 		return x.times(y)
 	case '/':
@@ -116,15 +125,21 @@ func (f form) plus(g form) form {
 	f.exact = f.exact && g.exact
 	f.remarks = append(append([]string(nil), f.remarks...), g.remarks...)
 	f.of = nil
+	f.names = combined('+', f.names, g.names)
 	return f
 }
 
+func (f form) negated() form {
+	return f.scaled(exact.PolyRatio(exact.PolyFromInt64s(-1)), numberNaming(-1))
+}
+
 // scaled multiplies by a rational function; a constant keeps the determinant.
-func (f form) scaled(r exact.Ratio) form {
+func (f form) scaled(r exact.Ratio, names *naming) form {
 	f.constant = f.constant.Mul(r)
+	f.names = combined('*', names, f.names)
 	terms := make([]formTerm, len(f.terms))
 	for i, t := range f.terms {
-		terms[i] = formTerm{t.coefficient.Mul(r), t.probe}
+		terms[i] = formTerm{t.coefficient.Mul(r), t.probe, combined('*', names, t.names)}
 	}
 	f.terms = terms
 	if !r.IsConstant() {
@@ -140,7 +155,7 @@ func (f form) times(g form) (form, error) {
 	if len(g.terms) > 0 || g.of != nil && f.of == nil {
 		f, g = g, f
 	}
-	out := f.scaled(g.constant)
+	out := f.scaled(g.constant, g.names)
 	out.exact = f.exact && g.exact
 	out.remarks = append(append([]string(nil), f.remarks...), g.remarks...)
 	return out, nil
@@ -154,7 +169,7 @@ func (f form) power(e dialect.Expression) (form, error) {
 	if n > 64 || n < -64 {
 		return f, refuse("function-form", "the exponent is too large for an exact function: at most 64")
 	}
-	base := f.constant
+	base, exponent := f.constant, n
 	if n < 0 {
 		inverse, err := base.Inv()
 		if err != nil {
@@ -166,7 +181,7 @@ func (f form) power(e dialect.Expression) (form, error) {
 	for ; n > 0; n-- {
 		out = out.Mul(base)
 	}
-	return form{constant: out, exact: f.exact, remarks: f.remarks}, nil
+	return form{constant: out, exact: f.exact, remarks: f.remarks, names: f.names.power(exponent)}, nil
 }
 
 // integerOf reads an exponent.
@@ -189,7 +204,7 @@ func (a *Analysis) quotient(ctx context.Context, x, y form, c configuration) (fo
 		if err != nil {
 			return form{}, refuse("division-by-zero", "the divisor is zero at every frequency")
 		}
-		return x.times(form{constant: inverse, exact: y.exact, remarks: y.remarks})
+		return x.times(form{constant: inverse, exact: y.exact, remarks: y.remarks, names: combined('/', numberNaming(1), y.names)})
 	}
 	if len(y.terms) != 1 || !y.constant.IsZero() {
 		return form{}, refuse("function-form", "the divisor must be one excitation: a source, a port quantity, or a voltage that one source holds")
@@ -203,6 +218,7 @@ func (a *Analysis) quotient(ctx context.Context, x, y form, c configuration) (fo
 	}
 	out := constantForm(exact.Ratio{}, x.exact && y.exact)
 	out.remarks = append(append([]string(nil), x.remarks...), y.remarks...)
+	out.names = numberNaming(0)
 	for _, t := range x.terms {
 		g, err := a.transfer(ctx, t.probe, by)
 		if err != nil {
@@ -212,11 +228,12 @@ func (a *Analysis) quotient(ctx context.Context, x, y form, c configuration) (fo
 		if err != nil {
 			return form{}, refuse("division-by-zero", "the divisor is zero at every frequency")
 		}
-		part := g.scaled(k)
+		part := g.scaled(k, combined('/', t.names, y.terms[0].names))
 		if len(x.terms) == 1 {
 			out.of = part.of
 		}
 		out.constant = out.constant.Add(part.constant)
+		out.names = combined('+', out.names, part.names)
 		out.exact = out.exact && part.exact
 	}
 	return out, nil

@@ -6,6 +6,7 @@ import (
 
 	"portlight/analyze/exact"
 	"portlight/analyze/network"
+	"portlight/analyze/symbolic"
 	"portlight/dialect"
 )
 
@@ -98,7 +99,15 @@ func (a *Analysis) impedanceAt(ctx context.Context, at pair) (form, error) {
 	if problem != nil {
 		return form{}, a.refuseProblems([]network.Problem{*problem})
 	}
-	return a.ratio(ctx, at.configuration, sys, out, col)
+	f, err := a.ratio(ctx, at.configuration, sys, out, col)
+	if err == nil {
+		f.names = &naming{
+			of:     at.configuration,
+			output: []network.Probe{{Quantity: network.NodePair, Plus: at.plus, Minus: at.minus}},
+			by:     symbolic.Drive{Element: -1, Plus: at.plus, Minus: at.minus},
+		}
+	}
+	return f, err
 }
 
 // admittance is 1/z where z is not zero; where a source holds the pair there is none.
@@ -129,8 +138,16 @@ func (a *Analysis) admittanceAt(ctx context.Context, at pair) (form, error) {
 			if _, refused := asRefusal(err); refused {
 				return f, refuse("no-admittance", fmt.Sprintf("%s does not exist: %s", at.what, err.(*refusal).why))
 			}
+			if err != nil {
+				return f, err
+			}
+			f.names = &naming{
+				of:     c,
+				output: []network.Probe{{Quantity: network.ElementFlow, Element: element, Negative: true}},
+				by:     symbolic.Drive{Element: element},
+			}
 			f.constant = f.constant.Neg()
-			return f, err
+			return f, nil
 		}
 	}
 	return form{}, a.refuseProblems([]network.Problem{*problem})

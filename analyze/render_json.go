@@ -213,6 +213,7 @@ type functionView struct {
 	headView
 	Unit        string     `json:"unit"`
 	Exact       bool       `json:"exact"`
+	Formula     string     `json:"formula,omitempty"`
 	Numerator   []string   `json:"numerator"`
 	Denominator []string   `json:"denominator"`
 	Zeros       []rootView `json:"zeros"`
@@ -223,7 +224,7 @@ type functionView struct {
 func functionJSON(a *FunctionAnswer) functionView {
 	f := standard(a.Ratio)
 	return functionView{
-		head(a.Question, "function"), a.Dimension.Unit(), a.Exact, coefficients(f.Num), coefficients(f.Den),
+		head(a.Question, "function"), a.Dimension.Unit(), a.Exact, a.Formula, coefficients(f.Num), coefficients(f.Den),
 		rootViews(a.Zeros), rootViews(a.Poles), rootViews(a.Hidden),
 	}
 }

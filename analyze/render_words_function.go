@@ -15,7 +15,7 @@ import (
 func functionWords(a *FunctionAnswer) []string {
 	var lines []string
 	if a.Formula != "" {
-		lines = append(lines, a.Formula)
+		lines = append(lines, formulaLine(a))
 	}
 	var c corners
 	lines = append(lines, c.factored(a))
@@ -32,6 +32,16 @@ func functionWords(a *FunctionAnswer) []string {
 			plural(len(figures)), list(figures)))
 	}
 	return lines
+}
+
+// formulaLine writes a formula as an equation: what was asked, in whichever
+// state of the network, is the formula.
+func formulaLine(a *FunctionAnswer) string {
+	asked := strings.TrimSpace(a.Text)
+	for _, state := range []string{" with ", " without "} {
+		asked, _, _ = strings.Cut(asked, state)
+	}
+	return strings.TrimSpace(asked) + " = " + a.Formula
 }
 
 // factorLimit is how many factors are written out; beyond it the corners

@@ -6,6 +6,7 @@ import (
 
 	"portlight/analyze/exact"
 	"portlight/analyze/network"
+	"portlight/analyze/symbolic"
 	"portlight/dialect"
 )
 
@@ -115,10 +116,16 @@ func (a *Analysis) transfer(ctx context.Context, p dialect.Probe, by excitation)
 			return form{}, a.refuseProblems([]network.Problem{*problem})
 		}
 		f, err := a.ratio(ctx, by.configuration, sys, out, col)
-		if by.negative {
-			f.constant = f.constant.Neg()
+		if err != nil {
+			return f, err
 		}
-		return f, err
+		if probes, ok := a.sensedBy(p, by); ok {
+			f.names = &naming{of: by.configuration, output: probes, by: symbolic.Drive{Element: by.element}}
+		}
+		if by.negative {
+			f = f.negated()
+		}
+		return f, nil
 	})
 }
 
@@ -145,32 +152,38 @@ func (a *Analysis) output(sys *network.System, p dialect.Probe, by excitation) (
 // noExcitation is for signals in time, where nothing but the sources drives.
 var noExcitation = excitation{element: -1, port: -1}
 
-func (a *Analysis) voltageOutput(sys *network.System, p dialect.Probe) (network.Output, error) {
-	plus, minus := p.Plus, p.Minus
+// voltageNodes are the two nodes of a voltage.
+func (a *Analysis) voltageNodes(p dialect.Probe) (plus, minus int, err error) {
 	switch p.Of {
 	case dialect.OfPort:
-		plus, minus = a.description.Ports[p.Port].Plus, a.description.Ports[p.Port].Minus
+		return a.description.Ports[p.Port].Plus, a.description.Ports[p.Port].Minus, nil
 	case dialect.OfPart:
 		part := &a.description.Parts[p.Part]
 		if !wired(part) {
-			return network.Output{}, refuse("never-wired", part.Name+" is not wired, so it has no voltage")
+			return -1, -1, refuse("never-wired", part.Name+" is not wired, so it has no voltage")
 		}
 		switch part.Kind {
 		case dialect.OpAmp:
-			plus, minus = part.Output, a.description.Ground
+			return part.Output, a.description.Ground, nil
 		case dialect.Transformer:
-			plus, minus = part.Windings[0].Plus, part.Windings[0].Minus
-		default:
-			plus, minus = part.From, part.To
+			return part.Windings[0].Plus, part.Windings[0].Minus, nil
 		}
+		return part.From, part.To, nil
 	case dialect.OfTerminal:
 		part := &a.description.Parts[p.Part]
-		if part.Kind == dialect.Transformer {
-			w := part.Windings[windingIndex(part, p.Terminal)]
-			plus, minus = w.Plus, w.Minus
-		} else {
-			plus, minus = part.Output, a.description.Ground
+		if part.Kind != dialect.Transformer {
+			return part.Output, a.description.Ground, nil
 		}
+		w := part.Windings[windingIndex(part, p.Terminal)]
+		return w.Plus, w.Minus, nil
+	}
+	return p.Plus, p.Minus, nil
+}
+
+func (a *Analysis) voltageOutput(sys *network.System, p dialect.Probe) (network.Output, error) {
+	plus, minus, err := a.voltageNodes(p)
+	if err != nil {
+		return network.Output{}, err
 	}
 	if minus < 0 {
 		return network.Output{}, refuse("no-ground", fmt.Sprintf(
@@ -245,15 +258,18 @@ func (a *Analysis) inflow(sys *network.System, p dialect.Probe) (network.Output,
 	return sum, nil, nil
 }
 
+// portDrivers are the elements that drive a port.
+func (a *Analysis) portDrivers(p dialect.Probe, by excitation) []int {
+	if by.port == p.Port && by.element >= len(a.description.Parts) {
+		return []int{by.element}
+	}
+	return a.sourcesAcross(a.description.Ports[p.Port].Plus, a.description.Ports[p.Port].Minus)
+}
+
 // portCurrent is the current into a port's + terminal: that of what drives it.
 func (a *Analysis) portCurrent(sys *network.System, p dialect.Probe, by excitation) (network.Output, *network.Problem, error) {
 	port := a.description.Ports[p.Port]
-	var drivers []int
-	if by.port == p.Port && by.element >= len(a.description.Parts) {
-		drivers = []int{by.element}
-	} else {
-		drivers = a.sourcesAcross(port.Plus, port.Minus)
-	}
+	drivers := a.portDrivers(p, by)
 	if len(drivers) == 0 {
 		return network.Output{}, nil, refuse("open-port", fmt.Sprintf(
 			"nothing drives port %s, so it is open and its current is zero; ask norton[%s] or matrix y for the current of a shorted port",

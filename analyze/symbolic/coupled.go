@@ -31,7 +31,7 @@ func (sp *Space) withCoefficients(f Function) (e expression, ok bool) {
 	if sp.failed {
 		return nil, false
 	}
-	for round := range int64(3) {
+	for round := range 2 {
 		v := sp.trial(round)
 		if r, fine := e.function(v); !fine || !proves(f.num.value(v), f.den.value(v), r) {
 			return nil, false
@@ -95,10 +95,10 @@ func (sp *Space) coefficientParts(at int) (k, root, square poly) {
 // trial gives every symbol a rational value such that inductances are squares
 // and mutual inductances follow from coefficients. It is nil for a symbol that
 // cannot be reached so.
-func (sp *Space) trial(round int64) values {
+func (sp *Space) trial(round int) values {
 	v := make(values, len(sp.symbols))
 	root := func(place int) *big.Rat { // of the value of place
-		return big.NewRat(int64(sample(place)%1000)+2+round, int64(place)+3)
+		return big.NewRat(int64(sample(place+round*places)%997)+2, 1)
 	}
 	for i, s := range sp.symbols {
 		v[i] = root(i)

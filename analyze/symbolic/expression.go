@@ -31,14 +31,12 @@ type sumPower struct {
 // sum is two or more products added up.
 type sum []product
 
-// terms counts the products without sums that an expression is made of.
+// terms counts the products without sums that an expression is made of; one
+// over or under a fraction line is easily read and does not count.
 func (e expression) terms() int {
 	n := 0
 	for _, f := range e {
-		n += f.num.terms()
-		if !f.den.isOne() {
-			n += f.den.terms()
-		}
+		n += max(1, f.num.terms()+f.den.terms())
 	}
 	return n
 }
@@ -47,10 +45,10 @@ func (p product) terms() int {
 	n := 0
 	for _, s := range p.sums {
 		for _, t := range s.sum {
-			n += t.terms()
+			n += max(1, t.terms())
 		}
 	}
-	return max(n, 1)
+	return n
 }
 
 func (p product) isOne() bool {

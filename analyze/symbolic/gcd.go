@@ -167,6 +167,18 @@ func sample(place int) uint64 {
 	return (z ^ z>>31) % prime
 }
 
+// samples are the powers 1, 2 and 4 of every place's value.
+var samples = func() (out [places][3]uint64) {
+	for place := range out {
+		v := sample(place)
+		for k := range out[place] {
+			out[place][k] = v
+			v = reduce(mulMod(v, v))
+		}
+	}
+	return out
+}()
+
 // unshared tells that no common divisor contains x: with the other symbols
 // evaluated and no leading coefficient lost, there is none with x.
 func (w *work) unshared(p, q poly, x int) bool {
@@ -187,10 +199,10 @@ func (w *work) image(p poly, x int) []uint64 {
 	out := make([]uint64, p.degree(x)+1)
 	for _, t := range p {
 		v := magnitude(t.c) % prime
-		rest := t.m.without(x)
-		for _, y := range rest.support().list() {
-			for range rest.power(y) {
-				v = reduce(mulMod(v, sample(y)))
+		for word, rest := range t.m.without(x) {
+			for ; rest != 0; rest &= rest - 1 { // every bit of the exponents
+				low := bits.TrailingZeros64(rest)
+				v = reduce(mulMod(v, samples[16*word+15-low/4][low%4]))
 			}
 		}
 		if t.c < 0 && v != 0 {
@@ -240,9 +252,6 @@ func (w *work) split(p poly) []poly {
 	}
 	for _, x := range p.support().list() {
 		g := w.contentIn(p, x)
-		if g.isConstant() && p.degree(x) > 1 {
-			g = w.gcd(p, w.derivative(p, x)) // squares
-		}
 		_, _, g = g.content()
 		if g.isConstant() || g.equal(p) {
 			continue
@@ -251,5 +260,44 @@ func (w *work) split(p poly) []poly {
 			return append(w.split(g), w.split(rest)...)
 		}
 	}
+	if r, ok := w.root(p); ok {
+		list := w.split(r)
+		return append(list, list...)
+	}
 	return []poly{p}
+}
+
+// root is the square root of a polynomial where it is a polynomial: term by
+// term from the top, as square roots of numbers are taken by hand.
+func (w *work) root(p poly) (poly, bool) {
+	first, ok := rootOfTerm(p[0])
+	if !ok {
+		return nil, false
+	}
+	r := poly{first}
+	rest := w.sub(p, poly{{p[0].m, p[0].c}})
+	for len(rest) > 0 && !w.failed {
+		m, divides := rest[0].m.over(first.m)
+		if !divides || rest[0].c%(2*first.c) != 0 || m.compare(r[len(r)-1].m) >= 0 {
+			return nil, false
+		}
+		t := term{m, rest[0].c / (2 * first.c)}
+		rest = w.addScaled(rest, r, term{t.m, -2 * t.c})
+		rest = w.addScaled(rest, poly{t}, term{t.m, -t.c})
+		r = append(r, t)
+	}
+	return r, !w.failed
+}
+
+func rootOfTerm(t term) (root term, ok bool) {
+	for _, x := range t.m.support().list() {
+		k := t.m.power(x)
+		if k%2 != 0 {
+			return root, false
+		}
+		root.m, _ = root.m.times(unit(x, k/2))
+	}
+	for root.c = 1; root.c*root.c < t.c && root.c < 1000; root.c++ {
+	}
+	return root, root.c*root.c == t.c
 }

@@ -184,16 +184,3 @@ func (p poly) groups(inside set) []poly {
 	}
 	return out
 }
-
-// derivative is dp/dx.
-func (w *work) derivative(p poly, place int) poly {
-	var out poly
-	x := unit(place, 1)
-	for _, t := range p {
-		if k := t.m.power(place); k > 0 {
-			m, _ := t.m.over(x)
-			out = append(out, term{m, w.product(t.c, int64(k))})
-		}
-	}
-	return out
-}
