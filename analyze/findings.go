@@ -10,6 +10,7 @@ import (
 	"portlight/analyze/frequency"
 	"portlight/analyze/network"
 	"portlight/dialect"
+	"portlight/dialect/number"
 )
 
 // Findings gives all findings, those about limits, stability, ratings and
@@ -212,7 +213,7 @@ func (a *Analysis) conflicts(ctx context.Context) ([]dialect.Finding, error) {
 	return found, nil
 }
 
-// conflict looks for an impulse in the first memory of a loop or cutset.
+// conflict looks for an impulse in the memories of a loop or cutset.
 func (a *Analysis) conflict(ctx context.Context, p network.Problem, iv interval, k int) (dialect.Finding, bool, error) {
 	for _, e := range p.Elements {
 		kind := iv.network.Elements[e].Kind
@@ -227,28 +228,42 @@ func (a *Analysis) conflict(ctx context.Context, p network.Problem, iv interval,
 			return dialect.Finding{}, false, err
 		}
 		weights, err := impulsesAt(ctx, s, iv.start.Rat())
-		if err != nil || len(weights) == 0 {
+		if err != nil {
+			return dialect.Finding{}, false, err
+		}
+		if len(weights) == 0 {
+			continue
+		}
+		stored, err := impulsesAt(ctx, s.ZeroInput(), iv.start.Rat())
+		if err != nil {
 			return dialect.Finding{}, false, err
 		}
 		f := dialect.Finding{Code: "initial-conflict", Severity: dialect.Warning}
-		what, unit := "voltages around the loop", "V·s"
-		if kind == network.Capacitor {
-			unit = "A·s"
-		} else {
-			what = "currents at the cutset"
+		if len(stored) == 0 && len(iv.turned) == 0 {
+			f.Severity = dialect.Information // what stood at 0− is sound; a source steps
 		}
-		f.Message = fmt.Sprintf("the %s of %s do not agree at t = %s%s: an impulse of %s through %s makes them",
-			what, list(a.partNames(p.Elements)), figure(ballOf(iv.start), "s"), comma(a.whenText(k, iv)),
-			figure(weights[0], unit), a.description.Parts[e].Name)
-		if kind == network.Inductor {
-			f.Message = fmt.Sprintf("the %s of %s do not agree at t = %s%s: an impulse of %s across %s makes them",
-				what, list(a.partNames(p.Elements)), figure(ballOf(iv.start), "s"), comma(a.whenText(k, iv)),
-				figure(weights[0], unit), a.description.Parts[e].Name)
-		}
+		f.Message = a.conflictText(p, iv, k, e, weights[0], f.Severity == dialect.Information)
 		a.place(&f, p)
 		return f, true, nil
 	}
 	return dialect.Finding{}, false, nil
+}
+
+// conflictText tells a conflict and the impulse through or across element e
+// that follows.
+func (a *Analysis) conflictText(p network.Problem, iv interval, k, e int, weight number.Ball, stepped bool) string {
+	names, at := list(a.partNames(p.Elements)), figure(ballOf(iv.start), "s")
+	impulse := fmt.Sprintf("%s through %s", figure(weight, "A·s"), a.description.Parts[e].Name)
+	what, where := "voltages around the loop", "around the loop"
+	if iv.network.Elements[e].Kind == network.Inductor {
+		impulse = fmt.Sprintf("%s across %s", figure(weight, "V·s"), a.description.Parts[e].Name)
+		what, where = "currents at the cutset", "at the cutset"
+	}
+	if stepped {
+		return fmt.Sprintf("a source steps at t = %s %s of %s: an impulse of %s follows", at, where, names, impulse)
+	}
+	return fmt.Sprintf("the %s of %s do not agree at t = %s%s: an impulse of %s makes them",
+		what, names, at, comma(a.whenText(k, iv)), impulse)
 }
 
 func comma(s string) string {
