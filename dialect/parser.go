@@ -62,6 +62,7 @@ type parser struct {
 	foul    bool            // some of them are in a statement
 	defined map[string]bool // names before an equals sign, once needed
 	joined  int             // wires offered to join nodes
+	wire    string          // what their names begin with, once needed
 
 	// The statement being read.
 	tokens []token

@@ -234,11 +234,14 @@ func (p *parser) bareJoin() bool {
 
 // joinNodes reports two nodes with a bare "-" between them.
 func (p *parser) joinNodes(gap, span Span, left, right string) {
-	wire := "Wjoin"
-	for p.joined++; p.joined > 1 || strings.Contains(p.text, wire); p.joined++ {
-		if wire = fmt.Sprintf("Wjoin%d", p.joined); !strings.Contains(p.text, wire) {
-			break
+	if p.joined++; p.wire == "" {
+		for p.wire = "Wjoin"; strings.Contains(p.text, p.wire); {
+			p.wire += "_"
 		}
+	}
+	wire := p.wire
+	if p.joined > 1 {
+		wire = fmt.Sprintf("%s%d", p.wire, p.joined)
 	}
 	write := "-[wire " + wire + "]-"
 	p.fail(span, "two nodes are joined by one name for both, or by a wire in a box: in -[wire W1]- out",

@@ -80,16 +80,21 @@ func (c *checker) brokenAt(origin Origin) bool {
 	if u == nil || len(u.file.Findings) == 0 {
 		return false
 	}
-	if u.broken == nil {
-		u.broken = []Span{}
-		u.collectBroken(u.file.Statements)
-	}
+	u.needBroken()
 	for _, s := range u.broken {
 		if s.Start <= origin.Span.Start && origin.Span.End <= s.End {
 			return true
 		}
 	}
 	return false
+}
+
+// needBroken lists the broken statements once they matter.
+func (u *unit) needBroken() {
+	if u.broken == nil && len(u.file.Findings) > 0 {
+		u.broken = []Span{}
+		u.collectBroken(u.file.Statements)
+	}
 }
 
 // collectBroken lists the statements with a finding of the parser; of a
@@ -102,7 +107,8 @@ func (u *unit) collectBroken(statements []Statement) {
 			span.End = max(span.Start, sub.BraceOpen.Start)
 		}
 		i := sort.Search(len(u.file.Findings), func(i int) bool { return u.file.Findings[i].Origin.Span.Start >= span.Start })
-		if i < len(u.file.Findings) && u.file.Findings[i].Origin.Span.Start <= span.End && u.file.Findings[i].Severity == Error {
+		told := i < len(u.file.Findings) && u.file.Findings[i].Origin.Span.Start <= span.End && u.file.Findings[i].Severity == Error
+		if told || len(u.file.Findings) >= maxFindings && st.Headline().Broken {
 			u.broken = append(u.broken, span)
 			switch st.(type) {
 			case *BrokenStatement, *PathStatement, *PartStatement, *UsePartStatement:
@@ -129,7 +135,7 @@ func nameRune(r rune) bool { return r == '_' || unicode.IsLetter(r) || unicode.I
 // lostName says that a broken statement names something, which is why it
 // seems to be missing or not to be wired.
 func (c *checker) lostName(u *unit, name string) bool {
-	c.brokenAt(Origin{File: u.file})
+	u.needBroken()
 	return u.lost[name]
 }
 
