@@ -128,7 +128,7 @@ func (e *edgeSearch) firstForward(ctx context.Context, st *stage, i int) (number
 func (e *edgeSearch) within(ctx context.Context, st *stage, i int, a, b float64) (number.Ball, bool, error) {
 	stack := []*box{{stage: st, index: i, a: a, b: b, on: e.bound(st, a, b)}}
 	for len(stack) > 0 {
-		if e.steps++; e.steps > searchBudget {
+		if e.steps++; e.steps > walkBudget {
 			return number.Ball{}, false, undecided("the curve is near the level for too long")
 		}
 		if e.steps%8 == 0 {

@@ -97,6 +97,9 @@ func (c *Curve) Neg() *Curve {
 	if s, ok := c.leaf.(*Signal); ok {
 		return s.Scale(number.FromInt(-1)).Curve()
 	}
+	if p, ok := c.leaf.(*product); ok {
+		return &Curve{leaf: &product{p.a, p.b, new(big.Rat).Neg(p.factor)}}
+	}
 	if c.op == opNegate {
 		return c.args[0]
 	}

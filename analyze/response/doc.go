@@ -35,7 +35,7 @@
 //	beats.go      bounds of oscillations that cancel
 //	steady.go     the steady oscillation and what decays beside it
 //	normalise.go  curves too small for float64
-//	extreme.go conclude.go branches.go
+//	extreme.go conclude.go branches.go nonpositive.go
 //	              peaks and troughs, proved
 //	crossing.go   first and last crossings of a level, proved
 //	turn.go       turning points, for tables and pictures

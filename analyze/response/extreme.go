@@ -20,14 +20,17 @@ const (
 	panelFloor = 1e-17
 	// narrowest is the width in x at which a panel is cut no further.
 	narrowest = 1.0 / (1 << 46)
-	// searchBudget is how many boxes a search may look at: seconds of work.
-	searchBudget = 200_000
-	// softBudget is after how many boxes a search stops that knows the value to
-	// softWidth of itself already: which of many nearly equal peaks is greatest
-	// is then left open. At searchBudget it makes do with hardWidth.
-	softBudget = 3_000
-	softWidth  = 1e-10
-	hardWidth  = 1e-6
+	// searchBudget is how many boxes a search may look at: about a second of work.
+	searchBudget = 100_000
+	// walkBudget is the same for what has to look at every stretch: integrals,
+	// crossings, turning points.
+	walkBudget = 2_000_000
+	// softBudget and lateBudget are after how many boxes a search stops that
+	// knows the value to softWidth of the curve's size, or lateWidth of its own:
+	// which of many nearly equal peaks is greatest is then left open. At
+	// searchBudget it makes do with hardWidth of its own.
+	softBudget, lateBudget          = 3_000, 6_000
+	softWidth, lateWidth, hardWidth = 1e-10, 1e-7, 1e-6
 	// sharpenBudget is how many boxes that may hold the maximum, but were not
 	// looked at closely, are cut in the end to rule them out or to find the place.
 	sharpenBudget = 2_000
@@ -120,7 +123,8 @@ func (s *search) add(b *box) {
 // boxes that may hold the maximum are then in queue and stuck.
 func (s *search) run(ctx context.Context) error {
 	for len(s.queue) > 0 && s.queue[0].on.hi > s.best+tolerance*s.scale {
-		if s.steps++; s.steps > searchBudget || s.steps > softBudget && s.knows(softWidth) {
+		if s.steps++; s.steps > searchBudget || s.steps > softBudget && s.knows(softWidth*s.scale) ||
+			s.steps > lateBudget && s.knows(lateWidth*math.Abs(s.best)) {
 			return errTooMany
 		}
 		if s.steps%8 == 0 {
@@ -136,9 +140,9 @@ func (s *search) run(ctx context.Context) error {
 // errTooMany: the greatest value is known to be between two bounds only.
 var errTooMany = undecided("the curve has too many nearly equal peaks in the range")
 
-// knows tells whether the greatest value is known to a part of the curve's size.
-func (s *search) knows(part float64) bool {
-	return len(s.queue) > 0 && s.queue[0].on.hi-s.best <= part*s.scale
+// knows tells whether the greatest value is known to within width.
+func (s *search) knows(width float64) bool {
+	return len(s.queue) > 0 && s.queue[0].on.hi-s.best <= width
 }
 
 // sharpen cuts boxes that may hold the maximum and were not looked at closely,
@@ -420,6 +424,11 @@ func (c *Curve) greatest(ctx context.Context, r Range) (Extreme, error) {
 		return Extreme{}, err
 	} else if yes {
 		return Extreme{}, undefined("there is an impulse at t = %s s", shortTime(t))
+	}
+	if x, ok := c.nonpositive(); ok {
+		if e, ok, err := x.reachesZero(ctx, r); ok || err != nil {
+			return e, err
+		}
 	}
 	stages, err := c.stages(ctx, r, refinePrecision)
 	if err != nil {

@@ -36,7 +36,7 @@ func (s *search) stretches(ctx context.Context, st *stage) ([]stretchOf, error) 
 	var parts []part
 	stack := []*box{{stage: st, a: 0, b: st.length, on: st.crude(s.curve, 0, st.length)}}
 	for len(stack) > 0 {
-		if s.steps++; s.steps > searchBudget {
+		if s.steps++; s.steps > walkBudget {
 			return nil, undecided("the curve changes its form too often")
 		}
 		if s.steps%8 == 0 {

@@ -258,3 +258,44 @@ func TestPeaksStop(t *testing.T) {
 		}
 	}
 }
+
+// The power of a resistor is nowhere below zero, and zero where its voltage passes
+// zero: 3 V at 250 Hz on 12 Ω pass zero every 2 ms and give 9/12 W at most.
+func TestPowerReachesZero(t *testing.T) {
+	c := newCircuit(t, 2)
+	turn := number.FromRat(number.PiBall(400).MulPow2(1).MidRat())
+	c.source(network.VoltageSource, 1, 0, Wave{Always: []WaveTerm{{Omega: turn.Mul(num(t, "250")), Sine: num(t, "3")}}})
+	load := c.add(network.Resistor, 1, 0, "12")
+	c.from("0", nil)
+	s := c.solve()
+	v := voltage(t, s, 1, 0)
+	p := v.Times(current(t, s, load), num(t, "1"))
+	e, err := p.Trough(background, Range{From: rat(t, "1/1000")})
+	if err != nil || e.Exact == nil || e.Exact.Sign() != 0 || !e.HasAt {
+		t.Errorf("least power: %+v %v", e, err)
+	}
+	within(t, "its instant", e.At, "0.002", 200)
+	e, err = p.Peak(background, Range{})
+	if err != nil || !e.HasAt {
+		t.Errorf("greatest power: %+v %v", e, err)
+	}
+	within(t, "greatest power", e.Value, "3/4", 200)
+	e, err = p.Trough(background, Range{})
+	if err != nil || e.Exact == nil || e.Exact.Sign() != 0 || !e.HasAt || !e.At.IsExact() || !e.At.ContainsZero() {
+		t.Errorf("least power from 0: %+v %v", e, err)
+	}
+	e, err = p.Trough(background, Range{From: rat(t, "1/2000"), To: rat(t, "1/1000")})
+	if err != nil || e.Value.MidFloat64() < 0.1 {
+		t.Errorf("least power within the half: %+v %v", e, err)
+	}
+	wantOutcome(t, p, ">=", "0", Range{}, Holds)
+	wantOutcome(t, p, ">", "0", Range{}, Broken)
+	wantOutcome(t, p, ">=", "1e-9", Range{}, Broken)
+	e, err = v.Curve().Abs().Trough(background, Range{From: rat(t, "1/1000")})
+	if err != nil || e.Exact == nil || e.Exact.Sign() != 0 {
+		t.Errorf("least |v|: %+v %v", e, err)
+	}
+	if _, ok := v.multipleOf(v.AddConstant(num(t, "1"))); ok {
+		t.Error("v is no multiple of v + 1")
+	}
+}

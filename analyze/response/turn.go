@@ -64,7 +64,7 @@ func (s *search) turnsIn(ctx context.Context, i, most int) ([]float64, error) {
 		}
 	}
 	for len(stack) > 0 && len(out) < most {
-		if s.steps++; s.steps > searchBudget {
+		if s.steps++; s.steps > walkBudget {
 			return nil, undecided("the curve turns too often")
 		}
 		if s.steps%8 == 0 {
