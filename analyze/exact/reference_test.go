@@ -59,18 +59,59 @@ func readPoly(t *testing.T, words []string) Poly {
 }
 
 func TestReferenceDeterminants(t *testing.T) {
+	counts := referencePencils(t, "determinants.txt")
+	if counts["det"] < 15 || counts["adj"] < 100 || counts["solve"] < 10 {
+		t.Errorf("too little was checked: %v", counts)
+	}
+}
+
+// Near cancellation, numbers over 600 decades, and networks of degree 400.
+func TestHardReferenceDeterminants(t *testing.T) {
+	counts := referencePencils(t, "adversarial.txt")
+	if counts["det"] < 6 || counts["adj"] < 40 || counts["solve"] < 6 || counts["modulo"] < 3 {
+		t.Errorf("too little was checked: %v", counts)
+	}
+}
+
+func referencePencils(t *testing.T, file string) (counts map[string]int) {
 	ctx := context.Background()
 	var (
-		name   string
-		p      *Pencil
-		f      *Prepared
-		counts = map[string]int{}
+		name  string
+		p     *Pencil
+		f     *Prepared
+		scale *big.Rat
 	)
-	eachLine(t, "determinants.txt", func(w []string) {
+	counts = map[string]int{}
+	eachLine(t, file, func(w []string) {
 		counts[w[0]]++
 		switch w[0] {
 		case "pencil":
 			name, p, f = w[1], NewPencil(readIndex(t, w[2])), nil
+		case "build":
+			name, f = w[1]+" "+w[2], nil
+			for _, n := range benchmarkNetworks {
+				if n.name == w[1] {
+					p, _, _, _ = n.build(readIndex(t, w[2]))
+				}
+			}
+		case "scale":
+			scale = readRat(t, w[1])
+		case "modulo":
+			q, err := p.Prepare(ctx)
+			if err != nil {
+				t.Fatal(err)
+			}
+			d := q.Determinant().Scale(scale)
+			prime := readRat(t, w[1]).Num()
+			c, den := d.Ints()
+			if len(c) != len(w)-2 || !den.IsInt64() || den.Int64() != 1 {
+				t.Fatalf("%s: degree %d, want %d; denominator %v", name, len(c)-1, len(w)-3, den)
+			}
+			for i, v := range c {
+				if v.Mod(v, prime); v.String() != w[i+2] {
+					t.Errorf("%s: coefficient %d modulo %v is %v, want %s", name, i, prime, v, w[i+2])
+				}
+			}
 		case "entry":
 			p.Add(readIndex(t, w[1]), readIndex(t, w[2]), readRat(t, w[3]), readRat(t, w[4]))
 		case "det":
@@ -104,9 +145,7 @@ func TestReferenceDeterminants(t *testing.T) {
 			t.Fatalf("unknown line %q", w[0])
 		}
 	})
-	if counts["det"] < 15 || counts["adj"] < 100 || counts["solve"] < 10 {
-		t.Errorf("too little was checked: %v", counts)
-	}
+	return counts
 }
 
 func TestReferencePolynomials(t *testing.T) {
