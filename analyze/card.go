@@ -67,6 +67,8 @@ func (a *Analysis) symbolCard(ctx context.Context, s *dialect.Symbol, file *dial
 		c.function(first)
 	case s.Sort == dialect.LetSymbol && first >= 0:
 		c.let(first, s)
+	case s.Sort == dialect.LetSymbol, s.Sort == dialect.ParameterSymbol:
+		c.values(s)
 	case s.Sort == dialect.SubnetworkSymbol:
 		c.subnetwork(s)
 	case s.Sort == dialect.UseSymbol:
@@ -127,7 +129,7 @@ func (a *Analysis) tellCard(ctx context.Context, t *dialect.TellStatement, file 
 			return Card{}, false, err
 		}
 		lines := Words(answer)
-		c := Card{Title: "tell " + q.Text, Answer: limited(lines, 12)}
+		c := Card{Title: "tell " + q.Text, Answer: limited(lines, 11)}
 		c.Picture = pictureOf(ctx, answer)
 		return c, true, nil
 	}
@@ -143,7 +145,7 @@ func limited(lines []string, n int) []string {
 	if len(lines) <= n {
 		return lines
 	}
-	return append(append([]string(nil), lines[:n]...), fmt.Sprintf("… %d more lines", len(lines)-n))
+	return append(append([]string(nil), lines[:n]...), "… "+times(len(lines)-n, "more line"))
 }
 
 func (a *Analysis) requireCard(ctx context.Context, t *dialect.RequireStatement, file *dialect.File) (Card, bool, error) {

@@ -74,7 +74,26 @@ func (c *cardMaker) askAt(what string) {
 		c.Answer = append(c.Answer, what+": "+strings.TrimPrefix(refused.Why, what+": "))
 		return
 	}
-	c.Answer = append(c.Answer, fmt.Sprintf("%s at %s: %s", what, c.nice(), strings.Join(limited(Words(answer), 2), "; ")))
+	c.Answer = append(c.Answer, fmt.Sprintf("%s at %s: %s", what, c.nice(), strings.Join(inOneLine(answer), "; ")))
+}
+
+// inOneLine is what a card says of an impedance: magnitude and angle, the
+// parts it looks like, and the first remark.
+func inOneLine(answer Answer) []string {
+	lines := Words(answer)
+	if len(lines) == 0 {
+		return nil
+	}
+	out := lines[:1:1]
+	for _, l := range lines[1:] {
+		if like, ok := strings.CutSuffix(l, " at this frequency"); ok {
+			out = append(out, like)
+		}
+	}
+	if v, ok := answer.(*ValueAnswer); ok && len(v.Remarks) > 0 {
+		out = append(out, v.Remarks[0])
+	}
+	return out
 }
 
 // nice is the frequency of interest with a prefix.
@@ -111,6 +130,14 @@ func (c *cardMaker) figureOf(question string) string {
 		return quantity(answer.Value.Re, answer.Dimension)
 	}
 	return ""
+}
+
+// sizeOf is figureOf, "" too for a figure that only cannot be told from zero.
+func (c *cardMaker) sizeOf(question string) string {
+	if m, ok := c.ask(question).(*MeasureAnswer); ok && m.Value.ContainsZero() && !m.Value.IsExact() {
+		return ""
+	}
+	return c.figureOf(question)
 }
 
 // summary adds one line with the figures of a signal.

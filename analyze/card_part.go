@@ -2,6 +2,8 @@ package analyze
 
 import (
 	"fmt"
+	"slices"
+	"strings"
 
 	"portlight/dialect"
 )
@@ -17,7 +19,7 @@ func (c *cardMaker) part(i int) {
 	if p.Tolerance != nil {
 		c.Title += " " + p.Tolerance.Text
 	}
-	c.values(p)
+	c.tolerance(p)
 	if !wired(p) {
 		c.Answer = append(c.Answer, "not wired yet")
 		return
@@ -34,17 +36,17 @@ func (c *cardMaker) part(i int) {
 	}
 	c.signal("v[" + p.Name + "]")
 	c.summary("i[" + p.Name + "]")
-	if text := c.figureOf("mean(p[" + p.Name + "])"); text != "" {
+	if text := c.sizeOf("mean(p[" + p.Name + "])"); text != "" {
 		c.Detail = append(c.Detail, "mean power "+text)
 	}
-	if text := c.figureOf("energy(" + p.Name + ")"); text != "" {
+	if text := c.sizeOf("energy(" + p.Name + ")"); text != "" {
 		c.Detail = append(c.Detail, "energy absorbed "+text)
 	}
 	c.askAt("z[" + p.Name + "]")
 }
 
-// values tells the range that a tolerance leaves, and the preferred neighbours.
-func (c *cardMaker) values(p *dialect.Part) {
+// tolerance tells the range that a tolerance leaves, and the preferred neighbours.
+func (c *cardMaker) tolerance(p *dialect.Part) {
 	if p.Tolerance != nil {
 		unit := valueUnit(p)
 		c.Detail = append(c.Detail, fmt.Sprintf("between %s and %s",
@@ -108,6 +110,26 @@ func (c *cardMaker) let(i int, s *dialect.Symbol) {
 		}
 	}
 	c.Detail = append(c.Detail, fmt.Sprintf("used %s on %s", times(uses, "time"), times(len(lines), "line")))
+}
+
+// values: what a parameter, or a constant of a used file or of a body, stands
+// for, once for each use where they differ.
+func (c *cardMaker) values(s *dialect.Symbol) {
+	c.Title = s.Sort.String() + " " + s.Name
+	var texts []string
+	for _, x := range c.a.checked.Values(s) {
+		if k, ok := x.(*dialect.Constant); ok && !slices.Contains(texts, constantText(k)) {
+			texts = append(texts, constantText(k))
+		}
+	}
+	switch {
+	case len(texts) == 0:
+		c.Answer = append(c.Answer, "no use gives it a value")
+	case len(texts) == 1:
+		c.Answer = append(c.Answer, texts[0])
+	default:
+		c.Answer = append(c.Answer, strings.Join(limited(texts, 6), ", ")+", by use")
+	}
 }
 
 func times(n int, what string) string {
