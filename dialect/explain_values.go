@@ -35,7 +35,7 @@ supply -[resistor Rfeed = 47 Kohm]- hull
 	{
 		Code: "prefix-suspect", Severity: Warning,
 		Title:   "A prefix that was probably not meant",
-		Meaning: "The value can be computed with, but no such part is made (10 PF is ten petafarad), or it is so far from the resistors beside it that the prefix of the other case was probably meant (mΩ for MΩ).",
+		Meaning: "The value can be computed with, but no such part is made (10 PF is ten petafarad), or it is so far from the resistors beside it that another prefix was probably meant (mΩ for MΩ or kΩ), or it is a capacitor in plain farads that those resistors would take hours to charge.",
 		Mend:    "Write the prefix that is meant. If the value is right, accept the finding: allow prefix-suspect because \"…\".",
 		Example: `ground hull
 port source at supply hull
