@@ -236,4 +236,3 @@ func (s *toleranceSearch) text(p box) string {
 	}
 	return list(names)
 }
-

@@ -17,7 +17,7 @@ func newExplain(std streams) *cobra.Command {
 		Long: `Explains the code of a finding, or a word of the notation: a part kind, a unit,
 a statement, a function or measure. Without a word it lists the codes; with
 "measures" the functions and measures.`,
-		Args:  takes(0, 1),
+		Args: takes(0, 1),
 		RunE: func(_ *cobra.Command, args []string) error {
 			if len(args) == 0 {
 				fmt.Fprintln(std.out, "Words of the notation are explained too; `portlight explain measures` lists functions\nand measures. The codes of findings are:")
