@@ -16,7 +16,8 @@ type client struct {
 	kind     protocol.PositionEncodingKind
 
 	markdownHover, markdownCompletion, markdownSignature bool
-	pictures                                             bool // hovers may hold images
+	pictures                                             bool   // hovers may hold images
+	fence                                                string // language of aligned lines in hovers
 
 	snippets, insertReplace, labelDetails bool
 	resolveCompletion                     []string
@@ -49,7 +50,9 @@ var picturedClients = []string{"Visual Studio Code", "code-server"}
 // newClient digests the capabilities. Anything may be absent.
 func newClient(p *protocol.InitializeParams) *client {
 	c := &client{name: p.ClientInfo.Name}
-	c.pictures = slices.Contains(picturedClients, c.name)
+	if c.pictures = slices.Contains(picturedClients, c.name); c.pictures {
+		c.fence = "text" // VS Code reads a bare fence as a network, and colours its words
+	}
 	c.chooseEncoding(p.Capabilities.General)
 	if w := p.Capabilities.Window; w != nil {
 		c.progress = yes(w.WorkDoneProgress)

@@ -2,6 +2,7 @@ package lsp
 
 import (
 	"context"
+	"slices"
 
 	"go.lsp.dev/protocol"
 
@@ -24,7 +25,7 @@ func hover(ctx context.Context, r *request, p *protocol.HoverParams) (*protocol.
 	if err != nil {
 		return nil, err
 	}
-	m := &markup{markdown: r.client.markdownHover}
+	m := &markup{markdown: r.client.markdownHover, fence: r.client.fence}
 	if ok {
 		r.card(m, card)
 	} else if word, where := at.word(); word != "" {
@@ -44,25 +45,40 @@ func hover(ctx context.Context, r *request, p *protocol.HoverParams) (*protocol.
 	return &protocol.Hover{Contents: m.content(), Range: ptr(r.mapper.reach(at.file.Lines, span))}, nil
 }
 
-// card writes a card.
+// card writes a card: what it is, the answer, then the detail. A picture that
+// the client shows stands before the detail, since a hover is seldom higher
+// than both; one made of characters stands behind it.
 func (r *request) card(m *markup, card analyze.Card) {
 	m.title(card.Title)
+	image := ""
+	if card.Picture != nil && r.sendsPictures() && m.markdown {
+		image = pictureLink(card.Picture)
+	}
+	if image != "" && len(image)+size(card) < maxHover {
+		m.block(card.Answer)
+		m.raw(image)
+		m.block(card.Detail)
+		m.prose(card.Doc)
+		return
+	}
 	lines := append([]string(nil), card.Answer...)
 	if len(card.Answer) > 0 && len(card.Detail) > 0 {
 		lines = append(lines, "")
 	}
 	m.block(append(lines, card.Detail...))
 	m.prose(card.Doc)
-	if card.Picture == nil {
-		return
+	if card.Picture != nil {
+		m.block(brailleText(card.Picture))
 	}
-	if r.sendsPictures() && m.markdown {
-		if image := pictureLink(card.Picture); image != "" && len(image)+m.b.Len() < maxHover {
-			m.raw(image)
-			return
-		}
+}
+
+// size is how many bytes the words of a card take at most, once marked up.
+func size(card analyze.Card) int {
+	n := 2*len(card.Title) + 2*len(card.Doc) + 100
+	for _, line := range slices.Concat(card.Answer, card.Detail) {
+		n += len(line) + 1
 	}
-	m.block(brailleText(card.Picture))
+	return n
 }
 
 // sendsPictures says that hovers may hold images.

@@ -9,6 +9,7 @@ import (
 // markup builds a text for the reader, as Markdown or plain.
 type markup struct {
 	markdown bool
+	fence    string // what opens a block of aligned lines names as its language
 	b        strings.Builder
 }
 
@@ -72,7 +73,7 @@ func (m *markup) block(lines []string) {
 	for strings.Contains(text, fence) {
 		fence += "`"
 	}
-	m.b.WriteString(fence + "\n" + text + "\n" + fence)
+	m.b.WriteString(fence + m.fence + "\n" + text + "\n" + fence)
 }
 
 // raw adds Markdown as it is.
