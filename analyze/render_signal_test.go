@@ -103,7 +103,7 @@ func TestMarkdownIsPlain(t *testing.T) {
 	if err != nil {
 		t.Fatal(err)
 	}
-	if got, want := analyze.Markdown(answer), "**z\\[a\\_b\\_c\\]**\n\n500 Ω\n"; got != want {
+	if got, want := analyze.Markdown(answer), "**z\\[a\\_b\\_c\\]**\n\n- z\\[a\\_b\\_c\\] = R\\_1\\_2·R\\_3/(R\\_1\\_2 + R\\_3)\n- 500 Ω\n"; got != want {
 		t.Errorf("got %q, want %q", got, want)
 	}
 }
