@@ -43,6 +43,15 @@ func mesh(n int) []string {
 	return out
 }
 
+// parallel is one resistor before many.
+func parallel(n int) []string {
+	out := []string{"V1 in 0", "R1 in out 1"}
+	for k := range n {
+		out = append(out, fmt.Sprintf("R%d out 0 %d", k+2, k+1))
+	}
+	return out
+}
+
 // TestBudget: what has no readable formula is given up within the budget, and
 // an ended context ends the work.
 func TestBudget(t *testing.T) {
@@ -55,6 +64,8 @@ func TestBudget(t *testing.T) {
 		{"mesh", mesh(6), "v:n2.2 / V1"},
 		{"large mesh", mesh(12), "v:n2.2 / V1"},
 		{"cascade", buffered, "v:o3 / V1"},
+		{"many in parallel", parallel(450), "v:out / V1"},
+		{"thousands in parallel", parallel(5000), "v:out / V1"},
 	} {
 		b := build(t, c.net...)
 		q := b.ask(t, c.ask)

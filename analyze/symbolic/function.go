@@ -69,11 +69,23 @@ func (sp *Space) reduced(num, den poly) Function {
 	return Function{num, den}
 }
 
+// mostElements is up to how many elements a network is looked at.
+const mostElements = 500
+
 // Transfer is the sum of some quantities of a network over the value of what
 // drives it, all other independent sources at zero. Elements must have the
 // same indices in all networks of a space. ok is false when there is no
 // formula: something without a name takes part, or the budget is used up.
 func (sp *Space) Transfer(n *network.Network, output []network.Probe, by Drive) (f Function, ok bool) {
+	present := 0
+	for i := range n.Elements {
+		if n.Elements[i].Kind != network.Absent {
+			present++
+		}
+	}
+	if present > mostElements {
+		return f, false
+	}
 	q := equationsOf(n, output, by)
 	if q.impossible {
 		return f, false
