@@ -136,6 +136,11 @@ async function hovered() {
   const node = await hover();
   check("hover names the node and answers", node?.includes("node rail") && node.includes("Ω"), node);
   check("hover shows the transient as an image", await until(async () => page.locator(".monaco-hover img").first().evaluate((image) => image.naturalWidth > 100)), node);
+  const visible = await page.locator(".monaco-hover:not(.hidden)").first().evaluate((box) => {
+    const [frame, image] = [box, box.querySelector("img")].map((element) => element?.getBoundingClientRect());
+    return image !== undefined && frame.bottom - image.top > 150;
+  });
+  check("the image is in sight without scrolling", visible, node);
   await picture("hover-node");
   check("answers stand behind their lines", await until(async () => (await texts(".view-line")).some((line) => /tell v\[rail\] at 2 ms.+V/.test(line))), await texts(".view-line"));
   check("facts stand above ports and limits", await until(async () => (await texts(".codelens-decoration")).some((lens) => lens.includes("Ω"))), await texts(".codelens-decoration"));
