@@ -385,8 +385,11 @@ func (g *generator) couple() {
 		least = g.branches[b].value
 	}
 	m := new(big.Rat).Mul(least, factor)
-	text := new(big.Rat).Mul(m, big.NewRat(1000, 1)).FloatString(6)
-	g.lines = append(g.lines, fmt.Sprintf("coupling core%d = %s mH, between %s %s", len(g.mutuals), text, g.branches[a].name, g.branches[b].name))
+	text := new(big.Rat).Mul(m, big.NewRat(1000, 1)).FloatString(6) + " mH"
+	if g.branches[a].value.Cmp(g.branches[b].value) == 0 && rapid.Bool().Draw(g.t, "as a coefficient") {
+		text = k // M = k·√(L·L) is rational
+	}
+	g.lines = append(g.lines, fmt.Sprintf("coupling core%d = %s, between %s %s", len(g.mutuals), text, g.branches[a].name, g.branches[b].name))
 	g.mutuals = append(g.mutuals, mutual{a, b, m})
 }
 

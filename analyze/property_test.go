@@ -130,7 +130,7 @@ func (n *networkAsker) refusedRightly(question string, answer analyze.Answer, so
 // TestRandomFunctions compares network functions and impedances of random networks with an
 // exact dense solution of an independent tableau at random rational s.
 func TestRandomFunctions(t *testing.T) {
-	fewer(t, 150, 30)
+	fewer(t, 120, 30)
 	answered, refused := 0, 0
 	rapid.Check(t, func(t *rapid.T) {
 		n := drawAnalysis(t)
@@ -144,6 +144,7 @@ func TestRandomFunctions(t *testing.T) {
 		}
 		n.impedance(sound)
 		n.partImpedance()
+		n.twoPort()
 		if sound {
 			n.naturalFrequencies()
 		}
@@ -216,14 +217,10 @@ func (n *networkAsker) partImpedance() {
 			return
 		}
 	}
-	for _, other := range n.g.branches {
-		for _, c := range other.controls {
-			if c.branch == part {
-				return // taken out, it leaves nothing to follow
-			}
-		}
-	}
 	gone := map[int]bool{part: true}
+	if n.followed(gone) {
+		return
+	}
 	question := fmt.Sprintf("z[%s]", b.name)
 	answer := n.ask(question)
 	sound := n.solvable(n.g.at(nil), gone)
@@ -239,6 +236,95 @@ func (n *networkAsker) partImpedance() {
 			n.sameFunction(question, answer.(*analyze.FunctionAnswer), s, of(t, plainOutput{plus: b.a, minus: b.b, branch: -1}, x))
 		}
 	}
+}
+
+// twoPort compares z and abcd parameters between two random node pairs with
+// what currents injected at each give.
+func (n *networkAsker) twoPort() {
+	var ports [2][2]int
+	gone := map[int]bool{}
+	text := n.g.text()
+	for k := range ports {
+		a, b := n.g.pair("port")
+		ports[k] = [2]int{a, b}
+		text += fmt.Sprintf("port port%d at %s %s\n", k+1, nodeText(a), nodeText(b))
+		for i, branch := range n.g.branches {
+			across := branch.a == a && branch.b == b || branch.a == b && branch.b == a
+			gone[i] = gone[i] || len(branch.waves) > 0 && across // the port's own drive
+		}
+	}
+	if n.followed(gone) || !n.solvable(n.g.at(nil), gone) {
+		return // then it takes a set that shorts a port, if there is any
+	}
+	a := analyze.New(checkText("random.plight", text, nil))
+	for _, set := range []string{"z", "abcd"} {
+		question := fmt.Sprintf("matrix %s[port1,port2]", set)
+		answer, err := a.Ask(n.ctx, question)
+		if err != nil {
+			n.fail("%s: %v", question, err)
+		}
+		matrix, ok := answer.(*analyze.MatrixAnswer)
+		if !ok {
+			n.fail("%s is refused: %v", question, analyze.Words(answer))
+		}
+		for _, s := range n.points() {
+			if z, ok := n.openCircuit(s, ports, gone); ok {
+				n.sameMatrix(question, matrix, s, set, z)
+			}
+		}
+	}
+}
+
+// openCircuit gives the z parameters at one s.
+func (n *networkAsker) openCircuit(s *big.Rat, ports [2][2]int, gone map[int]bool) (z [2][2]*big.Rat, ok bool) {
+	for k, p := range ports {
+		t, x, err := n.plain(s, gone, inject(p[0], p[1]))
+		if err != nil {
+			return z, false
+		}
+		for j, q := range ports {
+			z[j][k] = of(t, plainOutput{plus: q[0], minus: q[1], branch: -1}, x)
+		}
+	}
+	return z, true
+}
+
+// sameMatrix compares a set of parameters, all currents into the + terminals
+// but the second of abcd, which flows out.
+func (n *networkAsker) sameMatrix(question string, m *analyze.MatrixAnswer, s *big.Rat, set string, z [2][2]*big.Rat) {
+	want := z
+	if set == "abcd" {
+		if z[1][0].Sign() == 0 {
+			if m.Exists && !m.Entries[0][0].Ratio.Den.IsZero() && m.Entries[0][0].Ratio.Den.Eval(s).Sign() != 0 {
+				n.fail("%s is given, and nothing gets through", question)
+			}
+			return
+		}
+		over := func(x *big.Rat) *big.Rat { return new(big.Rat).Quo(x, z[1][0]) }
+		det := new(big.Rat).Sub(new(big.Rat).Mul(z[0][0], z[1][1]), new(big.Rat).Mul(z[0][1], z[1][0]))
+		want = [2][2]*big.Rat{{over(z[0][0]), over(det)}, {over(big.NewRat(1, 1)), over(z[1][1])}}
+	}
+	if !m.Exists {
+		n.fail("%s is said not to exist: %s", question, m.Why)
+	}
+	for j := range want {
+		for k := range want[j] {
+			n.sameFunction(fmt.Sprintf("%s, entry %d %d,", question, j+1, k+1), &m.Entries[j][k], s, want[j][k])
+		}
+	}
+}
+
+// followed tells whether a dependent source follows the current of a branch
+// that is gone: taken out, it leaves nothing to follow.
+func (n *networkAsker) followed(gone map[int]bool) bool {
+	for _, b := range n.g.branches {
+		for _, c := range b.controls {
+			if c.branch >= 0 && gone[c.branch] {
+				return true
+			}
+		}
+	}
+	return false
 }
 
 // apart tells whether the network without a part falls in two.
@@ -271,7 +357,7 @@ func (n *networkAsker) naturalFrequencies() {
 // TestRandomResponses compares signals in time of random networks with the
 // numerical inversion of transforms, interval by interval.
 func TestRandomResponses(t *testing.T) {
-	fewer(t, 150, 25)
+	fewer(t, 90, 20)
 	compared, given := 0, 0
 	rapid.Check(t, func(t *rapid.T) {
 		n := drawAnalysis(t)
