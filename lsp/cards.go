@@ -13,7 +13,7 @@ import (
 // is known at once is shown, and the work goes on for the next time.
 const (
 	patienceSmall = time.Second
-	patienceLarge = 6 * time.Millisecond // of a network of more than largeParts
+	patienceLarge = 2 * time.Millisecond // of a network of more than largeParts
 	largeParts    = 500
 )
 

@@ -106,7 +106,7 @@ func (c *completer) symbol(s *dialect.Symbol, rank int) {
 
 // names offers the visible symbols of some sorts.
 func (c *completer) names(rank int, sorts ...dialect.SymbolSort) {
-	for _, s := range c.checked.Visible(c.file, c.offset) {
+	for _, s := range c.symbols() {
 		if slices.Contains(sorts, s.Sort) {
 			c.symbol(s, rank)
 		}
@@ -115,7 +115,7 @@ func (c *completer) names(rank int, sorts ...dialect.SymbolSort) {
 
 // parts offers the parts of a kind.
 func (c *completer) parts(kind dialect.Kind) {
-	for _, s := range c.checked.Visible(c.file, c.offset) {
+	for _, s := range c.symbols() {
 		if s.Sort == dialect.PartSymbol && s.Kind == kind {
 			c.symbol(s, 0)
 		}
@@ -131,7 +131,7 @@ func (c *completer) boxes() {
 	for _, k := range twoTerminal {
 		c.kind(k, 1)
 	}
-	for _, s := range c.checked.Visible(c.file, c.offset) {
+	for _, s := range c.symbols() {
 		if s.Sort == dialect.SubnetworkSymbol && len(s.Terminals) == 2 {
 			c.add(item{
 				label: "part … = " + s.Name, kind: protocol.CompletionItemKindSnippet, detail: "a use of " + s.Name,
@@ -221,7 +221,7 @@ func (c *completer) newNames(kind dialect.Kind) {
 // nextName is the first free name of a stem and a number.
 func (c *completer) nextName(stem string) string {
 	taken := map[string]bool{}
-	for _, s := range c.checked.Visible(c.file, c.offset) {
+	for _, s := range c.symbols() {
 		taken[s.Name] = true
 	}
 	for i := 1; ; i++ {

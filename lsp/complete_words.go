@@ -99,7 +99,7 @@ func (c *completer) nodes() {
 		c.names(0, dialect.NodeSymbol)
 		return
 	}
-	for _, s := range c.checked.Visible(c.file, c.offset) {
+	for _, s := range c.symbols() {
 		if s.Sort == dialect.NodeSymbol {
 			c.add(item{
 				label: s.Name + " -[", kind: protocol.CompletionItemKindSnippet, detail: "a path from this node",
@@ -256,7 +256,7 @@ func (c *completer) asked() {
 
 // valued offers the parts whose names stand for their nominal values.
 func (c *completer) valued(rank int) {
-	for _, s := range c.checked.Visible(c.file, c.offset) {
+	for _, s := range c.symbols() {
 		if s.Sort == dialect.PartSymbol && (s.Kind == dialect.Resistor || s.Kind == dialect.Inductor || s.Kind == dialect.Capacitor) {
 			c.symbol(s, rank)
 		}
@@ -265,7 +265,7 @@ func (c *completer) valued(rank int) {
 
 // sources offers the independent sources, which excite network functions.
 func (c *completer) sources() {
-	for _, s := range c.checked.Visible(c.file, c.offset) {
+	for _, s := range c.symbols() {
 		if s.Sort == dialect.PartSymbol && (s.Kind == dialect.VoltageSource || s.Kind == dialect.CurrentSource) {
 			c.symbol(s, 0)
 		}

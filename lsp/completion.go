@@ -14,7 +14,7 @@ import (
 
 // maxCompletions bounds a list; with more the client asks again when the next
 // letter is typed.
-const maxCompletions = 500
+const maxCompletions = 200
 
 // completion handles textDocument/completion: what the grammar wants at the
 // place decides what is offered.
@@ -53,9 +53,18 @@ type completer struct {
 	*request
 	*place
 	context dialect.Context
+	visible []*dialect.Symbol // see symbols
 	items   []protocol.CompletionItem
 	seen    map[string]bool
 	more    bool
+}
+
+// symbols are the names that the place may use, gathered once.
+func (c *completer) symbols() []*dialect.Symbol {
+	if c.visible == nil {
+		c.visible = c.checked.Visible(c.file, c.offset)
+	}
+	return c.visible
 }
 
 // item is one thing to offer.

@@ -17,7 +17,7 @@ const serverVariable = "PORTLIGHT_TEST_SERVER"
 
 func TestMain(m *testing.M) {
 	if os.Getenv(serverVariable) != "" {
-		TuneCollector(os.Getenv)
+		TuneProcess(os.Getenv)
 		if err := Serve(context.Background(), os.Stdin, os.Stdout, Options{Version: "test"}); err != nil {
 			fmt.Fprintln(os.Stderr, err)
 			os.Exit(1)

@@ -127,24 +127,8 @@ func (p *process) receive(t testing.TB) string {
 }
 
 func readFrame(in *bufio.Reader) (string, error) {
-	length := 0
-	for {
-		line, err := in.ReadString('\n')
-		if err != nil {
-			return "", err
-		}
-		line = strings.TrimSpace(line)
-		if line == "" {
-			break
-		}
-		if value, ok := strings.CutPrefix(line, "Content-Length: "); ok {
-			if length, err = strconv.Atoi(value); err != nil {
-				return "", err
-			}
-		}
-	}
-	body := make([]byte, length)
-	if _, err := io.ReadFull(in, body); err != nil {
+	body, err := readBody(in)
+	if err != nil {
 		return "", err
 	}
 	var value any
@@ -154,8 +138,31 @@ func readFrame(in *bufio.Reader) (string, error) {
 	var ordered bytes.Buffer
 	enc := json.NewEncoder(&ordered)
 	enc.SetEscapeHTML(false)
-	err := enc.Encode(value)
+	err = enc.Encode(value)
 	return strings.TrimSpace(ordered.String()), err
+}
+
+// readBody reads the body of one message.
+func readBody(in *bufio.Reader) ([]byte, error) {
+	length := 0
+	for {
+		line, err := in.ReadString('\n')
+		if err != nil {
+			return nil, err
+		}
+		line = strings.TrimSpace(line)
+		if line == "" {
+			break
+		}
+		if value, ok := strings.CutPrefix(line, "Content-Length: "); ok {
+			if length, err = strconv.Atoi(value); err != nil {
+				return nil, err
+			}
+		}
+	}
+	body := make([]byte, length)
+	_, err := io.ReadFull(in, body)
+	return body, err
 }
 
 // end checks that the process ends by itself, successfully, with nothing

@@ -31,7 +31,7 @@ func serve(ctx context.Context, std streams, verbose bool) error {
 	if verbose {
 		options.Log = log.New(std.err, "portlight: ", log.LstdFlags)
 	}
-	lsp.TuneCollector(os.Getenv)
+	lsp.TuneProcess(os.Getenv)
 	err := lsp.Serve(ctx, std.in, std.out, options)
 	if errors.Is(err, lsp.ErrNoShutdown) {
 		// The protocol's own rule for a client that leaves without asking.
