@@ -171,15 +171,14 @@ func (a *Analysis) functionAnswer(ctx context.Context, head Question, d dialect.
 	if f.of == nil {
 		return out, nil
 	}
-	det, err := a.determinant(ctx, *f.of)
-	if _, refused := asRefusal(err); refused {
-		return out, nil // too many to list
-	}
+	hidden, remark, err := a.hiddenOf(ctx, *f.of, f.constant.Den)
 	if err != nil {
 		return nil, err
 	}
-	out.Hidden, err = rootsOf(ctx, hiddenFactor(det, f.constant.Den))
-	return out, err
+	if out.Hidden = hidden; remark != "" {
+		out.Remarks = append(out.Remarks, remark)
+	}
+	return out, nil
 }
 
 // hiddenFactor is what a network's determinant has beyond the denominator of
@@ -193,30 +192,38 @@ func hiddenFactor(det, den exact.Poly) exact.Poly {
 
 func (a *Analysis) rootsAnswer(ctx context.Context, q *dialect.Question, head Question, c configuration) (Answer, error) {
 	out := &RootsAnswer{Question: head, Zeros: q.Sort == dialect.AskZeros}
-	var p exact.Poly
-	switch {
-	case q.What != nil:
-		f, err := a.function(ctx, q.What, c)
-		if err != nil {
-			return nil, err
-		}
-		p = f.constant.Den
-		if out.Zeros {
-			p = f.constant.Num
-			if p.IsZero() {
-				return nil, refuse("zero-function", "the function is zero at every frequency, so every point is a zero of it")
-			}
-		}
-	default:
-		det, err := a.determinant(ctx, c)
-		if err != nil {
-			return nil, err
-		}
-		p = det
+	blocks, err := a.rootBlocks(ctx, q, c)
+	if err != nil {
+		return nil, err
 	}
-	roots, err := rootsOf(ctx, p)
-	out.Roots = roots
+	degree := 0
+	for _, b := range blocks {
+		degree += b.Degree()
+	}
+	if degree > mostModes && q.What == nil {
+		return nil, refuse("too-many-modes", fmt.Sprintf(
+			"the network has more than %d natural frequencies: ask for the poles of a function", mostModes))
+	}
+	out.Roots, err = rootsOfProduct(ctx, blocks)
 	return out, err
+}
+
+// rootBlocks are the polynomials whose roots are asked for: of a function, or
+// one for each piece of the network.
+func (a *Analysis) rootBlocks(ctx context.Context, q *dialect.Question, c configuration) ([]exact.Poly, error) {
+	if q.What == nil {
+		return a.determinants(ctx, c)
+	}
+	f, err := a.function(ctx, q.What, c)
+	switch {
+	case err != nil:
+		return nil, err
+	case q.Sort == dialect.AskPoles:
+		return []exact.Poly{f.constant.Den}, nil
+	case f.constant.IsZero():
+		return nil, refuse("zero-function", "the function is zero at every frequency, so every point is a zero of it")
+	}
+	return []exact.Poly{f.constant.Num}, nil
 }
 
 // errText joins the reasons of several failures.

@@ -52,26 +52,6 @@ func (a *Analysis) determinants(ctx context.Context, c configuration) ([]exact.P
 	return blocks, nil
 }
 
-// determinant is det(G + sC) as one polynomial.
-func (a *Analysis) determinant(ctx context.Context, c configuration) (exact.Poly, error) {
-	blocks, err := a.determinants(ctx, c)
-	if err != nil {
-		return exact.Poly{}, err
-	}
-	product := exact.PolyFromInt64s(1)
-	for _, b := range blocks {
-		if product.Degree()+b.Degree() > mostModes {
-			return exact.Poly{}, refuse("too-many-modes", fmt.Sprintf(
-				"the network has more than %d natural frequencies: ask for the poles of a function", mostModes))
-		}
-		product = product.Mul(b)
-	}
-	return product, nil
-}
-
-// mostModes is how many natural frequencies one answer may list.
-const mostModes = 400
-
 func (a *Analysis) refuseSingular(ctx context.Context, sys *network.System) error {
 	problems, err := sys.Diagnose(ctx)
 	if err != nil {
