@@ -25,9 +25,10 @@ func (r *request) cardAt(ctx context.Context, at *place) (analyze.Card, dialect.
 	if large {
 		patience = patienceLarge
 	}
-	// Of large networks one card at a time is worked out behind: a pointer
-	// that wanders over the text must not start dozens.
-	if large && !at.unit.busy.CompareAndSwap(false, true) {
+	// Of large networks one card at a time is worked out behind, also when its
+	// version has been superseded: a pointer that wanders over the text while it
+	// is edited must not start dozens.
+	if large && !r.session.busy.CompareAndSwap(false, true) {
 		card, span, ok := at.quickCard()
 		return card, span, ok, nil
 	}
@@ -41,7 +42,7 @@ func (r *request) cardAt(ctx context.Context, at *place) (analyze.Card, dialect.
 	go func() {
 		defer at.unit.session.contain("working out a card")
 		if large {
-			defer at.unit.busy.Store(false)
+			defer r.session.busy.Store(false)
 		}
 		var o outcome
 		o.card, o.span, o.ok, o.err = at.analysis.Card(at.unit.ctx, at.file, at.offset)

@@ -48,6 +48,7 @@ type session struct {
 	current atomic.Pointer[snapshot]
 
 	publisher publisher
+	busy      atomic.Bool // a card of a large network is being worked out
 	tokens    tokenCache
 	progress  progressTokens
 	pages     pageFolder

@@ -32,7 +32,6 @@ type unit struct {
 	cancel context.CancelCauseFunc
 
 	once     sync.Once
-	busy     atomic.Bool // a card of a large network is being worked out
 	settled  atomic.Bool // checking is over, so view.Names is complete
 	checked  *dialect.Checked
 	analysis *analyze.Analysis
