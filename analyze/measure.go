@@ -4,6 +4,7 @@ import (
 	"context"
 	"fmt"
 	"math/big"
+	"strings"
 
 	"portlight/analyze/exact"
 	"portlight/analyze/frequency"
@@ -54,7 +55,8 @@ func (a *Analysis) measureError(name string, err error) error {
 	if _, ok := asRefusal(err); ok || isCancelled(err) {
 		return err
 	}
-	return refuse("undefined-measure", fmt.Sprintf("%s is not defined here: %v", name, err))
+	why := strings.TrimPrefix(err.Error(), response.ErrUndefined.Error()+": ")
+	return refuse("undefined-measure", fmt.Sprintf("%s is not defined here: %s", name, why))
 }
 
 // functionMeasure computes a figure of merit of a network function.

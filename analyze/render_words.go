@@ -165,12 +165,12 @@ func factWords(a *FactAnswer) []string {
 
 func signalValueWords(a *SignalValueAnswer) []string {
 	unit := a.Dimension.Unit()
-	parts := func(total, zi, zs number.Ball) string {
-		return figure(total, unit) + "  (zero-input part " + figure(zi, unit) + ", zero-state part " + figure(zs, unit) + ")"
+	parts := func(zi, zs number.Ball) string {
+		return "zero-input part " + figure(zi, unit) + ", zero-state part " + figure(zs, unit)
 	}
-	lines := []string{parts(a.Total, a.ZeroInput, a.ZeroState)}
+	lines := []string{figure(a.Total, unit), parts(a.ZeroInput, a.ZeroState)}
 	if a.Jump {
-		lines = append(lines, "just before: "+parts(a.BeforeTotal, a.BeforeZeroInput, a.BeforeZeroState))
+		lines = append(lines, "just before: "+figure(a.BeforeTotal, unit)+" ("+parts(a.BeforeZeroInput, a.BeforeZeroState)+")")
 	}
 	for k, w := range a.Impulses {
 		if !(w.IsExact() && w.ContainsZero()) {
@@ -368,6 +368,21 @@ func initialWords(a *InitialAnswer) []string {
 		cells = append(cells, []string{p.Part, exactFigure(p.Before, unit), exactFigure(p.After, unit)})
 	}
 	return alignColumns(cells)
+}
+
+// VerdictShort tells the outcome of a limit in a few words, to stand beside
+// its line: the decision and the margin.
+func VerdictShort(v Verdict) string {
+	text := v.Decision.String()
+	switch {
+	case v.Decision == Holds && v.InTolerance == Broken:
+		return text + ", but not within the tolerances"
+	case v.HasMargin && v.Decision == Holds:
+		text += " with " + quantity(v.Margin, v.Dimension) + " to spare"
+	case v.HasMargin && v.Decision == Broken:
+		text += " by " + quantity(v.Margin.Abs(), v.Dimension)
+	}
+	return text
 }
 
 // VerdictWords tells the outcome of a limit in one line.

@@ -125,7 +125,7 @@ func (h *inlays) verdicts(ctx context.Context) error {
 	}
 	for _, v := range verdicts {
 		if v.Limit != nil && h.covers(v.Limit.Origin) && !h.checked.FaultyAt(v.Limit.Origin) {
-			h.add(v.Limit.Origin.Span.End, verdictMark(v)+" "+analyze.VerdictWords(v), 0, "")
+			h.add(v.Limit.Origin.Span.End, verdictMark(v)+" "+analyze.VerdictShort(v), 0, "")
 		}
 	}
 	return nil

@@ -98,7 +98,7 @@ func (r *request) lensTitle(ctx context.Context, at *place, offset int) (title, 
 		}
 		for _, v := range verdicts {
 			if v.Limit != nil && v.Limit.Origin.File == at.file && v.Limit.Origin.Span == st.Span {
-				return verdictMark(v) + " " + analyze.VerdictWords(v), "", nil
+				return verdictMark(v) + " " + analyze.VerdictShort(v), "", nil
 			}
 		}
 	}
