@@ -185,18 +185,19 @@ func (w *walk) run(ctx context.Context) error {
 
 // begin sets the state at 0−.
 func (w *walk) begin(s *Solver) {
-	initial := make([]float64, s.m.n)
+	values := make([]float64, len(s.memories))
 	any := false
 	for _, x := range w.setup.Initial {
-		if x.Value == 0 {
-			continue
+		if x.Value != 0 {
+			any = true
+			values[s.system.MemoryIndex(network.Memory{Element: x.Element, Index: x.Index})] += x.Value
 		}
-		any = true
-		k := s.system.MemoryIndex(network.Memory{Element: x.Element, Index: x.Index})
-		s.states[k].add(initial, x.Value)
 	}
 	if any {
-		w.motions = append(w.motions, &motion{fine: initial, coarse: slices.Clone(initial)})
+		o := &motion{}
+		o.fine, o.jump = s.recall(values)
+		o.coarse = slices.Clone(o.fine)
+		w.motions = append(w.motions, o)
 	}
 	if len(w.setup.Sources) > 0 || !any {
 		w.motions = append(w.motions, &motion{fine: make([]float64, s.m.n), coarse: make([]float64, s.m.n), sources: true})
@@ -233,14 +234,8 @@ func (w *walk) segment(ctx context.Context, s *Solver, start, end float64) error
 		return err
 	}
 	for _, o := range w.motions {
-		o.drift = nil
 		if o.sources {
-			for k := range drives {
-				for i, r := range drives[k].index {
-					o.fine[r] += drives[k].value[i] * drives[k].wave.impulse(start)
-					o.coarse[r] += drives[k].value[i] * drives[k].wave.impulse(start)
-				}
-			}
+			o.strike(drives, start)
 		}
 	}
 	m := newMarch(s, start, drives, readings, w.motions)
@@ -251,7 +246,7 @@ func (w *walk) segment(ctx context.Context, s *Solver, start, end float64) error
 		case t == start:
 			begins = true
 		case t > start && t < end:
-			at, err := m.to(ctx, t, first, false)
+			at, err := m.to(ctx, t-start, first, false)
 			if err != nil {
 				return err
 			}
@@ -259,11 +254,11 @@ func (w *walk) segment(ctx context.Context, s *Solver, start, end float64) error
 		}
 	}
 	if !math.IsInf(end, 1) {
-		if _, err := m.to(ctx, end, first, false); err != nil {
+		if _, err := m.to(ctx, end-start, first, false); err != nil {
 			return err
 		}
 	} else if begins && m.taken == 0 {
-		if _, err := m.to(ctx, start+math.Ldexp(first, earlySteps), first, true); err != nil {
+		if _, err := m.to(ctx, math.Ldexp(first, earlySteps), first, true); err != nil {
 			return err
 		}
 	}
@@ -321,19 +316,46 @@ func (w *walk) readings(s *Solver, drives int) ([]reading, error) {
 }
 
 // shortest is a time in which nothing in the network moves: a small part of the
-// quickest time that two values in the equations can make, C/G, L/R or √(LC).
+// quickest time that two values in the equations can make, C/G, C·R, L·G, L/R,
+// √(LC) or an inner state's own, divided by the largest gain.
 func (s *Solver) shortest() float64 {
-	least, most := math.Inf(1), 1.0
-	for k := range s.m.row {
-		if c := math.Abs(s.m.c[k].hi); c > 0 {
-			least = min(least, c)
+	capacitance, inductance, inner := math.Inf(1), math.Inf(1), math.Inf(1)
+	for k, m := range s.system.Memories() {
+		switch s.system.Network().Elements[m.Element].Kind {
+		case network.Capacitor:
+			capacitance = min(capacitance, s.weights[k])
+		case network.Inductor:
+			inductance = min(inductance, s.weights[k])
+		default:
+			for _, v := range s.states[k].value {
+				inner = min(inner, math.Abs(v))
+			}
 		}
-		most = max(most, math.Abs(s.m.g[k].hi))
 	}
-	if math.IsInf(least, 1) {
+	least, most := 1.0, 1.0 // conductances, and resistances the other way round
+	gain := 1.0
+	for j := range s.m.n {
+		for k := s.m.start[j]; k < s.m.start[j+1]; k++ {
+			g := math.Abs(s.m.g[k].hi)
+			switch row, col := s.kind[s.m.row[k]], s.kind[j]; {
+			case g == 0:
+			case row != col:
+				gain = max(gain, g)
+			case row == 0:
+				least, most = min(least, g), max(most, g)
+			default:
+				least, most = min(least, 1/g), max(most, 1/g)
+			}
+		}
+	}
+	quickest := min(capacitance/most, inductance*least, inner/most, inner*least)
+	if lc := math.Sqrt(inductance * capacitance); lc < quickest { // neither is infinite
+		quickest = lc
+	}
+	if math.IsInf(quickest, 1) {
 		return 1
 	}
-	return 1e-3 * least / most
+	return 1e-3 * quickest / gain
 }
 
 // valuesAt sums motions up.
@@ -357,18 +379,39 @@ func (w *walk) valuesAt(at reached) []Value {
 	return out
 }
 
-// handOver carries memories from one network to the next: charges and fluxes
-// become those of the same voltages and currents.
+// strike adds the impulses of sources at an instant.
+func (o *motion) strike(drives []drive, at float64) {
+	for _, d := range drives {
+		weight := d.wave.impulse(at)
+		if weight == 0 {
+			continue
+		}
+		if o.jump == nil {
+			o.jump = make([]float64, len(o.fine))
+		}
+		for k, i := range d.index {
+			o.jump[i] += weight * d.value[k]
+		}
+	}
+}
+
+// handOver carries memories from one network to the next.
 func (w *walk) handOver(from, to *Solver) {
-	memories := to.system.Memories()
 	for _, o := range w.motions {
-		fine, coarse := make([]float64, to.m.n), make([]float64, to.m.n)
-		for k, m := range memories {
+		values := make([]float64, len(to.memories))
+		drift := make([]float64, len(to.memories))
+		for k, m := range to.system.Memories() {
 			if i := from.system.MemoryIndex(m); i >= 0 {
-				to.states[k].add(fine, o.memories[0][i])
-				to.states[k].add(coarse, o.memories[1][i])
+				values[k] = o.memories[0][i]
+				drift[k] = o.memories[1][i] - o.memories[0][i]
 			}
 		}
-		o.fine, o.coarse = fine, coarse
+		o.fine, o.jump = to.recall(values)
+		// What coarse is apart in goes with its solution; what conflicts with
+		// the network in it is small beyond notice.
+		o.coarse, _ = to.recall(drift)
+		for i, v := range o.fine {
+			o.coarse[i] += v
+		}
 	}
 }

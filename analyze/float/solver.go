@@ -26,7 +26,8 @@ type Solver struct {
 	symmetric   bool      // it is symmetric as it stands, exactly
 	memories    []form    // the values that the network carries
 	states      []form    // the right-hand sides that stand for them
-	weights     []float64 // their largest entries
+	weights     []float64 // of those of capacitors and inductors, their largest entries; of others 0
+	kind        []uint8   // of unknowns: 0 a voltage, 1 a current or an inner quantity
 	jitter      atomic.Uint32
 
 	mu      sync.Mutex
@@ -73,7 +74,14 @@ func New(sys *network.System) (*Solver, error) {
 	}
 	s := &Solver{system: sys, m: m}
 	s.multipliers, s.symmetric = m.symmetrise()
-	for k := range sys.Memories() {
+	for i := range sys.Size() {
+		kind := uint8(1)
+		if sys.Owner(i).Node >= 0 {
+			kind = 0
+		}
+		s.kind = append(s.kind, kind)
+	}
+	for k, m := range sys.Memories() {
 		memory, err := newForm(sys.MemoryValue(k).G)
 		if err != nil {
 			return nil, err
@@ -83,8 +91,10 @@ func New(sys *network.System) (*Solver, error) {
 			return nil, err
 		}
 		weight := 0.0
-		for _, v := range state.value {
-			weight = max(weight, math.Abs(v))
+		if e := sys.Network().Elements[m.Element].Kind; e == network.Capacitor || e == network.Inductor {
+			for _, v := range state.value {
+				weight = max(weight, math.Abs(v))
+			}
 		}
 		s.memories, s.states, s.weights = append(s.memories, memory), append(s.states, state), append(s.weights, weight)
 	}

@@ -4,6 +4,7 @@ import (
 	"context"
 	"errors"
 	"math"
+	"sync"
 )
 
 // poles are the poles in the upper half-plane, with their residues, of the
@@ -19,28 +20,31 @@ var poles = [...]struct{ at, residue complex128 }{
 	{complex(3.6948563293868469578, 11.269699300097056971), complex(-31.848726306593758587, 14.952818662368041023)},
 }
 
-// stepper advances the state of a network by a fixed time. The state is the
-// right-hand side q = C·x, charges and fluxes, that stands for the past in
+// stepper advances the solution by a fixed time. From an instant on, where it
+// was x, its change δ obeys
 //
-//	(G + s·C)·X(s) = q + B·U(s).
+//	(G + s·C)·Δ(s) = B·U(s) − G·x/s + jump,
 //
-// With r(z) = Σ ρ/(z − θ) in place of e^z in the solution for U = 0,
-// x(h) = −Σ (ρ/h)·(G + θ/h·C)⁻¹·q; a source adds its transform to q, which is
-// the same as letting it be the output of a network of its own.
+// jump being the charges and fluxes that are not C·x. With r(z) = Σ ρ/(z − θ) in
+// place of e^z, δ(h) = −Σ (ρ/h)·Δ(θ/h): what r makes of the constant, and of
+// sources that are outputs of a network of their own, is taken in. Rounding
+// errors are those of the change, not of x.
 type stepper struct {
 	m       *matrix
 	h       float64
 	factors [len(poles)]factor
 	s       [len(poles)]complex128
-	scratch []complex128
-	b       []complex128
+	b       [len(poles)][]complex128 // right-hand sides, then solutions
+	scratch [len(poles)][]complex128
+	gx      []float64 // G·x
 }
 
 // stepper factorises the matrices for a step.
 func (s *Solver) stepper(ctx context.Context, h float64) (*stepper, error) {
-	t := &stepper{m: s.m, h: h, scratch: make([]complex128, s.m.n), b: make([]complex128, s.m.n)}
+	t := &stepper{m: s.m, h: h, gx: make([]float64, s.m.n)}
 	for i, p := range poles {
 		t.s[i] = p.at / complex(h, 0)
+		t.b[i], t.scratch[i] = make([]complex128, s.m.n), make([]complex128, s.m.n)
 		var err error
 		if t.factors[i], err = s.factorAt(ctx, t.s[i]); err != nil {
 			return nil, err
@@ -73,43 +77,90 @@ type reading struct {
 	input []float64 // by drive
 }
 
-// step sets x to the solution a step after the instant t, where the state was
-// q, and y to the readings there.
-func (t *stepper) step(q []float64, now float64, drives []drive, x []float64, readings []reading, y []float64) {
-	clear(x)
+// step adds to x its change within a step from now on, a time after the start
+// of the segment, and sets y to the readings after it. A nil jump is none.
+func (t *stepper) step(x, jump []float64, now float64, drives []drive, readings []reading, y []float64) {
+	t.m.conduct(x, t.gx)
+	if len(x) < parallelSize {
+		for i := range t.factors {
+			t.solve(i, jump, now, drives)
+		}
+	} else {
+		var wg sync.WaitGroup
+		for i := 1; i < len(t.factors); i++ {
+			wg.Go(func() { t.solve(i, jump, now, drives) })
+		}
+		t.solve(0, jump, now, drives)
+		wg.Wait()
+	}
 	clear(y)
-	for i, f := range t.factors {
-		for k, v := range q {
-			t.b[k] = complex(v, 0)
-		}
-		s := t.s[i]
-		for _, d := range drives {
-			u := d.wave.transform(s, d.start, now)
-			for k, r := range d.index {
-				t.b[r] += complex(d.value[k], 0) * u
-			}
-		}
-		f.solve(t.b, t.scratch)
-		// Twice the real part: the pole below the axis gives the conjugate.
-		w := -2 * poles[i].residue / complex(t.h, 0)
+	for i := range t.factors {
+		w, s := t.weight(i), t.s[i]
 		re, im := real(w), imag(w)
-		for k, v := range t.b {
+		for k, v := range t.b[i] {
 			x[k] += re*real(v) - im*imag(v)
 		}
 		for j := range readings {
 			r := &readings[j]
-			var sum complex128
 			for k, at := range r.index {
-				sum += (complex(r.g[k], 0) + s*complex(r.c[k], 0)) * t.b[at]
+				if c := r.c[k]; c != 0 {
+					y[j] += c * real(w*s*t.b[i][at])
+				}
 			}
-			y[j] += real(w * sum)
 		}
 	}
-	for k, d := range drives {
-		for j := range readings {
-			if f := readings[j].input[k]; f != 0 {
+	for j := range readings {
+		r := &readings[j]
+		for k, at := range r.index {
+			y[j] += r.g[k] * x[at]
+		}
+		for k, d := range drives {
+			if f := r.input[k]; f != 0 {
 				y[j] += f * d.wave.value(d.start, now+t.h)
 			}
+		}
+	}
+}
+
+// weight is −ρ/h, twice, for the pole below the axis gives the conjugate.
+func (t *stepper) weight(i int) complex128 { return -2 * poles[i].residue / complex(t.h, 0) }
+
+// parallelSize is from how many unknowns on the poles of a step are worth
+// goroutines of their own.
+const parallelSize = 1000
+
+// solve solves for one pole.
+func (t *stepper) solve(i int, jump []float64, now float64, drives []drive) {
+	b := t.b[i]
+	over := -1 / t.s[i]
+	re, im := real(over), imag(over)
+	for k, v := range t.gx {
+		b[k] = complex(v*re, v*im)
+	}
+	for k, v := range jump {
+		b[k] += complex(v, 0)
+	}
+	for _, d := range drives {
+		u := d.wave.transform(t.s[i], d.start, now)
+		for k, r := range d.index {
+			b[r] += complex(d.value[k], 0) * u
+		}
+	}
+	t.factors[i].solve(b, t.scratch[i])
+}
+
+// conduct sets y to G·x.
+func (m *matrix) conduct(x, y []float64) {
+	clear(y)
+	for j := range m.n {
+		v := x[j]
+		if v == 0 {
+			continue
+		}
+		begin, end := m.start[j], m.start[j+1]
+		rows := m.row[begin:end]
+		for k, g := range m.g[begin:end] {
+			y[rows[k]] += g.hi * v
 		}
 	}
 }
@@ -118,24 +169,9 @@ func (t *stepper) step(q []float64, now float64, drives []drive, x []float64, re
 func (t *stepper) echo(d *drive, now float64) float64 {
 	sum := 0.0
 	for i := range t.factors {
-		w := -2 * poles[i].residue / complex(t.h, 0)
-		sum += real(w * d.wave.transform(t.s[i], d.start, now))
+		sum += real(t.weight(i) * d.wave.transform(t.s[i], d.start, now))
 	}
 	return sum
-}
-
-// state sets q to C·x.
-func (m *matrix) state(x, q []float64) {
-	clear(q)
-	for j := range m.n {
-		v := x[j]
-		if v == 0 {
-			continue
-		}
-		for k := m.start[j]; k < m.start[j+1]; k++ {
-			q[m.row[k]] += m.c[k].hi * v
-		}
-	}
 }
 
 // sound are the backward errors up to which factors are taken for a step: if

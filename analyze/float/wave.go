@@ -75,18 +75,18 @@ func (w *Wave) each(start float64, f func(t Term, from float64)) {
 	}
 }
 
-// value is the wave at an instant of the segment that began at start.
-func (w *Wave) value(start, t float64) float64 {
+// value is the wave a time after the start of a segment, in it.
+func (w *Wave) value(start, after float64) float64 {
 	sum := 0.0
-	w.each(start, func(x Term, from float64) { sum += x.value(t - from) })
+	w.each(start, func(x Term, from float64) { sum += x.value(start - from + after) })
 	return sum
 }
 
-// transform is the Laplace transform at s of the wave from the instant t on, in
-// the segment that began at start.
-func (w *Wave) transform(s complex128, start, t float64) complex128 {
+// transform is the Laplace transform at s of the wave from a time after the
+// start of a segment on.
+func (w *Wave) transform(s complex128, start, after float64) complex128 {
 	var sum complex128
-	w.each(start, func(x Term, from float64) { sum += x.transform(s, t-from) })
+	w.each(start, func(x Term, from float64) { sum += x.transform(s, start-from+after) })
 	return sum
 }
 
