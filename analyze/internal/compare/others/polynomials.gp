@@ -8,7 +8,8 @@ timed(f) = {
   gettime(); r = alarm(20, f()); t = gettime();
   if (type(r) == "t_ERROR", return([0, 0]));
   if (t < 100, count = ceil(100 / max(t, 1/20)));
-  for (batch = 1, if (t > 1000, 1, 8),
+  if (t > 1000, return([t * 1000., r]));
+  for (batch = 1, 8,
     gettime(); for (k = 1, count, f()); least = min(least, gettime() / count));
   [least * 1000., r];
 }
