@@ -16,7 +16,7 @@ import (
 // errLarge refuses what only exact polynomials could answer in a network for
 // which they would take too long.
 var errLarge = refuse("network-too-large",
-	"the network is too large for exact polynomials: values at a frequency and tables over frequency are still answered, in double precision with a bound")
+	"the network is too large for exact polynomials: values at a frequency or a time and tables are still answered, in double precision with a bound")
 
 // largeError carries a transfer that has to be computed in double precision,
 // one frequency at a time.

@@ -32,6 +32,9 @@ func (a *Analysis) timeTable(ctx context.Context, q *dialect.Question, head Ques
 	}
 	out := &TableAnswer{Question: head, Proved: true, Columns: []Column{{"s", dialect.DimensionTime}, {"total", q.What.Dim()}}}
 	s, err := a.linear(ctx, q.What, c)
+	if isLarge(err) {
+		return a.largeTable(ctx, q, out, from, to, c)
+	}
 	if err != nil && !errors.Is(err, errNotLinear) {
 		return nil, err
 	}

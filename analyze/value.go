@@ -115,6 +115,9 @@ func (a *Analysis) signalValueAnswer(ctx context.Context, q *dialect.Question, h
 	if errors.Is(err, errNotLinear) {
 		return a.curveValueAnswer(ctx, q, out, t, side, c)
 	}
+	if isLarge(err) {
+		return a.largeValue(ctx, q, out, t, c)
+	}
 	if err != nil {
 		return nil, err
 	}

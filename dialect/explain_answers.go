@@ -84,8 +84,8 @@ rail -[resistor Rload = 50 Ω]- hull
 	{
 		Code: "network-too-large", Severity: Error, Analysis: true, Question: "poles",
 		Title:   "Too large for exact answers",
-		Meaning: "The polynomials of a network of this size, written exactly, would take longer than anyone waits. Values at a frequency and tables over frequency are still answered, in double precision with a bound of their error; closed forms, poles and limits over a range are not.",
-		Mend:    "Ask for values at a frequency, or describe the network with fewer sections.",
+		Meaning: "The polynomials of a network of this size, written exactly, would take longer than anyone waits. Values at a frequency or a time and tables are still answered, in double precision with a bound of their error; closed forms, poles and limits over a range are not.",
+		Mend:    "Ask for values at a frequency or a time, or describe the network with fewer sections.",
 		Example: cableFrame + `part One = Drum, in at supply, out at j1, ref at hull
 part Two = Drum, in at j1, out at j2, ref at hull
 part Three = Drum, in at j2, out at j3, ref at hull
