@@ -223,6 +223,9 @@ func TestLongValues(t *testing.T) {
 // tridiagonal determinants (T. Muir, A Treatise on the Theory of Determinants,
 // 1882, on continuants), evaluated at rational points.
 func TestLadderOfDegree400(t *testing.T) {
+	if testing.Short() {
+		t.Skip("long arithmetic in one thread: run without -short")
+	}
 	const sections = 200
 	p, rhs, input, _ := ladder(sections)
 	f, err := p.Prepare(context.Background())

@@ -67,6 +67,9 @@ func TestReferenceDeterminants(t *testing.T) {
 
 // Near cancellation, numbers over 600 decades, and networks of degree 400.
 func TestHardReferenceDeterminants(t *testing.T) {
+	if testing.Short() {
+		t.Skip("long arithmetic in one thread: run without -short")
+	}
 	counts := referencePencils(t, "adversarial.txt")
 	if counts["det"] < 6 || counts["adj"] < 40 || counts["solve"] < 6 || counts["modulo"] < 3 {
 		t.Errorf("too little was checked: %v", counts)

@@ -12,6 +12,9 @@ import (
 // roots must satisfy is checked by checkRoots, the product of the linear factors
 // among it.
 func TestRootsToManyBits(t *testing.T) {
+	if testing.Short() {
+		t.Skip("long arithmetic in one thread: run without -short")
+	}
 	source := rand.New(rand.NewPCG(2064, 1040))
 	polys := []Poly{
 		PolyFromInt64s(120796, 4202, 3545, 65, 25),

@@ -64,6 +64,9 @@ func TestRootsAgainstMpmath(t *testing.T) {
 // ring around one point, coefficients that are differences of nearly equal ones or
 // spread over 600 decades, and a network of degree 400.
 func TestHardRootsAgainstMPSolve(t *testing.T) {
+	if testing.Short() {
+		t.Skip("long arithmetic in one thread: run without -short")
+	}
 	built := map[string]func() Poly{"ladder-200": func() Poly { return unequalLadder(200) }}
 	var name string
 	var roots []Root

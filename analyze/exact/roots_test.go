@@ -268,6 +268,9 @@ func TestClusters(t *testing.T) {
 }
 
 func TestWideSpread(t *testing.T) {
+	if testing.Short() {
+		t.Skip("long arithmetic in one thread: run without -short")
+	}
 	decades := PolyFromInt64s(1)
 	for k := int64(-6); k <= 6; k++ {
 		decades = decades.Mul(linear(powerOfTenRat(k))).Mul(NewPoly(powerOfTenRat(2*k), powerOfTenRat(k-3), big.NewRat(1, 1)))
@@ -357,6 +360,9 @@ func TestRandomProducts(t *testing.T) {
 // Products of quadratics and near copies of them: clusters of real roots, of
 // pairs and of pairs about the real axis, down to 1e-60 apart.
 func TestRandomClusters(t *testing.T) {
+	if testing.Short() {
+		t.Skip("long arithmetic in one thread: run without -short")
+	}
 	source := rand.New(rand.NewPCG(21, 5))
 	for range 100 {
 		p := PolyFromInt64s(1)

@@ -187,6 +187,9 @@ func differ(x float64, r *big.Rat) float64 {
 // networks over many decades: every error must be within its radius, and the
 // radius must not be idle.
 func TestBoundsCoverTheError(t *testing.T) {
+	if testing.Short() {
+		t.Skip("long arithmetic in one thread: run without -short")
+	}
 	ctx := context.Background()
 	singular, wide, answers := 0, 0, 0
 	used := map[string]int{}
