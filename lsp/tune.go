@@ -10,7 +10,7 @@ import (
 // about as much garbage as the version before was large; with less than this the
 // collector works longer than the checks, with more the server outgrows the
 // 80 MiB that it is meant to stay within (see the benchmarks).
-const collectorPercent = 180
+const collectorPercent = 120
 
 // spareThreads is how many threads a server may run Go code on beyond the
 // number of processors. With none to spare, two long analyses hold all there

@@ -13,8 +13,7 @@ type Buffer struct {
 	name, text string
 
 	mu   sync.Mutex
-	base *dialect.File // an earlier version, let go once this one is parsed
-	file *dialect.File
+	file *dialect.File // nil until it is asked for
 }
 
 // Name is the document's name.
@@ -28,22 +27,14 @@ func (b *Buffer) File() *dialect.File {
 	b.mu.Lock()
 	defer b.mu.Unlock()
 	if b.file == nil {
-		if b.base != nil && b.base.Text == b.text {
-			b.file = b.base
-		} else {
-			b.file = dialect.Parse(b.name, b.text)
-		}
-		b.base = nil
+		b.file = dialect.Parse(b.name, b.text)
 	}
 	return b.file
 }
 
-// latest is the newest tree at hand that this version, or one before it, has.
-func (b *Buffer) latest() *dialect.File {
+// parsed is the tree if it was asked for already, nil if not.
+func (b *Buffer) parsed() *dialect.File {
 	b.mu.Lock()
 	defer b.mu.Unlock()
-	if b.file != nil {
-		return b.file
-	}
-	return b.base
+	return b.file
 }

@@ -57,10 +57,10 @@ func (s *Store) Open(name, text string) *Buffer {
 	s.mu.Lock()
 	defer s.mu.Unlock()
 	b := &Buffer{name: name, text: text}
-	if old := s.buffers[name]; old != nil {
-		b.base = old.latest()
-	} else if d := s.disk[name]; d != nil {
-		b.base = d.file
+	if old := s.buffers[name]; old != nil && old.text == text {
+		b.file = old.parsed()
+	} else if d := s.disk[name]; old == nil && d != nil && d.file.Text == text {
+		b.file = d.file
 	}
 	buffers := maps.Clone(s.buffers)
 	buffers[name] = b
