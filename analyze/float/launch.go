@@ -30,7 +30,10 @@ type launchedMotion struct {
 // as many of half the length; where they disagree longer ones are tried, as
 // long as that helps. It returns the readings after them.
 func (m *march) launch(ctx context.Context, length, first float64) (reached, error) {
-	h := min(first, length/launchSteps)
+	h, err := m.usable(ctx, min(first, length/launchSteps), length/launchSteps)
+	if err != nil {
+		return reached{}, err
+	}
 	best, err := m.tryLaunch(ctx, h)
 	if err != nil {
 		return reached{}, err
@@ -45,9 +48,9 @@ func (m *march) launch(ctx context.Context, length, first float64) (reached, err
 		if next.size > 1e3*best.size {
 			break
 		}
-		early = append(early, next.reached...)
 		if next.size < best.size {
 			best = next
+			early = append(early, next.reached...)
 		}
 	}
 	for k, o := range m.motions {
@@ -66,6 +69,27 @@ func (m *march) launch(ctx context.Context, length, first float64) (reached, err
 	m.noise = min(best.size, mostNoise)
 	m.falsified = m.noise * m.noise * stepTolerance * stepTolerance
 	return best.reached[len(best.reached)-1], nil
+}
+
+// usable lengthens a first step, up to the longest, as long as conductances are
+// lost beside s·C and longer steps lose less.
+func (m *march) usable(ctx context.Context, h, longest float64) (float64, error) {
+	half, err := m.stepper(ctx, h/2)
+	if err != nil {
+		return 0, err
+	}
+	for half.wrong > mostWrong && h < longest {
+		next, err := m.stepper(ctx, min(8*h, longest)/2)
+		if err != nil {
+			return 0, err
+		}
+		if next.wrong > half.wrong/2 {
+			break
+		}
+		half, h = next, min(8*h, longest)
+		m.least = h / 2
+	}
+	return h, nil
 }
 
 // tryLaunch makes the first steps with length h and leaves the motions alone.
@@ -172,7 +196,10 @@ func (m *march) atStart() reached {
 	for k := range m.motions {
 		fine, drift := make([]float64, len(m.readings)), make([]float64, len(m.readings))
 		for j := range fine {
-			fine[j], drift[j] = startOf(points, k, j)
+			if fine[j], drift[j] = startOf(points, k, j); m.least > 0 {
+				// Something may have moved and died out before the first step.
+				drift[j] = math.Inf(1)
+			}
 		}
 		at.fine, at.drift = append(at.fine, fine), append(at.drift, drift)
 	}
@@ -205,7 +232,7 @@ func smoothed(points []reached) []reached {
 // smallest of many bounds is taken, it is taken several times.
 func startOf(points []reached, k, j int) (value, radius float64) {
 	radius = math.Inf(1)
-	const most, several = 6, 16
+	const most, several = 6, 32
 	for first := range points {
 		for count := 1; count <= most && first+count <= len(points); count++ {
 			window := points[first : first+count]

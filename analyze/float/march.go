@@ -58,6 +58,8 @@ type march struct {
 	failures  int       // of longer ones
 	taken     int
 	falsified float64 // sum of the squares of what attempt found, relative to the memories
+	least     float64 // what is shorter is too short for double precision
+	forced    bool    // steps must be taken even if they are too short
 	noise     float64 // what attempt finds where steps are far too short to be wrong
 
 	x       []float64 // scratch
@@ -94,7 +96,7 @@ const (
 	// mostNoise is how much of what attempt finds can be noise.
 	mostNoise = 1e5
 	// mostSteps bounds the number of steps in a segment.
-	mostSteps = 4_000_000
+	mostSteps = 1_000_000
 	// mostHalvings bounds how often a length is halved.
 	mostHalvings = 62
 	// earlySteps is after how many steps readings are kept, to find what they
@@ -134,6 +136,8 @@ func (m *march) to(ctx context.Context, t, first float64, early bool) (at reache
 	}
 	length, begin := t-m.now, m.now
 	longest := m.h
+	var refused []float64 // what was found in attempts one after another
+	lengthened := false   // the step is longer than the one before
 	halvings := 0
 	for math.Ldexp(length, -halvings) > longest*(1+1e-9) && halvings < mostHalvings {
 		halvings++
@@ -142,23 +146,47 @@ func (m *march) to(ctx context.Context, t, first float64, early bool) (at reache
 		h := math.Ldexp(length, -halvings)
 		m.now = begin + float64(position)*h
 		size, err := m.attempt(ctx, h)
+		if errors.Is(err, errShort) && len(refused) > 0 && refused[len(refused)-1] <= mostNoise {
+			// Shorter steps are worse: what was refused is as good as it gets.
+			m.noise = refused[len(refused)-1]
+			halvings--
+			position /= 2
+			continue
+		}
+		if errors.Is(err, errShort) && len(refused) == 0 && position&1 == 0 {
+			if m.forced = halvings == 0; !m.forced { // else there is nothing longer
+				halvings--
+				position /= 2
+			}
+			continue
+		}
+		if errors.Is(err, errShort) {
+			err = ErrSteps
+		}
 		if err != nil {
 			return at, err
 		}
 		if !(size <= max(1, 4*m.noise)) {
+			if refused = append(refused, size); m.isNoise(refused) {
+				m.noise = size
+				continue
+			}
 			if halvings++; halvings > mostHalvings {
 				return at, ErrSteps
 			}
 			position *= 2
-			m.failures = min(m.failures+1, 10)
-			m.patience = 4 << m.failures
+			if m.patience = 2; lengthened {
+				m.failures = min(m.failures+1, 8)
+				m.patience = 2 << m.failures
+			}
+			lengthened = false
 			continue
 		}
 		m.falsified += size * size * stepTolerance * stepTolerance
 		if at, err = m.accept(h); err != nil {
 			return at, err
 		}
-		m.h = h
+		m.h, refused, lengthened = h, refused[:0], false
 		position++
 		if early && m.taken >= earlySteps {
 			return at, nil
@@ -167,6 +195,7 @@ func (m *march) to(ctx context.Context, t, first float64, early bool) (at reache
 		if position&1 == 0 && halvings > 0 && size < max(0.1, 2*m.noise) && m.patience <= 0 {
 			halvings--
 			position /= 2
+			lengthened = true
 		}
 		if m.patience < -64 {
 			m.failures = 0
@@ -176,7 +205,24 @@ func (m *march) to(ctx context.Context, t, first float64, early bool) (at reache
 	return at, nil
 }
 
-// stepper returns the factors for steps of length h; a few lengths are kept.
+// isNoise tells whether three halvings one after another were of no use: the
+// error of a step is then one of rounding. Only a small one is taken for that.
+func (m *march) isNoise(refused []float64) bool {
+	const small = 1e3
+	k := len(refused) - 1
+	return k >= 3 && refused[k] <= small && refused[k] > refused[k-3]/4
+}
+
+// errShort tells that steps are so short that conductances are lost beside
+// s·C in double precision.
+var errShort = errors.New("float: steps are too short")
+
+// mostWrong is the greatest error of solutions for a step at the start, if
+// longer ones do better.
+const mostWrong = 1e-7
+
+// stepper returns the factors for steps of length h; a few lengths are kept. It
+// fails with errShort where h is too short.
 func (m *march) stepper(ctx context.Context, h float64) (*stepper, error) {
 	if s := m.steppers[h]; s != nil {
 		for k, r := range m.recent {
@@ -186,6 +232,9 @@ func (m *march) stepper(ctx context.Context, h float64) (*stepper, error) {
 			}
 		}
 		return s, nil
+	}
+	if h < m.least && !m.forced {
+		return nil, errShort
 	}
 	s, err := m.solver.stepper(ctx, h)
 	if err != nil {
@@ -323,7 +372,7 @@ func (m *march) accept(h float64) (reached, error) {
 // all steps together have falsified the memories by, and rounding errors, if
 // these are at random.
 func (m *march) apart(o *motion, coarse []float64) []float64 {
-	const few = 8
+	const few = 16
 	random := math.Sqrt(m.falsified)
 	rounding := 16 * unit * math.Sqrt(float64(m.taken+16))
 	out := make([]float64, len(coarse))

@@ -49,7 +49,9 @@ type Setup struct {
 // Value is what an output shows at an instant, in the output's unit: ZeroInput
 // is due to the state at 0−, ZeroState to the sources, Total their sum. Each is
 // within its radius of the true value, as far as comparing two computations
-// with steps of different lengths and differently rounded entries can tell.
+// with steps of different lengths and differently rounded entries can tell. A
+// radius is +Inf right after a jump where double precision cannot tell what
+// moved and died out there.
 type Value struct {
 	Total, ZeroInput, ZeroState                   float64
 	TotalRadius, ZeroInputRadius, ZeroStateRadius float64

@@ -95,3 +95,108 @@ func TestRinging(t *testing.T) {
 	}
 	t.Log(worst, widest)
 }
+
+// TestMeshDischarge: a unit charge on the corner of a square of resistors with a
+// capacitor at every node spreads as the product of two chains; a chain's
+// motions are cosines that decay at the rates 4·sin²(kπ/2n)/RC.
+func TestMeshDischarge(t *testing.T) {
+	const side, tau = 30, 1e-6
+	b := build(t)
+	first := b.nodes(side * side)
+	for i := range side {
+		for j := range side {
+			v := first + i*side + j
+			if j+1 < side {
+				b.two(network.Resistor, v, v+1, "1e3")
+			}
+			if i+1 < side {
+				b.two(network.Resistor, v, v+side, "1e3")
+			}
+			b.two(network.Capacitor, v, 0, "1e-9")
+		}
+	}
+	corner := 0
+	for b.Elements[corner].Kind != network.Capacitor {
+		corner++
+	}
+	s, _ := b.solver()
+	r, err := NewResponse(Setup{Intervals: []Interval{{0, s}}, Initial: []Initial{{corner, 0, 1}}})
+	if err != nil {
+		t.Fatal(err)
+	}
+	chain := func(node int, x float64) float64 {
+		sum := 1.0 / side
+		for k := 1; k < side; k++ {
+			w := math.Pi * float64(k) / side
+			rate := 4 * math.Pow(math.Sin(w/2), 2) / tau
+			sum += 2.0 / side * math.Cos(w/2) * math.Cos(w*(float64(node)+0.5)) * math.Exp(-rate*x)
+		}
+		return sum
+	}
+	times := []float64{0, 1e-8, 1e-6, 1e-5, 1e-4, 3e-4, 1e-2}
+	places := [][2]int{{0, 0}, {1, 2}, {10, 3}, {29, 29}}
+	var outputs []func(*network.System) (network.Output, error)
+	for _, p := range places {
+		outputs = append(outputs, voltage(first+p[0]*side+p[1]))
+	}
+	got, err := r.Values(context.Background(), times, outputs...)
+	if err != nil {
+		t.Fatal(err)
+	}
+	for i, p := range places {
+		for k, x := range times {
+			want, v := chain(p[0], x)*chain(p[1], x), got[i][k]
+			// The sum of cosines is itself rounded.
+			if d := math.Abs(v.Total - want); !(d <= v.TotalRadius+1e-14) || v.TotalRadius > 1e-8 {
+				t.Errorf("node %v at %g: %.17g ± %.3g, want %.17g", p, x, v.Total, v.TotalRadius, want)
+			}
+		}
+	}
+}
+
+// TestLosslessLadder: equal inductors in series and capacitors across ring for
+// ever; the step response of the first current is a sum of sines at
+// 2/√(LC)·sin((2k−1)π/(4n+2)).
+func TestLosslessLadder(t *testing.T) {
+	const n, l, c = 60, 1e-3, 1e-9
+	b := build(t)
+	in := b.nodes(1)
+	src := b.two(network.VoltageSource, in, 0, "")
+	last, coil := in, -1
+	for range n {
+		next := b.nodes(1)
+		i := b.two(network.Inductor, last, next, "1e-3")
+		if coil < 0 {
+			coil = i
+		}
+		b.two(network.Capacitor, next, 0, "1e-9")
+		last = next
+	}
+	s, _ := b.solver()
+	r, err := NewResponse(Setup{Intervals: []Interval{{0, s}}, Sources: []Source{{src, step(1)}}})
+	if err != nil {
+		t.Fatal(err)
+	}
+	var times []float64
+	for k := range 40 {
+		times = append(times, float64(k)*50e-6)
+	}
+	got, err := r.Values(context.Background(), times, current(coil))
+	if err != nil {
+		t.Fatal(err)
+	}
+	for k, x := range times {
+		want := 0.0
+		for m := 1; m <= n; m++ {
+			angle := math.Pi * float64(2*m-1) / (4*n + 2)
+			w := 2 / math.Sqrt(l*c) * math.Sin(angle)
+			// Modal shape cos((2m−1)π(j+½)/(2n+1)) at the first coil, normed.
+			shape := math.Pow(math.Cos(angle), 2) * 4 / (2*n + 1)
+			want += shape / l * math.Sin(w*x) / w
+		}
+		v := got[0][k]
+		if d := math.Abs(v.Total - want); !(d <= v.TotalRadius+1e-16) || v.TotalRadius > 1e-9 {
+			t.Errorf("t = %g: %.17g ± %.3g, want %.17g", x, v.Total, v.TotalRadius, want)
+		}
+	}
+}

@@ -37,6 +37,7 @@ type stepper struct {
 	b       [len(poles)][]complex128 // right-hand sides, then solutions
 	scratch [len(poles)][]complex128
 	gx      []float64 // G·x
+	wrong   float64   // the error of a solution, relative to scaled unknowns
 }
 
 // stepper factorises the matrices for a step.
@@ -45,10 +46,11 @@ func (s *Solver) stepper(ctx context.Context, h float64) (*stepper, error) {
 	for i, p := range poles {
 		t.s[i] = p.at / complex(h, 0)
 		t.b[i], t.scratch[i] = make([]complex128, s.m.n), make([]complex128, s.m.n)
-		var err error
-		if t.factors[i], err = s.factorAt(ctx, t.s[i]); err != nil {
+		f, wrong, err := s.factorAt(ctx, t.s[i])
+		if err != nil {
 			return nil, err
 		}
+		t.factors[i], t.wrong = f, max(t.wrong, wrong)
 	}
 	return t, nil
 }
@@ -183,8 +185,8 @@ var sound = []float64{1e-13, 1e-10}
 // is computed with different factors then differs by as much as rounded entries
 // may falsify it (after J. Vignes, A stochastic arithmetic for reliable
 // scientific computation, Math. Comput. Simul. 35 (1993)). The factors are tried
-// on one right-hand side.
-func (s *Solver) factorAt(ctx context.Context, at complex128) (factor, error) {
+// on one right-hand side; wrong is the error of its solution.
+func (s *Solver) factorAt(ctx context.Context, at complex128) (f factor, wrong float64, err error) {
 	q := &query{Solver: s, at: point{double{real(at), 0}, double{imag(at), 0}}, workspace: s.workspace()}
 	defer func() {
 		q.ldl, q.lu = nil, nil // they belong to the caller
@@ -196,31 +198,41 @@ func (s *Solver) factorAt(ctx context.Context, at complex128) (factor, error) {
 	for _, limit := range sound {
 		for way := range ways {
 			err := q.factorise(ctx, way)
-			if err == nil && q.tried(limit) {
-				return q.factor, nil
-			}
-			if err != nil && !errors.Is(err, errPivot) {
-				return nil, err
+			if err == nil {
+				if wrong, ok := q.tried(limit); ok {
+					return q.factor, wrong, nil
+				}
+			} else if !errors.Is(err, errPivot) {
+				return nil, 0, err
 			}
 		}
 	}
-	return nil, ErrSingular
+	return nil, 0, ErrSingular
 }
 
-// tried solves once and looks at the backward error.
-func (q *query) tried(limit float64) bool {
+// tried solves once for a solution that is known. It returns the largest error,
+// relative to what scaling makes 1, and whether the backward error is within a
+// limit.
+func (q *query) tried(limit float64) (wrong float64, ok bool) {
 	n := q.m.n
 	b, x := make([]complex128, n), make([]complex128, n)
 	size := make([]float64, n)
-	scale := q.factor.scaling()
-	for i := range b {
-		b[i] = complex(math.Cos(float64(i))/scale.row[i], 0)
-		size[i] = norm1(b[i])
+	scale := q.factor.scaling().col
+	for j := range n {
+		v := complex(math.Cos(float64(j))*scale[j], 0)
+		for k := q.m.start[j]; k < q.m.start[j+1]; k++ {
+			i := q.m.row[k]
+			b[i] += q.a[k] * v
+		}
 	}
 	copy(x, b)
+	for i, v := range b {
+		size[i] = norm1(v)
+	}
 	q.factor.solve(x, q.y)
 	for j := range n {
 		v := x[j]
+		wrong = max(wrong, math.Abs(real(v)/scale[j]-math.Cos(float64(j)))+math.Abs(imag(v)/scale[j]))
 		for k := q.m.start[j]; k < q.m.start[j+1]; k++ {
 			i := q.m.row[k]
 			b[i] -= q.a[k] * v
@@ -229,8 +241,8 @@ func (q *query) tried(limit float64) bool {
 	}
 	for i, r := range b {
 		if !(norm1(r) <= limit*size[i]) {
-			return false
+			return wrong, false
 		}
 	}
-	return true
+	return wrong, true
 }
