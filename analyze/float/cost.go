@@ -12,7 +12,32 @@ import (
 
 // TooLarge tells whether exact polynomials of the network cost too much to
 // wait for: more than about two seconds.
-func TooLarge(sys *network.System) bool { return EstimateExact(sys) > tooLong }
+func TooLarge(sys *network.System) bool {
+	large, _ := TooLargeContext(context.Background(), sys)
+	return large
+}
+
+// TooLargeContext is TooLarge with a way to stop it; the error is the
+// context's.
+func TooLargeContext(ctx context.Context, sys *network.System) (bool, error) {
+	n := sys.Size()
+	if n == 0 {
+		return false, nil
+	}
+	operations, err := operationsOf(ctx, sys.Pencil())
+	if err != nil {
+		return false, err
+	}
+	// The coefficients need not be looked at where two primes are too many.
+	if exactTime(degreeBound(sys), 2, operations) > tooLong {
+		return true, nil
+	}
+	e, err := newEstimate(ctx, sys.Pencil())
+	if err != nil {
+		return false, err
+	}
+	return exactTime(degreeBound(sys), e.primes(), operations) > tooLong, nil
+}
 
 // tooLong is the time in seconds that exact polynomials may take.
 const tooLong = 2.0
@@ -23,26 +48,28 @@ const tooLong = 2.0
 // of 61 bits as the coefficients need; every value is an elimination. So the
 // estimate is points × primes × (operations + reconstruction); the operations
 // are those of a symmetric elimination in minimum-degree order. On ladders,
-// where another method is used, it comes to the same.
+// where another method is used, it comes to about the same.
 //
-// Measured beside it on a 2-core machine: RLC ladder of 100/200/400/800
-// sections 0.03/0.13/0.9/3.6 s, RC mesh of 10²/12²/14² nodes 5/19/54 ms.
+// Measured on a 2-core machine, and estimated: RLC ladder of 100/200/400/800
+// sections 10/74/700/3700 and 9/69/540/4300 ms, RC mesh of 10²/12²/14² nodes
+// 3/15/30 and 3/11/33 ms.
 func EstimateExact(sys *network.System) float64 {
-	p := sys.Pencil()
-	n := p.Size()
-	if n == 0 {
+	if sys.Size() == 0 {
 		return 0
 	}
-	e := newEstimate(p)
-	degree := min(len(sys.Memories()), n)
-	operations, err := e.operations()
-	if err != nil {
-		return math.Inf(1)
-	}
-	points := float64(degree + 1)
-	primes := math.Ceil(e.bits()/61) + 1
+	ctx := context.Background()
+	operations, _ := operationsOf(ctx, sys.Pencil())
+	e, _ := newEstimate(ctx, sys.Pencil())
+	return exactTime(degreeBound(sys), e.primes(), operations)
+}
+
+// degreeBound bounds the degree of the determinant.
+func degreeBound(sys *network.System) int { return min(len(sys.Memories()), sys.Size()) }
+
+// exactTime is the estimate in seconds.
+func exactTime(degree int, primes, operations float64) float64 {
 	const perOperation, perPoint, perPair = 1.5e-9, 30e-9, 3e-9
-	return points * primes * (perOperation*operations + perPoint + perPair*primes)
+	return float64(degree+1) * primes * (perOperation*operations + perPoint + perPair*primes)
 }
 
 // estimate holds the logarithms to base 2 of a pencil's entries.
@@ -53,7 +80,7 @@ type estimate struct {
 	scale    []float64 // log2 of what makes each row integer, at most
 }
 
-func newEstimate(p *exact.Pencil) *estimate {
+func newEstimate(ctx context.Context, p *exact.Pencil) (*estimate, error) {
 	e := &estimate{n: p.Size(), scale: make([]float64, p.Size())}
 	decade := speed(p)
 	power := new(big.Rat).SetInt(new(big.Int).Exp(big.NewInt(10), big.NewInt(int64(max(decade, -decade))), nil))
@@ -65,6 +92,9 @@ func newEstimate(p *exact.Pencil) *estimate {
 	var c big.Rat
 	var g big.Int
 	for x := range p.Entries() {
+		if len(e.row)&255 == 0 && ctx.Err() != nil {
+			return nil, ctx.Err()
+		}
 		c.Mul(x.C, power)
 		e.row, e.col = append(e.row, int32(x.Row)), append(e.col, int32(x.Col))
 		e.log = append(e.log, logSum(log2(x.G), log2(&c)))
@@ -90,8 +120,11 @@ func newEstimate(p *exact.Pencil) *estimate {
 			e.scale[i] = log2Int(l) - log2Int(divisor[i])
 		}
 	}
-	return e
+	return e, nil
 }
+
+// primes is how many primes the coefficients need, one to confirm included.
+func (e *estimate) primes() float64 { return math.Ceil(e.bits()/61) + 1 }
 
 // speed is the power of ten nearest to the middle of |g|/|c| over the rows.
 func speed(p *exact.Pencil) int {
@@ -179,27 +212,29 @@ func (e *estimate) bits() float64 {
 	return max(sum, 0)
 }
 
-// operations counts what eliminating the symmetric pattern takes.
-func (e *estimate) operations() (float64, error) {
-	start := make([]int32, e.n+1)
-	for k := range e.row {
-		start[e.row[k]+1]++
-		start[e.col[k]+1]++
+// operationsOf counts what eliminating the symmetric pattern takes. The error is
+// the context's.
+func operationsOf(ctx context.Context, p *exact.Pencil) (float64, error) {
+	n := p.Size()
+	start := make([]int32, n+1)
+	for e := range p.Entries() {
+		start[e.Row+1]++
+		start[e.Col+1]++
 	}
-	for i := range e.n {
+	for i := range n {
 		start[i+1] += start[i]
 	}
-	index := make([]int32, start[e.n])
-	fill := append([]int32(nil), start[:e.n]...)
-	for k := range e.row {
-		i, j := e.row[k], e.col[k]
-		index[fill[i]] = j
+	index := make([]int32, start[n])
+	fill := append([]int32(nil), start[:n]...)
+	for e := range p.Entries() {
+		i, j := e.Row, e.Col
+		index[fill[i]] = int32(j)
 		fill[i]++
-		index[fill[j]] = i
+		index[fill[j]] = int32(i)
 		fill[j]++
 	}
 	start, index = unrepeated(start, index)
-	order, err := minimumDegree(context.Background(), start, index, nil)
+	order, err := minimumDegree(ctx, start, index, nil)
 	if err != nil {
 		return 0, err
 	}

@@ -23,8 +23,12 @@ const unit2 = 1.0 / (1 << 50) / (1 << 50)
 // doubleOf rounds a rational number; ok is false where it is out of the range
 // in which the pair keeps its precision. A number too small for it becomes 0.
 func doubleOf(r *big.Rat) (d double, ok bool) {
-	if r.Sign() == 0 {
-		return double{}, true
+	num, den := r.Num(), r.Denom()
+	if num.BitLen() <= 53 && den.BitLen() <= 53 {
+		// The remainder num − hi·den is a float64.
+		a, b := float64(num.Int64()), float64(den.Int64())
+		hi := a / b
+		return double{hi, math.FMA(-hi, b, a) / b}, true
 	}
 	hi, whole := r.Float64()
 	if math.Abs(hi) > largest {

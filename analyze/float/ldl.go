@@ -57,18 +57,23 @@ func (m *matrix) planSymmetric(ctx context.Context, a []complex128, d []float64)
 	for i := range m.n {
 		p.scale.row[i] = d[i] * scale.row[i]
 	}
-	if entries, work := order.cost(); work > denseWork*entries {
-		if entries > maxEntries {
-			return nil, ErrMemory
-		}
+	entries, work := order.cost()
+	inFronts := work > denseWork*entries
+	if need := entries + work; entries > maxEntries || !inFronts && need > maxEntries {
+		return nil, ErrMemory
+	}
+	p.use(order, inFronts)
+	if p.fronts != nil && p.fronts.size+p.fronts.deepest > maxEntries {
+		return nil, ErrMemory
+	}
+	return p, nil
+}
+
+// use makes the plan follow an order, in fronts or compiled.
+func (p *symmetricPlan) use(order *symmetricOrder, inFronts bool) {
+	if inFronts {
 		p.fronts, p.unknown = newFronts(order)
-		if p.fronts.size+p.fronts.deepest > maxEntries {
-			return nil, ErrMemory
-		}
 	} else {
-		if entries+work > maxEntries {
-			return nil, ErrMemory
-		}
 		order = order.interleaved()
 		p.compiled = newCompiled(order)
 		for _, u := range order.vertices {
@@ -78,12 +83,11 @@ func (m *matrix) planSymmetric(ctx context.Context, a []complex128, d []float64)
 			}
 		}
 	}
-	p.ordered = scaling{make([]float64, m.n), make([]float64, m.n)}
+	p.ordered = scaling{make([]float64, p.m.n), make([]float64, p.m.n)}
 	for k, u := range p.unknown {
 		p.ordered.row[k], p.ordered.col[k] = p.scale.row[u], p.scale.col[u]
 	}
 	p.place()
-	return p, nil
 }
 
 // cost counts the entries of L and the products of the elimination.

@@ -1,12 +1,12 @@
 package float
 
 import (
+	"context"
 	"errors"
 	"fmt"
 	"math"
 
 	"portlight/analyze/exact"
-	"portlight/analyze/network"
 )
 
 // ErrRange tells that a value of the network, or the answer, is outside the
@@ -21,12 +21,8 @@ type matrix struct {
 	g, c  []double
 }
 
-// newMatrix rounds the pencil of a system.
-func newMatrix(sys *network.System) (*matrix, error) {
-	return compile(sys.Pencil())
-}
-
-func compile(p *exact.Pencil) (*matrix, error) {
+// newMatrix rounds a pencil. The error is ErrRange or the context's.
+func newMatrix(ctx context.Context, p *exact.Pencil) (*matrix, error) {
 	m := &matrix{n: p.Size(), start: make([]int32, p.Size()+1)}
 	count := 0
 	for e := range p.Entries() {
@@ -49,6 +45,9 @@ func compile(p *exact.Pencil) (*matrix, error) {
 			return nil, ErrRange
 		}
 		k := fill[e.Col]
+		if k&255 == 0 && ctx.Err() != nil {
+			return nil, ctx.Err()
+		}
 		fill[e.Col]++
 		m.row[k], m.g[k], m.c[k] = int32(e.Row), g, c
 	}

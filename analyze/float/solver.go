@@ -67,8 +67,11 @@ func newResult(outs, cols int, method string) *Result {
 }
 
 // New prepares the equations of a system. The error is ErrRange.
-func New(sys *network.System) (*Solver, error) {
-	m, err := newMatrix(sys)
+func New(sys *network.System) (*Solver, error) { return NewContext(context.Background(), sys) }
+
+// NewContext is New with a way to stop it; the error may be the context's.
+func NewContext(ctx context.Context, sys *network.System) (*Solver, error) {
+	m, err := newMatrix(ctx, sys.Pencil())
 	if err != nil {
 		return nil, err
 	}
@@ -82,6 +85,9 @@ func New(sys *network.System) (*Solver, error) {
 		s.kind = append(s.kind, kind)
 	}
 	for k, m := range sys.Memories() {
+		if k&255 == 0 && ctx.Err() != nil {
+			return nil, ctx.Err()
+		}
 		memory, err := newForm(sys.MemoryValue(k).G)
 		if err != nil {
 			return nil, err
