@@ -235,7 +235,8 @@ func TestBoundsCoverTheError(t *testing.T) {
 						t.Errorf("seed %d output %d column %d: swept, off by %g, radius %g", seed, i, j, d, swept[0].Radius[i][j])
 					}
 					used[got.Method]++
-					if got.Radius[i][j] > 1e-12*modulus(got.Values[i][j])+1e-250 {
+					// Where parts cancel to nothing there is no digit to know.
+					if got.Amplification[i][j] < 1e14 && got.Radius[i][j] > 1e-12*modulus(got.Values[i][j])+1e-250 {
 						wide++
 					}
 				}
