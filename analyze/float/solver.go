@@ -378,7 +378,9 @@ func (q *query) refine(ctx context.Context, b *vector, transposed bool) (*soluti
 	rest := step * contraction / (1 - contraction)
 	for i := range n {
 		s.slack[i] = 256*unit2*s.size[i] + 2*unit*norm1(s.r[i]) + floor
-		s.away[i] = 2*norm1(next[i]) + rest*math.Abs(weight[i]) + 2*unit*norm1(s.x[i])
+		if s.x[i] != 0 || next[i] != 0 { // else nothing reaches it
+			s.away[i] = 2*norm1(next[i]) + rest*math.Abs(weight[i]) + 2*unit*norm1(s.x[i])
+		}
 	}
 	return s, nil
 }
