@@ -95,9 +95,7 @@ func BenchmarkFactorAndSolve(b *testing.B) {
 			if err := f.factorise(ctx, complex(0, omega), usedLimit); err != nil {
 				b.Fatal(err)
 			}
-			clear(x)
-			x[0] = 1
-			f.solve(x, y)
+			f.solveSparse([]int32{0}, []complex128{1}, x, y, false)
 		}
 	})
 }
@@ -120,4 +118,63 @@ func BenchmarkSweep(b *testing.B) {
 			}
 		}
 	})
+}
+
+// BenchmarkResponse is a step response at 100 instants with bounds, the first
+// factors included; no mark.
+func BenchmarkResponse(b *testing.B) {
+	for _, c := range []struct {
+		name  string
+		build func() *builder
+		end   float64
+	}{
+		{"ladder=100", func() *builder { return rlcLadder(b, 100) }, 1e-3},
+		{"ladder=1000", func() *builder { return rlcLadder(b, 1000) }, 5e-3},
+		{"mesh=30", func() *builder { return rcMesh(b, 30) }, 1e-3},
+	} {
+		b.Run(c.name, func(b *testing.B) {
+			n := c.build()
+			source := n.two(network.CurrentSource, 0, 1, "")
+			s, _ := n.solver()
+			r, err := NewResponse(Setup{Intervals: []Interval{{0, s}}, Sources: []Source{{source, step(1e-3)}}})
+			if err != nil {
+				b.Fatal(err)
+			}
+			times := make([]float64, 100)
+			for k := range times {
+				times[k] = c.end * float64(k) / 99
+			}
+			for b.Loop() {
+				if _, err := r.Values(context.Background(), times, voltage(1)); err != nil {
+					b.Fatal(err)
+				}
+			}
+		})
+	}
+}
+
+// BenchmarkTooLarge is the choice between exact and double precision.
+func BenchmarkTooLarge(b *testing.B) {
+	for _, side := range []int{14, 50, 100} {
+		b.Run(fmt.Sprintf("mesh=%d", side), func(b *testing.B) {
+			sys := rcMesh(b, side).system()
+			for b.Loop() {
+				TooLarge(sys)
+			}
+		})
+	}
+}
+
+// BenchmarkNew is the preparation of a solver.
+func BenchmarkNew(b *testing.B) {
+	for _, side := range []int{50, 100} {
+		b.Run(fmt.Sprintf("mesh=%d", side), func(b *testing.B) {
+			sys := rcMesh(b, side).system()
+			for b.Loop() {
+				if _, err := New(sys); err != nil {
+					b.Fatal(err)
+				}
+			}
+		})
+	}
 }

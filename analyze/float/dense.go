@@ -93,47 +93,62 @@ func (d *dense) pair(k, from int) float64 {
 // update takes the products of the columns from..end−1 off the columns after
 // them.
 func (d *dense) update(from, end int) {
-	tall := d.tall
-	for j := end; j < tall; j++ {
-		var to []complex128
-		if j < d.wide {
-			to = d.values[j*tall:][j:tall]
-		} else {
-			below := tall - d.wide
-			to = d.rest[(j-d.wide)*below:][j-d.wide : below]
+	if end-from == panelWidth {
+		for j := end; j < d.tall; j++ {
+			d.updateByFour(from, j, d.column(j))
 		}
-		d.updateColumn(from, end, j, to)
+		return
+	}
+	for j := end; j < d.tall; j++ {
+		d.updateColumn(from, end, j, d.column(j))
 	}
 }
 
-// updateColumn brings the rows from j on of column j up to date.
+// column is column j from its diagonal on.
+func (d *dense) column(j int) []complex128 {
+	if j < d.wide {
+		return d.values[j*d.tall:][j:d.tall]
+	}
+	below := d.tall - d.wide
+	return d.rest[(j-d.wide)*below:][j-d.wide : below]
+}
+
+// updateByFour is updateColumn for a full panel: a row of products at a time, so
+// that every entry is fetched and stored once.
+func (d *dense) updateByFour(from, j int, to []complex128) {
+	tall, n := d.tall, len(to)
+	at := from*tall + j
+	a, b := d.values[at:][:n], d.values[at+tall:][:n]
+	c, e := d.values[at+2*tall:][:n], d.values[at+3*tall:][:n]
+	p := d.panel
+	ar, ai := real(p[j]), imag(p[j])
+	br, bi := real(p[tall+j]), imag(p[tall+j])
+	cr, ci := real(p[2*tall+j]), imag(p[2*tall+j])
+	er, ei := real(p[3*tall+j]), imag(p[3*tall+j])
+	for i, v := range to {
+		x, y := real(v), imag(v)
+		u := a[i]
+		x -= real(u)*ar - imag(u)*ai
+		y -= real(u)*ai + imag(u)*ar
+		u = b[i]
+		x -= real(u)*br - imag(u)*bi
+		y -= real(u)*bi + imag(u)*br
+		u = c[i]
+		x -= real(u)*cr - imag(u)*ci
+		y -= real(u)*ci + imag(u)*cr
+		u = e[i]
+		x -= real(u)*er - imag(u)*ei
+		y -= real(u)*ei + imag(u)*er
+		to[i] = complex(x, y)
+	}
+}
+
+// updateColumn brings the rows from j on of column j up to date, for fewer
+// columns than a panel has.
 func (d *dense) updateColumn(from, end, j int, to []complex128) {
 	tall := d.tall
 	l := func(k int) []complex128 { return d.values[k*tall:][j:tall][:len(to)] }
-	f := func(k int) (re, im float64) { v := d.panel[(k-from)*tall+j]; return real(v), imag(v) }
 	switch end - from {
-	case 4:
-		a, b, c, e := l(from), l(from+1), l(from+2), l(from+3)
-		ar, ai := f(from)
-		br, bi := f(from + 1)
-		cr, ci := f(from + 2)
-		er, ei := f(from + 3)
-		for i, v := range to {
-			x, y := real(v), imag(v)
-			u := a[i]
-			x -= real(u)*ar - imag(u)*ai
-			y -= real(u)*ai + imag(u)*ar
-			u = b[i]
-			x -= real(u)*br - imag(u)*bi
-			y -= real(u)*bi + imag(u)*br
-			u = c[i]
-			x -= real(u)*cr - imag(u)*ci
-			y -= real(u)*ci + imag(u)*cr
-			u = e[i]
-			x -= real(u)*er - imag(u)*ei
-			y -= real(u)*ei + imag(u)*er
-			to[i] = complex(x, y)
-		}
 	case 3:
 		a, b, c := l(from), l(from+1), l(from+2)
 		fa, fb, fc := d.panel[j], d.panel[tall+j], d.panel[2*tall+j]

@@ -133,6 +133,15 @@ func TestFactorisations(t *testing.T) {
 				} else {
 					f.solve(x, y)
 				}
+				index := make([]int32, n)
+				for i := range index {
+					index[i] = int32(i)
+				}
+				sparse := make([]complex128, n)
+				f.solveSparse(index, b, sparse, y, transposed)
+				if d := apart(sparse, x); !(d < 1e-12) {
+					t.Errorf("seed %d, %s, transposed %v: sparse right-hand side off by %g", seed, name, transposed, d)
+				}
 				if d := apart(x, want); !(d < 1e-6) {
 					t.Errorf("seed %d, %s, transposed %v: off by %g", seed, name, transposed, d)
 				}

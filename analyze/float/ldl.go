@@ -6,10 +6,11 @@ import "context"
 // matrix with rows multiplied by d, made symmetric by that, then scaled by
 // powers of two, then in the order of elimination.
 type symmetricPlan struct {
-	m       *matrix
-	scale   scaling // of the matrix as it stands: row = d·scale, col = scale
-	unknown []int32 // position → unknown
-	ordered scaling // the same by position
+	m        *matrix
+	scale    scaling // of the matrix as it stands: row = d·scale, col = scale
+	unknown  []int32 // position → unknown
+	position []int32 // unknown → position
+	ordered  scaling // the same by position
 	// The entries of one triangle, already scaled: G, C and where they go.
 	g, c []float64
 	slot []int32
@@ -107,7 +108,8 @@ func (o *symmetricOrder) cost() (entries, work float64) {
 // place finds where the entries of the matrix go.
 func (p *symmetricPlan) place() {
 	m := p.m
-	position := inverse(p.unknown)
+	p.position = inverse(p.unknown)
+	position := p.position
 	blockOf := make([]int32, m.n)
 	if p.compiled != nil {
 		for k, b := range p.compiled.blocks {
@@ -197,6 +199,27 @@ func (f *symmetricFactor) solveBetween(b, y []complex128, in, out []float64) {
 		s := in[k]
 		y[k] = complex(real(b[u])*s, imag(b[u])*s)
 	}
+	f.solveOrdered(b, y, out)
+}
+
+// solveSparse sets x to the solution for a right-hand side with few entries, by
+// rows of the matrix; transposed is for the transposed equations.
+func (f *symmetricFactor) solveSparse(index []int32, value, x, y []complex128, transposed bool) {
+	in, out := f.ordered.row, f.ordered.col
+	if transposed {
+		in, out = out, in
+	}
+	clear(y)
+	for k, i := range index {
+		at := f.position[i]
+		y[at] += value[k] * complex(in[at], 0)
+	}
+	f.solveOrdered(x, y, out)
+}
+
+// solveOrdered solves for y, in the order of elimination, and sets b to the
+// solution by unknowns.
+func (f *symmetricFactor) solveOrdered(b, y []complex128, out []float64) {
 	if f.compiled != nil {
 		f.compiled.solve(f.x, y)
 	} else {

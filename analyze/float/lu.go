@@ -309,6 +309,20 @@ func (f *luFactor) method() string { return "LU" }
 
 func (f *luFactor) entries() int { return len(f.l) + len(f.u) + len(f.inverse) }
 
+// solveSparse sets x to the solution for a right-hand side with few entries;
+// transposed is for the transposed equations.
+func (f *luFactor) solveSparse(index []int32, value, x, y []complex128, transposed bool) {
+	clear(x)
+	for k, i := range index {
+		x[i] = value[k]
+	}
+	if transposed {
+		f.solveTransposed(x, y)
+	} else {
+		f.solve(x, y)
+	}
+}
+
 // solve overwrites b, by rows of the matrix, with the solution by columns; y
 // is scratch.
 func (f *luFactor) solve(b, y []complex128) {

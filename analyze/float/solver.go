@@ -303,6 +303,9 @@ type factor interface {
 	solve(b, y []complex128)
 	// solveTransposed does so for the transposed equations.
 	solveTransposed(b, y []complex128)
+	// solveSparse sets x to the solution for a right-hand side with few
+	// entries; index repeats none.
+	solveSparse(index []int32, value, x, y []complex128, transposed bool)
 	// method names the kind.
 	method() string
 	// entries is how many numbers it holds.

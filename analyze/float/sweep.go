@@ -72,9 +72,10 @@ type sweeper struct {
 	*query
 	ask         *question
 	cols, duals []plain
-	terms       []float64 // of every row and column, the relative error of its sum
-	inverse     float64   // estimate of ‖Â⁻¹‖₁ for the plan at hand
-	planned     any       // the plan that it was made for
+	terms       []float64    // of every row and column, the relative error of its sum
+	inverse     float64      // estimate of ‖Â⁻¹‖₁ for the plan at hand
+	planned     any          // the plan that it was made for
+	few         []complex128 // entries of a right-hand side
 }
 
 // plain is a solution with its residual in double precision.
@@ -183,18 +184,18 @@ func (w *sweeper) norm(ctx context.Context) (err error) {
 // large: then the factors are no good.
 func (w *sweeper) solvePlain(p *plain, b *vector, transposed bool) bool {
 	m := w.m
-	clear(p.x)
 	clear(p.r)
 	clear(p.size)
 	omega := w.at.im.hi
+	w.few = w.few[:0]
 	for k, i := range b.index {
 		v := complex(b.g[k].hi, omega*b.c[k].hi)
-		p.x[i] += v
+		w.few = append(w.few, v)
 		p.r[i] += v
 		p.size[i] += norm1(v)
 	}
+	w.factor.solveSparse(b.index, w.few, p.x, w.y, transposed)
 	if transposed {
-		w.factor.solveTransposed(p.x, w.y)
 		for j := range m.n {
 			begin, end := m.start[j], m.start[j+1]
 			a, rows := w.a[begin:end], m.row[begin:end][:end-begin]
@@ -209,7 +210,6 @@ func (w *sweeper) solvePlain(p *plain, b *vector, transposed bool) bool {
 			p.size[j] += size
 		}
 	} else {
-		w.factor.solve(p.x, w.y)
 		for j := range m.n {
 			v := p.x[j]
 			if v == 0 {
