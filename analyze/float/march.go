@@ -122,8 +122,9 @@ func newMarch(s *Solver, start float64, drives []drive, readings []reading, moti
 	return m
 }
 
-// to advances to a time t after the start of the segment. The first step of the segment has the length
-// first at most. With early set it stops after so many steps.
+// to advances to a time t after the start of the segment. The first step of the
+// segment has the length first at most. With early set it stops after so many
+// steps.
 func (m *march) to(ctx context.Context, t, first float64, early bool) (at reached, err error) {
 	if m.taken == 0 {
 		if at, err = m.launch(ctx, t-m.now, first); err != nil {
@@ -134,83 +135,37 @@ func (m *march) to(ctx context.Context, t, first float64, early bool) (at reache
 			return at, nil
 		}
 	}
-	length, begin := t-m.now, m.now
-	longest := m.h
-	var refused []float64 // what was found in attempts one after another
-	lengthened := false   // the step is longer than the one before
-	halvings := 0
-	for math.Ldexp(length, -halvings) > longest*(1+1e-9) && halvings < mostHalvings {
-		halvings++
-	}
-	for position := uint64(0); position < uint64(1)<<halvings; {
-		h := math.Ldexp(length, -halvings)
-		m.now = begin + float64(position)*h
-		size, err := m.attempt(ctx, h)
-		if errors.Is(err, errShort) && len(refused) > 0 && refused[len(refused)-1] <= mostNoise {
-			// Shorter steps are worse: what was refused is as good as it gets.
-			m.noise = refused[len(refused)-1]
-			halvings--
-			position /= 2
-			continue
-		}
-		if errors.Is(err, errShort) && len(refused) == 0 && position&1 == 0 {
-			if m.forced = halvings == 0; !m.forced { // else there is nothing longer
-				halvings--
-				position /= 2
-			}
-			continue
-		}
+	p := newPace(m.now, t, m.h)
+	for !p.done() {
+		m.now = p.now()
+		size, err := m.attempt(ctx, p.h())
 		if errors.Is(err, errShort) {
-			err = ErrSteps
+			if err = m.tooShort(p); err == nil {
+				continue
+			}
 		}
 		if err != nil {
 			return at, err
 		}
 		if !(size <= max(1, 4*m.noise)) {
-			if refused = append(refused, size); m.isNoise(refused) {
-				m.noise = size
-				continue
+			if err := m.refuse(p, size); err != nil {
+				return at, err
 			}
-			if halvings++; halvings > mostHalvings {
-				return at, ErrSteps
-			}
-			position *= 2
-			if m.patience = 2; lengthened {
-				m.failures = min(m.failures+1, 8)
-				m.patience = 2 << m.failures
-			}
-			lengthened = false
 			continue
 		}
 		m.falsified += size * size * stepTolerance * stepTolerance
-		if at, err = m.accept(h); err != nil {
+		if at, err = m.accept(p.h()); err != nil {
 			return at, err
 		}
-		m.h, refused, lengthened = h, refused[:0], false
-		position++
+		m.h = p.h()
+		p.advance()
 		if early && m.taken >= earlySteps {
 			return at, nil
 		}
-		m.patience--
-		if position&1 == 0 && halvings > 0 && size < max(0.1, 2*m.noise) && m.patience <= 0 {
-			halvings--
-			position /= 2
-			lengthened = true
-		}
-		if m.patience < -64 {
-			m.failures = 0
-		}
+		m.quicken(p, size)
 	}
 	m.now = t
 	return at, nil
-}
-
-// isNoise tells whether three halvings one after another were of no use: the
-// error of a step is then one of rounding. Only a small one is taken for that.
-func (m *march) isNoise(refused []float64) bool {
-	const small = 1e3
-	k := len(refused) - 1
-	return k >= 3 && refused[k] <= small && refused[k] > refused[k-3]/4
 }
 
 // errShort tells that steps are so short that conductances are lost beside

@@ -200,3 +200,121 @@ func TestLosslessLadder(t *testing.T) {
 		}
 	}
 }
+
+// TestSteady: a divider at direct current with a capacitor, and an RC low-pass
+// under 3·cos ωt + 4·sin ωt with ωRC = 1, whose answer is half the source's
+// phasor turned back by 45°: (3 − 4j)/(1 + j) = −½ − 7/2·j.
+func TestSteady(t *testing.T) {
+	b := build(t)
+	in, out := b.nodes(1), b.nodes(1)
+	src := b.two(network.VoltageSource, in, 0, "")
+	b.two(network.Resistor, in, out, "1e3")
+	c := b.two(network.Capacitor, out, 0, "1e-6")
+	s, _ := b.solver()
+	ctx := context.Background()
+	for _, k := range []struct {
+		term Term
+		want float64
+	}{
+		{Term{Cosine: 5}, 5},
+		{Term{Omega: 1e3, Cosine: 3, Sine: 4}, -0.5},
+		{Term{Omega: 1e3, Cosine: 2}, 1},
+		{Term{Omega: 1e3, Sine: 2}, -1},
+	} {
+		got, err := s.Steady(ctx, []Source{{src, Wave{Always: []Term{k.term}}}})
+		if err != nil || len(got) != 1 || got[0].Element != c || math.Abs(got[0].Value-k.want) > 1e-15*5 {
+			t.Errorf("%+v: %v, %v, want %g", k.term, got, err, k.want)
+		}
+	}
+	if _, err := s.Steady(ctx, []Source{{src, Wave{Always: []Term{{Power: 1, Cosine: 1}}}}}); err != ErrUnsteady {
+		t.Error(err)
+	}
+	// From the steady state on nothing changes: the response is the sinusoid.
+	wave := Wave{Always: []Term{{Omega: 1e3, Cosine: 3, Sine: 4}}}
+	start, _ := s.Steady(ctx, []Source{{src, wave}})
+	r, err := NewResponse(Setup{Intervals: []Interval{{0, s}}, Sources: []Source{{src, wave}}, Initial: start})
+	if err != nil {
+		t.Fatal(err)
+	}
+	times := []float64{0, 1e-4, 1e-3, 1e-2}
+	got, err := r.Values(ctx, times, voltage(out))
+	if err != nil {
+		t.Fatal(err)
+	}
+	for k, x := range times {
+		want := -0.5*math.Cos(1e3*x) + 3.5*math.Sin(1e3*x)
+		if v := got[0][k]; math.Abs(v.Total-want) > v.TotalRadius {
+			t.Errorf("t = %g: %g ± %g, want %g", x, v.Total, v.TotalRadius, want)
+		}
+	}
+}
+
+// TestSetupsThatCannotBe names what is wrong.
+func TestSetupsThatCannotBe(t *testing.T) {
+	b := build(t)
+	v := b.nodes(1)
+	r := b.two(network.Resistor, v, 0, "1")
+	b.two(network.Capacitor, v, 0, "1")
+	s, _ := b.solver()
+	for _, c := range []struct {
+		setup Setup
+		want  error
+	}{
+		{Setup{}, ErrIntervals},
+		{Setup{Intervals: []Interval{{1, s}}}, ErrIntervals},
+		{Setup{Intervals: []Interval{{0, s}, {0, s}}}, ErrIntervals},
+		{Setup{Intervals: []Interval{{0, nil}}}, ErrIntervals},
+		{Setup{Intervals: []Interval{{0, s}}, Sources: []Source{{r, step(1)}}}, ErrSource},
+		{Setup{Intervals: []Interval{{0, s}}, Sources: []Source{{99, step(1)}}}, ErrSource},
+		{Setup{Intervals: []Interval{{0, s}}, Initial: []Initial{{r, 0, 1}}}, ErrMemoryValue},
+	} {
+		if _, err := NewResponse(c.setup); err != c.want {
+			t.Errorf("%+v: %v, want %v", c.setup, err, c.want)
+		}
+	}
+	ok, err := NewResponse(Setup{Intervals: []Interval{{0, s}}})
+	if err != nil {
+		t.Fatal(err)
+	}
+	for _, x := range []float64{-1, math.NaN(), math.Inf(1)} {
+		if _, err := ok.Values(context.Background(), []float64{x}, voltage(v)); err != ErrTime {
+			t.Errorf("at %g: %v", x, err)
+		}
+	}
+	if got, err := ok.Values(context.Background(), nil, voltage(v)); err != nil || len(got) != 1 || len(got[0]) != 0 {
+		t.Error(got, err)
+	}
+	if got, err := ok.Values(context.Background(), []float64{0, 1}, voltage(v)); err != nil || got[0][1].Total != 0 {
+		t.Error("nothing acts, but:", got, err)
+	}
+}
+
+// TestImpulsiveStart: a charged capacitor is switched onto an empty one. Charge
+// is kept, C₁·V/(C₁+C₂) at once, and the output current has gone by.
+func TestImpulsiveStart(t *testing.T) {
+	b := build(t)
+	v, w := b.nodes(1), b.nodes(1)
+	first := b.two(network.Capacitor, v, 0, "3e-6")
+	b.two(network.Capacitor, w, 0, "1e-6")
+	b.two(network.Resistor, w, 0, "1e3")
+	open := b.two(network.Open, v, w, "")
+	before, _ := b.solver()
+	b.Elements[open].Kind = network.Short
+	after, _ := b.solver()
+	r, err := NewResponse(Setup{Intervals: []Interval{{0, before}, {1e-3, after}}, Initial: []Initial{{first, 0, 8}}})
+	if err != nil {
+		t.Fatal(err)
+	}
+	times := []float64{0, 0.9e-3, 1e-3, 2e-3, 6e-3}
+	got, err := r.Values(context.Background(), times, voltage(v), voltage(w))
+	if err != nil {
+		t.Fatal(err)
+	}
+	for k, want := range [][2]float64{{8, 0}, {8, 0}, {6, 6}, {6 * math.Exp(-0.25), 6 * math.Exp(-0.25)}, {6 * math.Exp(-1.25), 6 * math.Exp(-1.25)}} {
+		for i := range want {
+			if x := got[i][k]; math.Abs(x.Total-want[i]) > x.TotalRadius || x.TotalRadius > 1e-7 {
+				t.Errorf("t = %g, output %d: %.15g ± %g, want %.15g", times[k], i, x.Total, x.TotalRadius, want[i])
+			}
+		}
+	}
+}
