@@ -226,44 +226,56 @@ func smoothed(points []reached) []reached {
 }
 
 // startOf extrapolates reading j of motion k to the start, and bounds the error
-// by the difference of two extrapolations and what the drift of the readings
-// makes of it. Earlier readings are surer, later ones less noisy: a later
-// window is taken where it makes sharper what the earlier ones say. As the
-// smallest of many bounds is taken, it is taken several times.
+// by the difference of extrapolations and what the drift of the readings makes
+// of it. Earlier readings are surer, later ones less noisy: a later window is
+// taken where it makes sharper what the earlier ones say, and agrees with all of
+// them. As the smallest of many estimates is taken, the bound is several times
+// that.
 func startOf(points []reached, k, j int) (value, radius float64) {
 	radius = math.Inf(1)
-	const most, several = 6, 32
+	const most, several = 6, 64
 	for first := range points {
 		for count := 1; count <= most && first+count <= len(points); count++ {
 			window := points[first : first+count]
-			v, noise := extrapolate(window, k, j)
+			v, noise := extrapolate(window, k, j, 0)
 			r := math.Inf(1)
 			if count > 1 {
-				less, _ := extrapolate(window[:count-1], k, j)
+				less, _ := extrapolate(window[:count-1], k, j, 0)
 				r = math.Abs(v-less) + noise
 				if first > 0 {
-					before, _ := extrapolate(points[first-1:first+count-1], k, j)
+					before, _ := extrapolate(points[first-1:first+count-1], k, j, 0)
 					r += math.Abs(v - before)
 				}
 			} else if len(points) == 1 {
 				r = math.Abs(v) + noise
 			}
-			if r *= several; r < radius && math.Abs(v-value) <= radius {
+			if r < radius && math.Abs(v-value) <= radius && agrees(window, points[:first], k, j) {
 				value, radius = v, r
 			}
 		}
 	}
-	return value, radius
+	return value, several * radius
 }
 
-// extrapolate is the value at zero of the polynomial through readings, and how
+// agrees tells whether the polynomial through a window is as far from earlier
+// readings as these may be wrong, at most.
+func agrees(window, earlier []reached, k, j int) bool {
+	for _, p := range earlier {
+		if v, noise := extrapolate(window, k, j, p.after); math.Abs(v-p.fine[k][j]) > p.drift[k][j]+noise {
+			return false
+		}
+	}
+	return true
+}
+
+// extrapolate is the value at a time of the polynomial through readings, and how
 // much of their drift comes with it (Lagrange).
-func extrapolate(points []reached, k, j int) (value, noise float64) {
+func extrapolate(points []reached, k, j int, at float64) (value, noise float64) {
 	for a := range points {
 		f := 1.0
 		for b := range points {
 			if a != b {
-				f *= points[b].after / (points[b].after - points[a].after)
+				f *= (points[b].after - at) / (points[b].after - points[a].after)
 			}
 		}
 		value += f * points[a].fine[k][j]

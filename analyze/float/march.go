@@ -95,6 +95,8 @@ const (
 	faint = 1e-3
 	// mostNoise is how much of what attempt finds can be noise.
 	mostNoise = 1e5
+	// beyond is where a response that grows without end is given up.
+	beyond = 1e100
 	// mostSteps bounds the number of steps in a segment.
 	mostSteps = 1_000_000
 	// mostHalvings bounds how often a length is halved.
@@ -300,6 +302,13 @@ func (m *march) accept(h float64) (reached, error) {
 	if m.taken++; m.taken > mostSteps {
 		return reached{}, ErrSteps
 	}
+	for _, o := range m.motions {
+		for _, v := range o.valueHalves {
+			if math.Abs(v) > beyond {
+				return reached{}, ErrRange
+			}
+		}
+	}
 	m.energy = max(m.energy, m.energyOf())
 	whole := m.steppers[h]
 	at := reached{after: m.now + h}
@@ -327,7 +336,7 @@ func (m *march) accept(h float64) (reached, error) {
 // all steps together have falsified the memories by, and rounding errors, if
 // these are at random.
 func (m *march) apart(o *motion, coarse []float64) []float64 {
-	const few = 16
+	const few = 24
 	random := math.Sqrt(m.falsified)
 	rounding := 16 * unit * math.Sqrt(float64(m.taken+16))
 	out := make([]float64, len(coarse))

@@ -53,7 +53,7 @@ func compare(t *testing.T, label string, setup Setup, times []float64, outputs .
 		t.Fatal(label, err)
 	}
 	got, err := r.Values(ctx, times, outputs...)
-	if errors.Is(err, ErrSteps) {
+	if errors.Is(err, ErrSteps) || errors.Is(err, ErrRange) {
 		return 0, math.Inf(1)
 	}
 	if err != nil {
@@ -136,7 +136,7 @@ func TestResponsesAgainstClosedForms(t *testing.T) {
 	cases, wideOnes := 0, 0
 	for seed := range responseSeeds {
 		r := rand.New(rand.NewPCG(seed, 11))
-		b := randomNetwork(t, r, 2+r.IntN(5), 5, true)
+		b := randomNetwork(t, r, 2+r.IntN(5), 4, seed%4 > 0)
 		sys, _ := network.Assemble(&b.Network)
 		if sys == nil {
 			continue
@@ -167,7 +167,7 @@ func TestResponsesAgainstClosedForms(t *testing.T) {
 		}
 		times := []float64{0, end / 7, end / 4, end / 3, end / 2, 0.7 * end, end}
 		_, wide := compare(t, fmt.Sprint("seed ", seed), setup, times, voltage(1), voltage(2), current(0), current(1))
-		if cases++; wide > 1e-6 {
+		if cases++; wide > 1e-4 {
 			t.Logf("seed %d: radius %g of the greatest value", seed, wide)
 			wideOnes++
 		}
