@@ -146,26 +146,47 @@ func (d *dense) updateByFour(from, j int, to []complex128) {
 // updateColumn brings the rows from j on of column j up to date, for fewer
 // columns than a panel has.
 func (d *dense) updateColumn(from, end, j int, to []complex128) {
-	tall := d.tall
-	l := func(k int) []complex128 { return d.values[k*tall:][j:tall][:len(to)] }
+	tall, n := d.tall, len(to)
+	at := from*tall + j
 	switch end - from {
 	case 3:
-		a, b, c := l(from), l(from+1), l(from+2)
-		fa, fb, fc := d.panel[j], d.panel[tall+j], d.panel[2*tall+j]
-		for i := range to {
-			to[i] -= a[i]*fa + b[i]*fb + c[i]*fc
+		a, b, c := d.values[at:][:n], d.values[at+tall:][:n], d.values[at+2*tall:][:n]
+		ar, ai := real(d.panel[j]), imag(d.panel[j])
+		br, bi := real(d.panel[tall+j]), imag(d.panel[tall+j])
+		cr, ci := real(d.panel[2*tall+j]), imag(d.panel[2*tall+j])
+		for i, v := range to {
+			x, y := real(v), imag(v)
+			u := a[i]
+			x -= real(u)*ar - imag(u)*ai
+			y -= real(u)*ai + imag(u)*ar
+			u = b[i]
+			x -= real(u)*br - imag(u)*bi
+			y -= real(u)*bi + imag(u)*br
+			u = c[i]
+			x -= real(u)*cr - imag(u)*ci
+			y -= real(u)*ci + imag(u)*cr
+			to[i] = complex(x, y)
 		}
 	case 2:
-		a, b := l(from), l(from+1)
-		fa, fb := d.panel[j], d.panel[tall+j]
-		for i := range to {
-			to[i] -= a[i]*fa + b[i]*fb
+		a, b := d.values[at:][:n], d.values[at+tall:][:n]
+		ar, ai := real(d.panel[j]), imag(d.panel[j])
+		br, bi := real(d.panel[tall+j]), imag(d.panel[tall+j])
+		for i, v := range to {
+			x, y := real(v), imag(v)
+			u := a[i]
+			x -= real(u)*ar - imag(u)*ai
+			y -= real(u)*ai + imag(u)*ar
+			u = b[i]
+			x -= real(u)*br - imag(u)*bi
+			y -= real(u)*bi + imag(u)*br
+			to[i] = complex(x, y)
 		}
 	case 1:
-		a := l(from)
-		fa := d.panel[j]
-		for i := range to {
-			to[i] -= a[i] * fa
+		a := d.values[at:][:n]
+		ar, ai := real(d.panel[j]), imag(d.panel[j])
+		for i, v := range to {
+			u := a[i]
+			to[i] = complex(real(v)-(real(u)*ar-imag(u)*ai), imag(v)-(real(u)*ai+imag(u)*ar))
 		}
 	}
 }

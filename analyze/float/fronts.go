@@ -197,7 +197,7 @@ func adopt(groups []group, k int32) {
 
 // saving is the time, in products, that merging child c into group g saves.
 func saving(g, c *group) float64 {
-	const perFront, perEntry = 50, 1.5
+	const perFront, perEntry = 50, 2
 	below := float64(c.tall - c.wide)
 	saved := perFront + perEntry*below*(below+1)/2
 	return saved + products(c.wide, c.tall) + products(g.wide, g.tall) - products(g.wide+c.wide, g.tall+c.wide)
